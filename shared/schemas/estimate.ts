@@ -1,0 +1,375 @@
+import { z } from 'zod';
+import { bankSchema, instantSchema, lonLatSchema, nameSchema, notNegative, positive, rangeSchema, ringSchema, textSchema } from './basics';
+
+/**
+ * The estimate document: everything one estimate needs, self-contained, SI throughout.
+ * A scenario's draft and its revisions hold one; the API and the command line solve the same document.
+ *
+ * Amounts are kilograms, or counts when `substance.measure` is `count` (micro-organisms).
+ * Concentrations are kg/m3, or counts/m3. Times named `...S` are seconds after `startAt`.
+ * Directions are degrees true. Banks are looking downstream.
+ */
+
+export const estimateLimits = {
+  releases: 20,
+  receptors: 500,
+  actionValues: 8,
+  reaches: 200,
+  centrelinePoints: 5_000,
+  tableRows: 2_000,
+  seriesRows: 20_000,
+  horizonS: 31 * 86_400,
+  frames: 240,
+} as const;
+
+/* ---------- what was released ---------- */
+
+const MAX_AMOUNT = 1e20;
+
+export const lossSchema = z.discriminatedUnion('kind', [
+  z.object({ kind: z.literal('none') }),
+  z.object({ kind: z.literal('first-order'), ratePerS: notNegative('1/s', 1), source: textSchema(300).default('') }),
+  z.object({
+    kind: z.literal('day-night'),
+    dayRatePerS: notNegative('1/s', 1),
+    nightRatePerS: notNegative('1/s', 1),
+    /** Local hours, 0 to 24, in the UTC offset of `startAt`. */
+    sunriseHour: z.number().min(0).max(24),
+    sunsetHour: z.number().min(0).max(24),
+    source: textSchema(300).default(''),
+  }),
+]);
+export type Loss = z.infer<typeof lossSchema>;
+
+export const estimateSubstanceSchema = z.object({
+  registerId: z.string().max(64).nullable().default(null),
+  name: nameSchema,
+  cas: textSchema(20).default(''),
+  /** What a figure counts, for example "as N", "as Cr", "dissolved". */
+  basis: textSchema(40).default(''),
+  measure: z.enum(['mass', 'count']).default('mass'),
+  /** Caps the result; null when unknown or miscible. */
+  solubilityKgM3: positive('kg/m3', 1e4).nullable().default(null),
+  densityKgM3: positive('kg/m3', 2e4).nullable().default(null),
+  loss: lossSchema.default({ kind: 'none' }),
+  /** False: the estimate is conservative and the figures with losses are only shown beside it. */
+  applyLoss: z.boolean().default(false),
+});
+export type EstimateSubstance = z.infer<typeof estimateSubstanceSchema>;
+
+/** How much, with the working kept. Every form comes down to kg (or counts): see `amountOf` in shared/amount.ts. */
+export const amountSchema = z.discriminatedUnion('how', [
+  /** `activeFraction`: kg of the substance reckoned (on its basis) per kg spilled. */
+  z.object({ how: z.literal('mass'), massKg: rangeSchema('kg', MAX_AMOUNT), activeFraction: positive('kg/kg', 1).default(1) }),
+  z.object({ how: z.literal('volume-strength'), volumeM3: rangeSchema('m3', 1e9), strengthKgM3: positive('kg/m3', 2e4) }),
+  z.object({ how: z.literal('volume-density'), volumeM3: rangeSchema('m3', 1e9), densityKgM3: positive('kg/m3', 2e4), activeFraction: positive('kg/kg', 1).default(1) }),
+  z.object({ how: z.literal('count'), count: rangeSchema('organisms', MAX_AMOUNT) }),
+  z.object({ how: z.literal('volume-count'), volumeM3: rangeSchema('m3', 1e9), countPerM3: positive('organisms/m3', 1e16) }),
+  /** Not known. With a stand-in the estimate uses it and says so; without, answers are per kilogram and no exceedance is claimed. */
+  z.object({ how: z.literal('unknown'), standIn: positive('kg', MAX_AMOUNT).nullable().default(null) }),
+]);
+export type Amount = z.infer<typeof amountSchema>;
+
+export const releaseTimingSchema = z.discriminatedUnion('kind', [
+  z.object({ kind: z.literal('instantaneous'), atS: z.number().min(-30 * 86_400).max(estimateLimits.horizonS).default(0) }),
+  z.object({
+    kind: z.literal('steady'),
+    startS: z.number().min(-30 * 86_400).max(estimateLimits.horizonS).default(0),
+    durationS: positive('s', estimateLimits.horizonS),
+  }),
+  /** Piecewise-linear relative rate; scaled so that its integral is the amount. Times ascend. */
+  z.object({
+    kind: z.literal('table'),
+    rows: z
+      .array(z.object({ atS: z.number().min(-30 * 86_400).max(estimateLimits.horizonS), rate: notNegative('kg/s', 1e12) }))
+      .min(2, 'A table of rates needs at least two rows')
+      .max(estimateLimits.tableRows, `At most ${estimateLimits.tableRows} rows`)
+      .superRefine((rows, ctx) => {
+        rows.forEach((row, i) => {
+          const before = rows[i - 1];
+          if (before && row.atS <= before.atS)
+            ctx.addIssue({ code: 'custom', path: [i, 'atS'], message: `Times must ascend: row ${i + 1} (${row.atS} s) is not after row ${i} (${before.atS} s)` });
+        });
+        if (rows.every((row) => row.rate === 0))
+          ctx.addIssue({ code: 'custom', path: [0, 'rate'], message: 'Every rate is 0: give at least one above 0' });
+      }),
+  }),
+]);
+export type ReleaseTiming = z.infer<typeof releaseTimingSchema>;
+
+/** A place on the river network: reach, chainage in km, and where across. */
+export const channelPlaceSchema = z.object({
+  reachId: z.string().min(1).max(64),
+  chainageKm: z.number().min(-10_000).max(10_000),
+  bank: bankSchema,
+});
+export type ChannelPlace = z.infer<typeof channelPlaceSchema>;
+
+export const releaseSchema = z.object({
+  id: z.string().min(1).max(64),
+  name: nameSchema,
+  position: lonLatSchema,
+  channel: channelPlaceSchema.nullable().default(null),
+  timing: releaseTimingSchema,
+  amount: amountSchema,
+  /** Radius of the cloud when it starts to spread, m; 0 is a point. */
+  initialRadiusM: notNegative('m', 20_000).default(0),
+  /** Volume spilled, m3: caps the concentration at amount/volume. */
+  spilledVolumeM3: positive('m3', 1e9).nullable().default(null),
+  evidence: textSchema(2_000).default(''),
+});
+export type Release = z.infer<typeof releaseSchema>;
+
+/* ---------- the water ---------- */
+
+export const hydraulicsRowSchema = z.object({
+  /** For example Q95, "exceeded 95 % of the time". */
+  flowName: z.string().trim().min(1).max(40),
+  exceededPercent: z.number().min(0).max(100).nullable().default(null),
+  dischargeM3s: positive('m3/s', 1e6),
+  widthM: positive('m', 20_000),
+  depthM: positive('m', 12_000),
+  velocityMps: positive('m/s', 20),
+});
+export type HydraulicsRow = z.infer<typeof hydraulicsRowSchema>;
+
+export const reachSchema = z.object({
+  id: z.string().min(1).max(64),
+  name: nameSchema,
+  /** Letters before a chainage, for example OL. */
+  chainagePrefix: textSchema(8).default('km'),
+  /** Vertices in downstream order: lon, lat, chainage in km. Chainage falls downstream and gives the length. */
+  centreline: z
+    .array(z.tuple([z.number().min(-180).max(180), z.number().min(-85).max(85), z.number().min(-10_000).max(10_000)]))
+    .min(2, 'A centreline needs at least two positions')
+    .max(estimateLimits.centrelinePoints, `At most ${estimateLimits.centrelinePoints} positions`)
+    .superRefine((line, ctx) => {
+      line.forEach((vertex, i) => {
+        const before = line[i - 1];
+        if (before && vertex[2] >= before[2])
+          ctx.addIssue({ code: 'custom', path: [i, 2], message: `Chainage must fall downstream: ${vertex[2]} km follows ${before[2]} km. Reverse the line or mend the chainage` });
+      });
+    }),
+  downstreamReachId: z.string().max(64).nullable().default(null),
+  /** Bank of the receiving water on which this reach enters it; null when it is the main stem itself. */
+  joinsOnBank: z.enum(['left', 'right']).nullable().default(null),
+  slope: positive('m/m', 0.5).nullable().default(null),
+  manningN: positive('s/m^(1/3)', 1).nullable().default(null),
+  hydraulics: z.array(hydraulicsRowSchema).min(1, 'Give width, depth and velocity for at least one flow').max(30),
+  /** Longitudinal dispersion, m2/s; null means by Fischer 1979 from the hydraulics. */
+  dispersionM2s: positive('m2/s', 1e5).nullable().default(null),
+  /** Transverse mixing, m2/s; null means 0.6 H u* (Fischer et al. 1979). */
+  transverseM2s: positive('m2/s', 1e3).nullable().default(null),
+  coefficientNote: textSchema(500).default(''),
+  calibrated: z.boolean().default(false),
+  tidal: z.boolean().default(false),
+});
+export type Reach = z.infer<typeof reachSchema>;
+
+export const riverWaterSchema = z.object({
+  kind: z.literal('river'),
+  registerId: z.string().max(64).nullable().default(null),
+  name: nameSchema,
+  chainageOrigin: textSchema(200).default(''),
+  reaches: z.array(reachSchema).min(1, 'A river needs at least one reach').max(estimateLimits.reaches, `At most ${estimateLimits.reaches} reaches`),
+  flow: z.object({
+    /** Named flow used where no discharge is given. */
+    name: z.string().trim().min(1).max(40),
+    /** Discharge set for a reach, m3/s; width, depth and velocity follow by power laws through the named flows. */
+    discharges: z.array(z.object({ reachId: z.string().max(64), dischargeM3s: positive('m3/s', 1e6) })).max(estimateLimits.reaches).default([]),
+    source: textSchema(300).default(''),
+    readAt: instantSchema.nullable().default(null),
+  }),
+  temperatureC: z.number().min(-2).max(60).nullable().default(null),
+});
+export type RiverWater = z.infer<typeof riverWaterSchema>;
+
+const towardDeg = z.number({ error: 'Give a direction in degrees true' }).min(0, 'Directions run from 0 to 360 degrees').max(360, 'Directions run from 0 to 360 degrees');
+
+export const currentPartSchema = z.discriminatedUnion('kind', [
+  z.object({ kind: z.literal('residual'), speedMps: notNegative('m/s', 10), towardDeg }),
+  /** Tidal ellipse: `majorMps` toward `floodTowardDeg` at `maxFloodS`; minor axis positive turns anticlockwise. */
+  z.object({
+    kind: z.literal('tide'),
+    name: textSchema(40).default('M2'),
+    majorMps: notNegative('m/s', 10),
+    minorMps: z.number().min(-10).max(10).default(0),
+    floodTowardDeg: towardDeg,
+    periodS: positive('s', 40 * 86_400),
+    maxFloodS: z.number().min(-40 * 86_400).max(40 * 86_400),
+  }),
+  /** Wind drift: a share of the wind, turned clockwise by `turnDeg` from the down-wind direction. */
+  z.object({
+    kind: z.literal('wind'),
+    windSpeedMps: notNegative('m/s', 80),
+    windFromDeg: towardDeg,
+    driftFraction: notNegative('m/s per m/s', 0.1),
+    turnDeg: z.number().min(-90).max(90).default(0),
+  }),
+  /** Measured or forecast current, linear between rows; times ascend and cover the estimate. */
+  z.object({
+    kind: z.literal('series'),
+    rows: z
+      .array(z.object({ atS: z.number().min(-60 * 86_400).max(120 * 86_400), eastMps: z.number().min(-10).max(10), northMps: z.number().min(-10).max(10) }))
+      .min(2)
+      .max(estimateLimits.seriesRows)
+      .superRefine((rows, ctx) => {
+        rows.forEach((row, i) => {
+          const before = rows[i - 1];
+          if (before && row.atS <= before.atS)
+            ctx.addIssue({ code: 'custom', path: [i, 'atS'], message: `Times must ascend: row ${i + 1} (${row.atS} s) is not after row ${i} (${before.atS} s)` });
+        });
+      }),
+  }),
+]);
+export type CurrentPart = z.infer<typeof currentPartSchema>;
+
+export const mixingSchema = z.discriminatedUnion('kind', [
+  /** Constant horizontal tensor. With `turnsWithCurrent` the along axis follows the current; otherwise `axisTowardDeg`. */
+  z.object({
+    kind: z.literal('constant'),
+    alongM2s: positive('m2/s', 1e5),
+    acrossM2s: positive('m2/s', 1e5),
+    turnsWithCurrent: z.boolean().default(true),
+    axisTowardDeg: towardDeg.default(0),
+  }),
+  /** Spread growing with the age of the cloud after Okubo 1971, times `varianceFactor`. */
+  z.object({ kind: z.literal('okubo'), varianceFactor: positive('times', 100).default(1) }),
+]);
+export type Mixing = z.infer<typeof mixingSchema>;
+
+export const openWaterSchema = z.object({
+  kind: z.literal('open'),
+  registerId: z.string().max(64).nullable().default(null),
+  waterKind: z.enum(['lake', 'harbour', 'estuary', 'coast']),
+  name: nameSchema,
+  /** Outer ring, then islands. */
+  area: z.array(ringSchema).min(1, 'Draw the outline of the water').max(200),
+  depthM: positive('m', 12_000),
+  /** Depth over which the substance is taken as mixed; not above the water depth. */
+  mixingDepthM: positive('m', 12_000),
+  current: z.array(currentPartSchema).max(40).default([]),
+  mixing: mixingSchema,
+  /** Straight shore used by images: the line through two positions, water on the side of the release. */
+  straightShore: z.object({ from: lonLatSchema, to: lonLatSchema }).nullable().default(null),
+  coefficientNote: textSchema(500).default(''),
+  calibrated: z.boolean().default(false),
+}).superRefine((water, ctx) => {
+  if (water.mixingDepthM > water.depthM)
+    ctx.addIssue({ code: 'custom', path: ['mixingDepthM'], message: `The mixing depth (${water.mixingDepthM} m) is above the water depth (${water.depthM} m): lower it` });
+});
+export type OpenWater = z.infer<typeof openWaterSchema>;
+
+export const estimateWaterSchema = z.discriminatedUnion('kind', [riverWaterSchema, openWaterSchema]);
+export type EstimateWater = z.infer<typeof estimateWaterSchema>;
+
+/* ---------- whom it may reach ---------- */
+
+export const receptorKinds = ['intake', 'bathing', 'irrigation', 'industry', 'hatchery', 'fish-farm', 'shellfish', 'ecological', 'other'] as const;
+export const receptorKindSchema = z.enum(receptorKinds);
+export type ReceptorKind = z.infer<typeof receptorKindSchema>;
+
+export const actionValueSchema = z.object({
+  /** Concentration, kg/m3 or counts/m3. */
+  value: positive('kg/m3', 1e16),
+  basis: textSchema(40).default(''),
+  /** 0 means the momentary value decides. */
+  averagingS: notNegative('s', 365 * 86_400).default(0),
+  source: textSchema(300).default(''),
+  label: textSchema(80).default(''),
+});
+export type ActionValue = z.infer<typeof actionValueSchema>;
+
+export const estimateReceptorSchema = z.object({
+  id: z.string().min(1).max(64),
+  registerId: z.string().max(64).nullable().default(null),
+  code: textSchema(20).default(''),
+  name: nameSchema,
+  kind: receptorKindSchema,
+  position: lonLatSchema,
+  channel: channelPlaceSchema.nullable().default(null),
+  depthM: notNegative('m', 12_000).nullable().default(null),
+  closingS: notNegative('s', 30 * 86_400).nullable().default(null),
+  storageS: notNegative('s', 365 * 86_400).nullable().default(null),
+  actionValues: z.array(actionValueSchema).max(estimateLimits.actionValues).default([]),
+});
+export type EstimateReceptor = z.infer<typeof estimateReceptorSchema>;
+
+/* ---------- the document ---------- */
+
+export const ESTIMATE_FORMAT = 'downreach-estimate/1';
+
+export const estimateDocumentSchema = z
+  .object({
+    format: z.literal(ESTIMATE_FORMAT),
+    title: textSchema(200).default(''),
+    /** T0: the zero of elapsed time, with the UTC offset in which times are shown. */
+    startAt: instantSchema,
+    horizonS: positive('s', estimateLimits.horizonS),
+    frameCount: z.number().int().min(2).max(estimateLimits.frames, `At most ${estimateLimits.frames} frames`).default(48),
+    substance: estimateSubstanceSchema,
+    water: estimateWaterSchema,
+    releases: z.array(releaseSchema).min(1, 'Place at least one release').max(estimateLimits.releases, `At most ${estimateLimits.releases} releases`),
+    receptors: z.array(estimateReceptorSchema).max(estimateLimits.receptors, `At most ${estimateLimits.receptors} receptors: leave out those not on this water`).default([]),
+    seed: z.number().int().min(0).max(4_294_967_295).default(1),
+    /** Relative error asked of the release-time integral. */
+    tolerance: z.number().min(1e-10).max(1e-2).default(1e-6),
+  })
+  .superRefine((doc, ctx) => {
+    const seen = new Set<string>();
+    doc.releases.forEach((release, i) => {
+      if (seen.has(release.id)) ctx.addIssue({ code: 'custom', path: ['releases', i, 'id'], message: `Two releases have the id ${release.id}` });
+      seen.add(release.id);
+      const starts = release.timing.kind === 'instantaneous' ? release.timing.atS : release.timing.kind === 'steady' ? release.timing.startS : (release.timing.rows[0]?.atS ?? 0);
+      if (starts >= doc.horizonS)
+        ctx.addIssue({ code: 'custom', path: ['releases', i, 'timing'], message: `The release starts ${starts} s after T0, at or after the end of the estimate (${doc.horizonS} s): lengthen the estimate or mend the time` });
+      const counts = release.amount.how === 'count' || release.amount.how === 'volume-count';
+      if (release.amount.how !== 'unknown' && counts !== (doc.substance.measure === 'count'))
+        ctx.addIssue({ code: 'custom', path: ['releases', i, 'amount', 'how'], message: doc.substance.measure === 'count' ? 'This substance is counted: give a count, not a mass' : 'This substance is weighed: give a mass, not a count' });
+    });
+    const receptorIds = new Set<string>();
+    doc.receptors.forEach((receptor, i) => {
+      if (receptorIds.has(receptor.id)) ctx.addIssue({ code: 'custom', path: ['receptors', i, 'id'], message: `Two receptors have the id ${receptor.id}` });
+      receptorIds.add(receptor.id);
+    });
+    if (doc.water.kind === 'river') {
+      const river = doc.water;
+      const byId = new Map(river.reaches.map((reach) => [reach.id, reach] as const));
+      if (byId.size !== river.reaches.length) ctx.addIssue({ code: 'custom', path: ['water', 'reaches'], message: 'Two reaches have the same id' });
+      river.reaches.forEach((reach, i) => {
+        if (reach.downstreamReachId !== null && !byId.has(reach.downstreamReachId))
+          ctx.addIssue({ code: 'custom', path: ['water', 'reaches', i, 'downstreamReachId'], message: `There is no reach ${reach.downstreamReachId}` });
+        const met = new Set<string>([reach.id]);
+        for (let next = reach.downstreamReachId; next !== null; ) {
+          if (met.has(next)) {
+            ctx.addIssue({ code: 'custom', path: ['water', 'reaches', i, 'downstreamReachId'], message: 'The reaches run in a circle: water must leave the network' });
+            break;
+          }
+          met.add(next);
+          next = byId.get(next)?.downstreamReachId ?? null;
+        }
+        if (!reach.hydraulics.some((row) => row.flowName === river.flow.name) && !river.flow.discharges.some((d) => d.reachId === reach.id))
+          ctx.addIssue({ code: 'custom', path: ['water', 'flow', 'name'], message: `Reach ${reach.name} has no figures for the flow "${river.flow.name}": choose another flow or give its discharge` });
+      });
+      const place = (channel: z.infer<typeof channelPlaceSchema> | null, path: (string | number)[]) => {
+        if (!channel) {
+          ctx.addIssue({ code: 'custom', path, message: 'On a river a place needs its reach, chainage and bank' });
+          return;
+        }
+        const reach = byId.get(channel.reachId);
+        if (!reach) {
+          ctx.addIssue({ code: 'custom', path: [...path, 'reachId'], message: `There is no reach ${channel.reachId}` });
+          return;
+        }
+        const top = reach.centreline[0]?.[2] ?? 0;
+        const bottom = reach.centreline[reach.centreline.length - 1]?.[2] ?? 0;
+        if (channel.chainageKm > top || channel.chainageKm < bottom)
+          ctx.addIssue({ code: 'custom', path: [...path, 'chainageKm'], message: `km ${channel.chainageKm} is past the end of ${reach.name}, which runs from km ${top} down to km ${bottom}` });
+      };
+      doc.releases.forEach((release, i) => place(release.channel, ['releases', i, 'channel']));
+      doc.receptors.forEach((receptor, i) => { if (receptor.channel) place(receptor.channel, ['receptors', i, 'channel']); });
+    }
+  });
+export type EstimateDocument = z.infer<typeof estimateDocumentSchema>;
+/** What a caller may write: defaults left out. */
+export type EstimateDocumentInput = z.input<typeof estimateDocumentSchema>;
