@@ -1,0 +1,94 @@
+import { randomBytes } from 'node:crypto';
+import Database from 'better-sqlite3';
+import session, { type SessionData } from 'express-session';
+import type { RequestHandler } from 'express';
+import type { Config } from '../config';
+
+declare module 'express-session' {
+  interface SessionData {
+    personId: string;
+    /** When the sign-in happened, ms since 1970: the absolute time-out counts from here. */
+    signedInAt: number;
+  }
+}
+
+/**
+ * Sessions live in a SQLite file of their own: a session write must neither wait for nor be rolled back with
+ * a transaction of the main database.
+ */
+export class SessionStore extends session.Store {
+  private readonly db: Database.Database;
+
+  constructor(file: string, private readonly now: () => number) {
+    super();
+    this.db = new Database(file);
+    this.db.pragma('journal_mode = WAL');
+    this.db.exec(`create table if not exists sessions (sid text primary key, person_id text not null, data text not null, expires_at integer not null);
+      create index if not exists sessions_person on sessions (person_id);
+      create table if not exists secrets (id integer primary key check (id = 1), value text not null);`);
+  }
+
+  /** Secret that signs the cookie, made once per installation. */
+  secret(): string {
+    this.db.prepare('insert or ignore into secrets (id, value) values (1, ?)').run(randomBytes(32).toString('hex'));
+    return (this.db.prepare('select value from secrets where id = 1').get() as { value: string }).value;
+  }
+
+  override get(sid: string, done: (error: unknown, data?: SessionData | null) => void): void {
+    const row = this.db.prepare('select data from sessions where sid = ? and expires_at > ?').get(sid, this.now()) as { data: string } | undefined;
+    done(null, row ? (JSON.parse(row.data) as SessionData) : null);
+  }
+
+  override set(sid: string, data: SessionData, done?: (error?: unknown) => void): void {
+    const expiresAt = data.cookie.expires ? new Date(data.cookie.expires).getTime() : this.now() + 86_400_000;
+    this.db.prepare('insert into sessions (sid, person_id, data, expires_at) values (?, ?, ?, ?) on conflict (sid) do update set person_id = excluded.person_id, data = excluded.data, expires_at = excluded.expires_at')
+      .run(sid, data.personId ?? '', JSON.stringify(data), expiresAt);
+    done?.();
+  }
+
+  override touch(sid: string, data: SessionData, done?: () => void): void {
+    if (data.cookie.expires) this.db.prepare('update sessions set expires_at = ? where sid = ?').run(new Date(data.cookie.expires).getTime(), sid);
+    done?.();
+  }
+
+  override destroy(sid: string, done?: (error?: unknown) => void): void {
+    this.db.prepare('delete from sessions where sid = ?').run(sid);
+    done?.();
+  }
+
+  /** Ends every session of a person; `exceptSid` keeps one. */
+  destroyAllOf(personId: string, exceptSid = ''): void {
+    this.db.prepare('delete from sessions where person_id = ? and sid <> ?').run(personId, exceptSid);
+  }
+
+  deleteExpired(): void {
+    this.db.prepare('delete from sessions where expires_at <= ?').run(this.now());
+  }
+
+  close(): void {
+    this.db.close();
+  }
+}
+
+export const SESSION_COOKIE = 'downreach.sid';
+
+/** Server-side session with an idle time-out (rolling cookie) and an absolute one from sign-in. */
+export function sessionMiddleware(config: Config, store: SessionStore, now: () => number): RequestHandler[] {
+  const load = session({
+    store,
+    name: SESSION_COOKIE,
+    secret: store.secret(),
+    resave: false,
+    saveUninitialized: false,
+    rolling: true,
+    cookie: { httpOnly: true, sameSite: 'lax', secure: 'auto', maxAge: config.idleMs },
+  });
+  const endOldSessions: RequestHandler = (req, res, next) => {
+    if (req.session.personId && now() - req.session.signedInAt > config.absoluteMs) {
+      req.session.regenerate(() => next());
+      return;
+    }
+    next();
+  };
+  return [load, endOldSessions];
+}
