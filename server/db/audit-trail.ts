@@ -8,6 +8,6 @@ export class AuditTrail {
   constructor(private readonly now: () => Date) {}
 
   async record(tx: EntityManager, actor: { id: string | null; name: string }, action: string, subject: AuditSubject, detail: Record<string, unknown> = {}): Promise<void> {
-    await tx.insert(AuditEntity, { at: this.now().toISOString(), personId: actor.id, personName: actor.name, action, subjectKind: subject.kind, subjectId: subject.id, detail });
+    await tx.insert(AuditEntity, { at: this.now().toISOString(), personId: actor.id, personName: actor.name, action, subjectKind: subject.kind, subjectId: subject.id, detail: detail as object });
   }
 }

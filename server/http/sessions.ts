@@ -83,8 +83,8 @@ export function sessionMiddleware(config: Config, store: SessionStore, now: () =
     rolling: true,
     cookie: { httpOnly: true, sameSite: 'lax', secure: 'auto', maxAge: config.idleMs },
   });
-  const endOldSessions: RequestHandler = (req, res, next) => {
-    if (req.session.personId && now() - req.session.signedInAt > config.absoluteMs) {
+  const endOldSessions: RequestHandler = (req, _res, next) => {
+    if (req.session.personId && now() - (req.session.signedInAt ?? 0) > config.absoluteMs) {
       req.session.regenerate(() => next());
       return;
     }
