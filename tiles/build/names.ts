@@ -1,0 +1,45 @@
+import type { Point } from '../district-points';
+
+/** kind decides the lettering; rank 1 is shown first. `turnDeg` turns the lettering anticlockwise. */
+export type Name = { text: string; at: Point; kind: 'town' | 'village' | 'sea' | 'bay' | 'lake' | 'marsh' | 'head' | 'hill' | 'district' | 'structure'; rank: number; minZoom: number; maxZoom?: number; turnDeg?: number; side?: 'left' | 'right' };
+
+/** Invented names of the Orlavane District, and where they are lettered. */
+export const names: Name[] = [
+  { text: 'Orlavane', at: [-116.86, -44.515], kind: 'district', rank: 1, minZoom: 5, maxZoom: 8 },
+  { text: 'Port Kestovar', at: [-117.28, -44.486], kind: 'town', rank: 1, minZoom: 8 },
+  { text: 'Essendray', at: [-117.066, -44.478], kind: 'town', rank: 1, minZoom: 8 },
+  { text: 'Nettimar', at: [-117.322, -44.42], kind: 'town', rank: 2, minZoom: 9 },
+  { text: 'Dunnaveth', at: [-116.79, -44.441], kind: 'town', rank: 2, minZoom: 9 },
+  { text: 'Thessaby', at: [-116.875, -44.548], kind: 'town', rank: 3, minZoom: 10 },
+  { text: 'Quillock Head', at: [-116.935, -44.33], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Larchgill', at: [-116.81, -44.37], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Stannock', at: [-116.715, -44.434], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Evarrow Mill', at: [-116.889, -44.507], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Low Meadows', at: [-116.866, -44.436], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Marlow Cross', at: [-117.12, -44.63], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Ferrow', at: [-117.258, -44.527], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Hollin', at: [-117.19, -44.44], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Skarrow', at: [-117.35, -44.6], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Upper Ollemar', at: [-116.59, -44.412], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Southwick Haven', at: [-117.095, -44.729], kind: 'village', rank: 4, minZoom: 11 },
+  { text: 'Branvell Bay', at: [-117.372, -44.482], kind: 'bay', rank: 1, minZoom: 9 },
+  { text: 'Nettimar Head', at: [-117.395, -44.385], kind: 'head', rank: 2, minZoom: 10, side: 'left' },
+  { text: 'Skarrow Point', at: [-117.385, -44.56], kind: 'head', rank: 2, minZoom: 10, side: 'left' },
+  { text: 'Ferrow Spit', at: [-117.3, -44.5042], kind: 'head', rank: 3, minZoom: 12, side: 'right' },
+  { text: 'Nettimar Sands', at: [-117.335, -44.4225], kind: 'head', rank: 3, minZoom: 12, side: 'right' },
+  { text: 'Cockle Flats', at: [-117.3165, -44.517], kind: 'marsh', rank: 3, minZoom: 12 },
+  { text: 'Lake Thessaby', at: [-116.841, -44.587], kind: 'lake', rank: 1, minZoom: 11, turnDeg: -33 },
+  { text: 'Ferrowmere Marsh', at: [-117.223, -44.5145], kind: 'marsh', rank: 2, minZoom: 12 },
+  { text: 'Kestovar Harbour', at: [-117.289, -44.4905], kind: 'lake', rank: 3, minZoom: 15, turnDeg: -6 },
+  { text: 'North Mole', at: [-117.3118, -44.4946], kind: 'structure', rank: 3, minZoom: 13, side: 'left' },
+  { text: 'Low Weir', at: [-117.1355, -44.4902], kind: 'structure', rank: 3, minZoom: 13, side: 'right' },
+  { text: 'Thessaby Dam', at: [-116.8805, -44.5535], kind: 'structure', rank: 3, minZoom: 13, side: 'right' },
+  { text: 'Essendray Bridge', at: [-117.0525, -44.4822], kind: 'structure', rank: 3, minZoom: 13, side: 'right' },
+  { text: 'V1 bridge', at: [-117.2485, -44.4982], kind: 'structure', rank: 3, minZoom: 13, side: 'right' },
+  { text: 'V2 bridge', at: [-116.7321, -44.4307], kind: 'structure', rank: 3, minZoom: 13, side: 'right' },
+  { text: 'Thessaby cove', at: [-116.829, -44.6066], kind: 'head', rank: 3, minZoom: 13, side: 'left' },
+  { text: 'Kestovar South', at: [-117.27, -44.512], kind: 'structure', rank: 3, minZoom: 13, side: 'left' },
+  { text: 'Evarrow Halt', at: [-116.9, -44.47], kind: 'structure', rank: 3, minZoom: 13, side: 'right' },
+  { text: 'Rail bridge', at: [-116.981, -44.4747], kind: 'structure', rank: 4, minZoom: 13, side: 'right' },
+  { text: 'Dunnaveth bridge', at: [-116.814, -44.448], kind: 'structure', rank: 4, minZoom: 13, side: 'right' },
+];
