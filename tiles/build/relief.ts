@@ -16,6 +16,13 @@ const hills: { at: Xy; heightM: number; radiusM: number }[] = [
   { at: toXy([-116.7, -44.3]), heightM: 230, radiusM: 8_000 },
 ];
 
+/** Places whose depth is told elsewhere: the pens, the desalination intake and the outfall. */
+const deeps: { at: Xy; moreM: number; radiusM: number }[] = [
+  { at: toXy([-117.372, -44.545]), moreM: 11, radiusM: 1_300 },
+  { at: toXy([-117.352, -44.428]), moreM: 1.2, radiusM: 900 },
+  { at: toXy([-117.375, -44.447]), moreM: 2.2, radiusM: 1_500 },
+];
+
 /** Heights and depths of the invented island: ridges away from rivers and shores, valleys along them, a shelving sea. */
 export function makeGround(coast: readonly Xy[], waters: readonly Xy[][], rivers: readonly Xy[][], streams: readonly Xy[][]): Ground {
   const size = grid.nx * grid.ny;
@@ -44,7 +51,8 @@ export function makeGround(coast: readonly Xy[], waters: readonly Xy[][], rivers
     const gully = 0.5 + 0.5 * smoothStep(toStreamM[i]! / 2_400);
     heightM[i] = isLand[i] ? (rise * valley * gully + knolls * Math.min(1, toShoreM[i]! / 900)) * (0.55 + 0.9 * rough) : 0;
     const offshore = Math.max(0, toLandM[i]! - 180) * (0.75 + 0.5 * fractalNoise(x / 5_000, y / 5_000, 3, 53));
-    depthM[i] = isLand[i] ? 0 : 19.5 * (1 - Math.exp(-offshore / 2_900)) + Math.max(0, offshore - 8_500) * 0.0021;
+    const deeper = deeps.reduce((sum, deep) => sum + deep.moreM * Math.exp(-((Math.hypot(x - deep.at[0], y - deep.at[1]) / deep.radiusM) ** 2)), 0) * Math.min(1, toLandM[i]! / 900);
+    depthM[i] = isLand[i] ? 0 : 19.5 * (1 - Math.exp(-offshore / 2_900)) + Math.max(0, offshore - 8_500) * 0.0021 + deeper;
   }
   return { heightM, depthM, isLand, toRiverM, toShoreM };
 }
