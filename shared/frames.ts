@@ -56,28 +56,53 @@ export function writeMessage(head: StreamHead, payload: Uint8Array = new Uint8Ar
   return out;
 }
 
-/** Feeds chunks of any size, gives whole messages; the payload is a copy. */
+/**
+ * Feeds chunks of any size, gives whole messages; the payload is a copy. Bytes that wait for the rest of their message
+ * are kept in a buffer that grows by doubling: each byte is copied a bounded number of times however small the chunks.
+ */
 export class MessageReader {
-  private kept = new Uint8Array(0);
+  private buffer = new Uint8Array(65_536);
+  private from = 0;
+  private to = 0;
+  private readonly text = new TextDecoder();
+
+  /** Bytes of a message whose end has not come yet. */
+  get pendingBytes(): number {
+    return this.to - this.from;
+  }
 
   push(chunk: Uint8Array): { head: StreamHead; payload: Uint8Array }[] {
-    const all = new Uint8Array(this.kept.length + chunk.length);
-    all.set(this.kept);
-    all.set(chunk, this.kept.length);
-    const view = new DataView(all.buffer);
+    this.keep(chunk);
     const out: { head: StreamHead; payload: Uint8Array }[] = [];
-    let at = 0;
-    while (at + 4 <= all.length) {
-      const headLength = view.getUint32(at, true);
-      if (at + 8 + headLength > all.length) break;
-      const payloadLength = view.getUint32(at + 4 + headLength, true);
-      const end = at + 8 + headLength + payloadLength;
-      if (end > all.length) break;
-      const head = JSON.parse(new TextDecoder().decode(all.subarray(at + 4, at + 4 + headLength))) as StreamHead;
-      out.push({ head, payload: all.slice(at + 8 + headLength, end) });
-      at = end;
-    }
-    this.kept = all.slice(at);
+    for (let message = this.take(); message; message = this.take()) out.push(message);
     return out;
+  }
+
+  private keep(chunk: Uint8Array): void {
+    if (this.to + chunk.length > this.buffer.length) {
+      const pending = this.buffer.subarray(this.from, this.to);
+      const needed = pending.length + chunk.length;
+      if (needed > this.buffer.length / 2) {
+        const wider = new Uint8Array(2 * needed);
+        wider.set(pending);
+        this.buffer = wider;
+      } else this.buffer.copyWithin(0, this.from, this.to);
+      this.to = pending.length;
+      this.from = 0;
+    }
+    this.buffer.set(chunk, this.to);
+    this.to += chunk.length;
+  }
+
+  private take(): { head: StreamHead; payload: Uint8Array } | null {
+    if (this.pendingBytes < 4) return null;
+    const view = new DataView(this.buffer.buffer, this.from, this.pendingBytes);
+    const headLength = view.getUint32(0, true);
+    if (this.pendingBytes < 8 + headLength) return null;
+    const end = 8 + headLength + view.getUint32(4 + headLength, true);
+    if (this.pendingBytes < end) return null;
+    const message = this.buffer.subarray(this.from, this.from + end);
+    this.from += end;
+    return { head: JSON.parse(this.text.decode(message.subarray(4, 4 + headLength))) as StreamHead, payload: message.slice(8 + headLength) };
   }
 }

@@ -1,0 +1,51 @@
+import { mapInk, type MapTheme } from './palette';
+
+/** Font of figures on the map; the family is the page's own. */
+export const mapFont = (px: number, weight: 400 | 600 = 600): string => `${weight} ${px}px "Source Sans 3", system-ui, sans-serif`;
+
+type Box = { left: number; top: number; right: number; bottom: number };
+
+/** Text with a halo in the colour of the ground, so that it is read on any band. */
+export function haloText(context: CanvasRenderingContext2D, theme: MapTheme, text: string, x: number, y: number, haloPx = 3.5): void {
+  const ink = mapInk[theme];
+  context.textAlign = 'center';
+  context.textBaseline = 'middle';
+  context.lineJoin = 'round';
+  context.setLineDash([]);
+  context.lineWidth = haloPx;
+  context.strokeStyle = ink.paper;
+  context.strokeText(text, x, y);
+  context.fillStyle = ink.ink;
+  context.fillText(text, x, y);
+}
+
+/** Prints figures on lines where they are seen and do not cover one another. */
+export class LabelBook {
+  private readonly taken: Box[] = [];
+
+  constructor(
+    private readonly context: CanvasRenderingContext2D,
+    private readonly theme: MapTheme,
+    private readonly seen: Box,
+  ) {}
+
+  /** Prints at the first of the places that is in sight and free; false when there is none. */
+  print(text: string, places: readonly (readonly [number, number])[], fontPx: number, weight: 400 | 600): boolean {
+    this.context.font = mapFont(fontPx, weight);
+    const half = this.context.measureText(text).width / 2 + 3;
+    for (const [x, y] of places) {
+      const box = { left: x - half, right: x + half, top: y - fontPx * 0.6, bottom: y + fontPx * 0.6 };
+      if (!this.isFree(box)) continue;
+      this.taken.push(box);
+      haloText(this.context, this.theme, text, x, y);
+      return true;
+    }
+    return false;
+  }
+
+  private isFree(box: Box): boolean {
+    const { seen } = this;
+    if (box.left < seen.left || box.right > seen.right || box.top < seen.top || box.bottom > seen.bottom) return false;
+    return this.taken.every((other) => box.right < other.left || box.left > other.right || box.bottom < other.top || box.top > other.bottom);
+  }
+}
