@@ -130,7 +130,7 @@ write('ways', [
   feature('wall', street([-116.8826, -44.5541], [-116.8776, -44.552])),
   feature('weir', line(across(reaches.r3, 14.02, 34))),
   feature('wall', line(across(reaches.r1, 35.5, 32))),
-  feature('jetty', street([-116.8135, -44.6122], [-116.812, -44.608])),
+  feature('jetty', street([-116.8113, -44.6101], [-116.812, -44.608])),
 ]);
 
 /* ---------- fields and tufts ---------- */

@@ -10,7 +10,7 @@ const oceans: [text: string, lon: number, lat: number, minZoom: number, maxZoom:
   ['South Atlantic Ocean', -15, -28, 2, 6],
   ['Indian Ocean', 78, -22, 2, 6],
   ['Southern Ocean', 100, -61, 2, 6],
-  ['Southern Ocean', -60, -62, 3, 6],
+  ['Southern Ocean', -25, -60, 3, 6],
   ['Arctic Ocean', -160, 78, 2, 6],
   ['Mediterranean Sea', 18, 34.8, 4, 6],
   ['Tasman Sea', 160, -40, 3, 6],

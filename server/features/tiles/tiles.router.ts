@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import { Router, type Response } from 'express';
 import type { TileIndex } from '../../../shared/schemas/tiles';
-import { firstPlaces, MapStore, MAX_ZOOM } from '../../../tiles/map-store';
+import { MapStore, MAX_ZOOM } from '../../../tiles/map-store';
 import { sharedRenderer } from '../../../tiles/render/renderer';
 import { themes, type Theme } from '../../../tiles/render/style';
 import { sendProblem } from '../../http/problems';
@@ -38,7 +38,7 @@ function sendTile(res: Response, bytes: Buffer, format: string): void {
 export type TilesRouter = Router & { close: () => void };
 
 /**
- * GET /tiles/index.json and GET /tiles/:set/:z/:x/:y.png, open to everybody. `set` is day, night, or the name of an
+ * Mounted at /tiles: GET index.json and GET :set/:z/:x/:y.png, open to everybody. `set` is day, night, or the name of an
  * MBTiles file in the folder. The product's own tiles are drawn when they are missing, so its map is never blank.
  */
 export function createTilesRouter({ folder }: { folder: string }): TilesRouter {
@@ -47,12 +47,12 @@ export function createTilesRouter({ folder }: { folder: string }): TilesRouter {
   library.scan();
   const router = Router();
 
-  router.get('/tiles/index.json', (_req, res) => {
+  router.get('/index.json', (_req, res) => {
     const found = library.list();
     res.set('cache-control', 'no-cache').json({ maps: [...ownMaps, ...found.maps], unusable: found.unusable } satisfies TileIndex);
   });
 
-  router.get('/tiles/:set/:z/:x/:y.:format', async (req, res) => {
+  router.get('/:set/:z/:x/:y.:format', async (req, res) => {
     const { set, z, x, y, format } = req.params;
     const place = tileNumbers(z, x, y);
     if (place && isTheme(set) && place.zoom <= MAX_ZOOM && format === 'png') return sendTile(res, await store.tile(set, place), 'png');
@@ -61,7 +61,7 @@ export function createTilesRouter({ folder }: { folder: string }): TilesRouter {
     return sendProblem(res, 'not-found', `There is no tile ${z}/${x}/${y} in the map "${set}"`);
   });
 
-  router.use('/tiles', (req, res) => sendProblem(res, 'not-found', `No ${req.method} ${req.baseUrl}${req.path} here`));
+  router.use((req, res) => sendProblem(res, 'not-found', `No ${req.method} ${req.baseUrl}${req.path} here`));
 
   return Object.assign(router, {
     close: () => {
@@ -69,19 +69,4 @@ export function createTilesRouter({ folder }: { folder: string }): TilesRouter {
       library.close();
     },
   });
-}
-
-/**
- * Draws what the first look at the map needs and the folder does not hold yet: about 570 tiles, 3 s, 10 MB on a first
- * start, nothing afterwards. Other work runs between two tiles.
- */
-export async function ensureTiles({ folder, log }: { folder: string; log: (line: string) => void }): Promise<void> {
-  const startedMs = performance.now();
-  const store = new MapStore(sharedRenderer(), folder);
-  try {
-    const drawn = await store.fill(firstPlaces());
-    if (drawn > 0) log(`Map: drew ${drawn} tiles in ${((performance.now() - startedMs) / 1000).toFixed(1)} s; the rest is drawn when it is looked at`);
-  } finally {
-    store.close();
-  }
 }

@@ -11,7 +11,8 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { tileIndexSchema } from '../../../shared/schemas/tiles';
 import { latitudeOf, mercatorX, mercatorY } from '../../../tiles/render/mercator';
 import { palettes } from '../../../tiles/render/style';
-import { createTilesRouter, type TilesRouter } from './tiles.routes';
+import { ensureTiles } from './ensure-tiles';
+import { createTilesRouter, type TilesRouter } from './tiles.router';
 
 const folder = mkdtempSync(join(tmpdir(), 'downreach-tiles-'));
 let router: TilesRouter;
@@ -20,7 +21,7 @@ let base = '';
 
 beforeAll(async () => {
   router = createTilesRouter({ folder });
-  server = createServer(express().use(router));
+  server = createServer(express().use('/tiles', router));
   await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
   base = `http://127.0.0.1:${(server.address() as AddressInfo).port}`;
 });
@@ -90,7 +91,7 @@ describe('the product map', () => {
     const first = Buffer.from(await (await get(path)).arrayBuffer());
     const other = mkdtempSync(join(tmpdir(), 'downreach-tiles-'));
     const second = createTilesRouter({ folder: other });
-    const twin = createServer(express().use(second));
+    const twin = createServer(express().use('/tiles', second));
     await new Promise<void>((resolve) => twin.listen(0, '127.0.0.1', resolve));
     const answer = Buffer.from(await (await fetch(`http://127.0.0.1:${(twin.address() as AddressInfo).port}${path}`)).arrayBuffer());
     twin.closeAllConnections();
@@ -137,6 +138,19 @@ describe('maps of the operator', () => {
     expect(reasons.get('my map.mbtiles')).toContain('Rename');
   });
 });
+
+it('a first start draws what the first look needs, a second one nothing', async () => {
+  const fresh = mkdtempSync(join(tmpdir(), 'downreach-tiles-'));
+  const lines: string[] = [];
+  await ensureTiles({ folder: fresh, log: (line) => lines.push(line) });
+  await ensureTiles({ folder: fresh, log: (line) => lines.push(line) });
+  const db = new Database(join(fresh, 'downreach-night.mbtiles'), { readonly: true });
+  const { most } = db.prepare('SELECT max(zoom_level) AS most FROM tiles').get() as { most: number };
+  db.close();
+  rmSync(fresh, { recursive: true, force: true });
+  expect(lines).toHaveLength(1);
+  expect(most).toBe(12);
+}, 60_000);
 
 it('latitude and mercator row are inverse to each other', () => {
   for (const lat of [-84, -44.5, 0, 51, 84]) expect(latitudeOf(mercatorY(lat))).toBeCloseTo(lat, 9); // rounding of doubles
