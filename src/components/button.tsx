@@ -1,4 +1,4 @@
-import type { ButtonHTMLAttributes, Ref } from 'react';
+import type { ButtonHTMLAttributes, ReactElement, Ref } from 'react';
 import { Link, type LinkProps } from 'react-router-dom';
 import { classNames } from '../lib/class-names';
 import { Icon, type IconName } from './icon';
@@ -18,7 +18,8 @@ export const buttonClass = (kind: ButtonKind, className?: string): string => cla
 
 export type ButtonProps = ButtonHTMLAttributes<HTMLButtonElement> & {
   kind?: ButtonKind;
-  icon?: IconName;
+  /** One of our marks by name, or a mark of the caller's own. */
+  icon?: IconName | ReactElement;
   /** Says that the act is under way: the button keeps its place, refuses a second press and tells screen readers. */
   isBusy?: boolean;
   ref?: Ref<HTMLButtonElement>;
@@ -28,17 +29,19 @@ export type ButtonProps = ButtonHTMLAttributes<HTMLButtonElement> & {
 export function Button({ kind = 'plain', icon, isBusy = false, type = 'button', className, children, disabled, ...rest }: ButtonProps) {
   return (
     <button {...rest} type={type} disabled={disabled || isBusy} aria-busy={isBusy || undefined} className={buttonClass(kind, classNames(!children && 'min-w-10 px-0! pointer-coarse:min-w-11 max-sm:min-w-11', className))}>
-      {icon && <Icon name={icon} />}
+      <ButtonMark icon={icon} />
       {children}
     </button>
   );
 }
 
-export function ButtonLink({ kind = 'plain', icon, className, children, ...rest }: LinkProps & { kind?: ButtonKind; icon?: IconName }) {
+export function ButtonLink({ kind = 'plain', icon, className, children, ...rest }: LinkProps & { kind?: ButtonKind; icon?: IconName | ReactElement }) {
   return (
     <Link {...rest} className={buttonClass(kind, className)}>
-      {icon && <Icon name={icon} />}
+      <ButtonMark icon={icon} />
       {children}
     </Link>
   );
 }
+
+const ButtonMark = ({ icon }: { icon: IconName | ReactElement | undefined }) => (typeof icon === 'string' ? <Icon name={icon} /> : (icon ?? null));
