@@ -3,13 +3,16 @@ import { DataSource, type EntityManager } from 'typeorm';
 import { entities } from './entities';
 import { migrations } from './migrations';
 
+/** One transaction while it is open. What it started and left running must not fall into it afterwards. */
+type Unit = { tx: EntityManager; isOpen: boolean };
+
 /**
  * One writer behind a queue, one read-only reader. better-sqlite3 has a single connection per DataSource, so
  * overlapping transactions on it would mix; every unit of work therefore waits its turn.
  */
 export class Database {
   private tail: Promise<unknown> = Promise.resolve();
-  private readonly current = new AsyncLocalStorage<EntityManager>();
+  private readonly current = new AsyncLocalStorage<Unit>();
 
   private constructor(
     private readonly writer: DataSource,
@@ -25,16 +28,30 @@ export class Database {
 
   /** Runs `work` alone in one transaction. Inside it only the database is awaited. A nested call joins. */
   write<T>(work: (tx: EntityManager) => Promise<T>): Promise<T> {
-    const outer = this.current.getStore();
-    if (outer) return work(outer);
-    const run = this.tail.then(() => this.writer.transaction((tx) => this.current.run(tx, () => work(tx))));
+    const outer = this.openUnit();
+    if (outer) return work(outer.tx);
+    const run = this.tail.then(() => this.transact(work));
     this.tail = run.catch(() => undefined);
     return run;
   }
 
+  private async transact<T>(work: (tx: EntityManager) => Promise<T>): Promise<T> {
+    const unit: Partial<Unit> = {};
+    try {
+      return await this.writer.transaction((tx) => this.current.run(Object.assign(unit, { tx, isOpen: true }), () => work(tx)));
+    } finally {
+      unit.isOpen = false;
+    }
+  }
+
   /** Manager for reading: the open transaction inside `write`, committed rows elsewhere. */
   get read(): EntityManager {
-    return this.current.getStore() ?? this.reader.manager;
+    return this.openUnit()?.tx ?? this.reader.manager;
+  }
+
+  private openUnit(): Unit | undefined {
+    const unit = this.current.getStore();
+    return unit?.isOpen ? unit : undefined;
   }
 
   async close(): Promise<void> {

@@ -1,5 +1,23 @@
 import type { Deps } from '../deps';
 import type { Route } from '../http/routes';
+import { estimateRoutes } from './estimates/estimate.routes';
+import { eventRoutes } from './events/event.routes';
+import { incidentRoutes } from './incidents/incident.routes';
+import { runRoutes } from './runs/run.routes';
+import { scenarioRoutes } from './scenarios/scenario.routes';
+import { systemRoutes } from './system/system.routes';
+import { watchRoutes } from './watch/watch.routes';
 
 /** Every route of the API. The app mounts them, the OpenAPI page describes them, the tests walk them. */
-export const allRoutes = (_deps: Deps): Route[] => [];
+export function allRoutes(deps: Deps): Route[] {
+  const routes: Route[] = [
+    ...watchRoutes(deps),
+    ...incidentRoutes(deps),
+    ...scenarioRoutes(deps),
+    ...runRoutes(deps),
+    ...estimateRoutes(deps),
+    ...eventRoutes(deps),
+    ...systemRoutes(() => routes),
+  ];
+  return routes;
+}

@@ -21,6 +21,8 @@ export class SessionStore extends session.Store {
 
   constructor(file: string, private readonly now: () => number) {
     super();
+    // Every open event stream listens for 'ended', which is told whenever sessions were ended.
+    this.setMaxListeners(0);
     this.db = new Database(file);
     this.db.pragma('journal_mode = WAL');
     this.db.exec(`create table if not exists sessions (sid text primary key, person_id text not null, data text not null, expires_at integer not null);
@@ -53,12 +55,14 @@ export class SessionStore extends session.Store {
 
   override destroy(sid: string, done?: (error?: unknown) => void): void {
     this.db.prepare('delete from sessions where sid = ?').run(sid);
+    this.emit('ended');
     done?.();
   }
 
   /** Ends every session of a person; `exceptSid` keeps one. */
   destroyAllOf(personId: string, exceptSid = ''): void {
     this.db.prepare('delete from sessions where person_id = ? and sid <> ?').run(personId, exceptSid);
+    this.emit('ended');
   }
 
   deleteExpired(): void {

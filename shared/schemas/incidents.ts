@@ -30,8 +30,11 @@ export const nextArrivalSchema = z.object({
   receptorCode: z.string(),
   receptorName: z.string(),
   verdict: z.string(),
+  /** Rounded down to the minute-step of shared/clock-time.ts: never later than reckoned. */
   earliestAt: z.string(),
-  likelyAt: z.string(),
+  /** Null where only the high amount exceeds the action value. */
+  likelyAt: z.string().nullable(),
+  /** Latest time to begin closing: earliest arrival less the closing time; null where none is registered. */
   closeByAt: z.string().nullable(),
 });
 export type NextArrival = z.infer<typeof nextArrivalSchema>;
@@ -57,13 +60,41 @@ export type Incident = z.infer<typeof incidentSchema>;
 
 /* ---------- scenarios ---------- */
 
+const DRAFT_DEPTH = 32;
+
+/** Walks level by level, so that hostile nesting cannot exhaust the stack. */
+function isNestedAtMost(value: unknown, depth: number): boolean {
+  let level: unknown[] = [value];
+  for (let i = 0; i <= depth; i++) {
+    level = level.flatMap((item) => (item !== null && typeof item === 'object' ? Object.values(item) : []));
+    if (level.length === 0) return true;
+  }
+  return false;
+}
+
 /** A draft is kept as it is typed, so it may be unfinished: any JSON object up to the size limit. */
-export const draftSchema = z.record(z.string(), z.unknown());
+export const draftSchema = z.record(z.string(), z.unknown()).refine((draft) => isNestedAtMost(draft, DRAFT_DEPTH), `A draft may be nested ${DRAFT_DEPTH} levels deep at most`);
 export const scenarioCreateSchema = z.object({ name: nameSchema, draft: draftSchema.default({}), copyOfScenarioId: z.string().max(64).nullable().default(null) });
 export const scenarioRenameSchema = z.object({ name: nameSchema });
 /** `draftVersion` is the one the editor started from; another one means somebody else has written since. */
 export const draftSaveSchema = z.object({ draft: draftSchema, draftVersion: z.number().int().min(0) });
 export const revisionCreateSchema = z.object({ document: estimateDocumentSchema, draftVersion: z.number().int().min(0), note: textSchema(500).default('') });
+
+/** Answer of saving a revision: its number and the run that was queued with it. */
+export const revisionCreatedSchema = z.object({ number: z.number().int(), runId: z.string() });
+export type RevisionCreated = z.infer<typeof revisionCreatedSchema>;
+
+export const revisionSchema = z.object({
+  scenarioId: z.string(),
+  number: z.number().int(),
+  document: estimateDocumentSchema,
+  /** SHA-256 of the document as canonical JSON, hexadecimal. */
+  documentHash: z.string(),
+  note: z.string(),
+  savedAt: z.string(),
+  savedBy: z.string(),
+});
+export type Revision = z.infer<typeof revisionSchema>;
 
 export const revisionSummarySchema = z.object({ number: z.number().int(), savedAt: z.string(), savedBy: z.string(), note: z.string(), runId: z.string().nullable(), runState: z.string().nullable() });
 export const scenarioSchema = z.object({
@@ -117,6 +148,13 @@ export const runSchema = z.object({
   abilities: z.object({ cancel: z.boolean() }),
 });
 export type Run = z.infer<typeof runSchema>;
+
+/** A run as it stands in lists. */
+export const runSummarySchema = runSchema.omit({ document: true, result: true });
+export type RunSummary = z.infer<typeof runSummarySchema>;
+
+/** POST /api/scenarios/:id/runs: solve a saved revision again. */
+export const runCreateSchema = z.object({ revisionNumber: z.number().int().min(1, 'Revisions are numbered from 1') });
 
 /* ---------- what waits, what changes ---------- */
 
