@@ -31,6 +31,8 @@ export class CanvasOverlay extends L.Layer {
     this.host = L.DomUtil.create('div', 'leaflet-zoom-animated', map.getPane(this.paneName));
     for (const className of this.classNames) L.DomUtil.create('canvas', className, this.host);
     this.lay();
+    // Figures drawn before the page's font has come would keep the stand-in font.
+    void document.fonts.ready.then(() => this.redraw());
     return this;
   }
 

@@ -12,6 +12,7 @@ import { MapStateContext, type MapTool } from './map-tools';
 import { MeasureTool } from './measure-tool';
 import type { MapTheme } from './palette';
 import { PointerRelay } from './pointer-relay';
+import { ZoomClasses } from './zoom-classes';
 
 export type InitialView = { centre: LonLat; zoom: number } | { bounds: [LonLat, LonLat] };
 
@@ -78,13 +79,12 @@ export function DistrictMap({ theme, label, onClick, onPointer, initialView, fit
           zoomControl={false}
           attributionControl={false}
           keyboard={false}
-          zoomSnap={0.5}
-          zoomDelta={1}
           wheelPxPerZoomLevel={90}
           worldCopyJump
           maxBounds={[[-85.05, -540], [85.05, 540]]}
           {...('bounds' in first ? { bounds: toLeaflet(first.bounds), boundsOptions: { padding: [24, 24] } } : { center: [first.centre[1], first.centre[0]] as L.LatLngTuple, zoom: first.zoom })}
         >
+          <ZoomClasses />
           <BaseTiles theme={theme} />
           <PointerRelay onClick={onClick} onPointer={onPointer} />
           <MapKeys onClick={onClick} onKeyboard={setByKeyboard} fitTo={fitTo ?? ('bounds' in first ? first.bounds : null)} />

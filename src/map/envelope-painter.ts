@@ -14,10 +14,10 @@ export function paintEnvelope(context: CanvasRenderingContext2D, prepared: Prepa
   context.save();
   if (water) context.clip(water, 'evenodd');
   context.beginPath();
-  const highest = { x: 0, y: Infinity };
+  const lowest = { x: 0, y: -Infinity };
   for (const entry of prepared.sheets) {
-    if (entry.thin) outlineRibbon(context, entry.thin, entry.widthPx(view), view, highest);
-    else strokeAndNote(context, traceLines(entry.full, entry.full.bands[0]!, entry.full.placeIn(view), Infinity), view, highest);
+    if (entry.thin) outlineRibbon(context, entry.thin, entry.widthPx(view), view, lowest);
+    else strokeAndNote(context, traceLines(entry.full, entry.full.bands[0]!, entry.full.placeIn(view), Infinity), view, lowest);
   }
   context.lineJoin = 'round';
   context.lineWidth = 3.5;
@@ -31,28 +31,28 @@ export function paintEnvelope(context: CanvasRenderingContext2D, prepared: Prepa
   context.stroke();
   context.restore();
   const level = prepared.levels[0];
-  if (level && highest.y < Infinity) new LabelBook(context, options.theme, view.seen).print(`reached at any time: ${concentrationText(level.value, options.measure)}`, [[highest.x, highest.y - 12], [highest.x, highest.y + 14]], 11, 400);
+  if (level && lowest.y > -Infinity) new LabelBook(context, options.theme, view.seen).print(`reached at any time: ${concentrationText(level.value, options.measure)}`, [[lowest.x, lowest.y + 13]], 11, 400);
 }
 
-function strokeAndNote(sink: PathSink, lines: Lines, view: MapView, highest: { x: number; y: number }): void {
+function strokeAndNote(sink: PathSink, lines: Lines, view: MapView, lowest: { x: number; y: number }): void {
   strokeLines(lines, sink);
-  for (let k = 0; k < lines.points.length; k += 2) note(lines.points[k]!, lines.points[k + 1]!, view, highest);
+  for (let k = 0; k < lines.points.length; k += 2) note(lines.points[k]!, lines.points[k + 1]!, view, lowest);
 }
 
-/** Remembers the highest vertex in sight that leaves room for a line of words. */
-function note(x: number, y: number, { seen }: MapView, highest: { x: number; y: number }): void {
-  if (y >= highest.y || y < seen.top + 24 || x < seen.left + 110 || x > seen.right - 110 || y > seen.bottom - 24) return;
-  highest.x = x;
-  highest.y = y;
+/** Remembers the lowest vertex in sight that leaves room for a line of words below it; the figures of the isolines prefer the top. */
+function note(x: number, y: number, { seen }: MapView, lowest: { x: number; y: number }): void {
+  if (y <= lowest.y || y < seen.top || x < seen.left + 110 || x > seen.right - 110 || y > seen.bottom - 60) return;
+  lowest.x = x;
+  lowest.y = y;
 }
 
 /** Rings of the thin sheet widened to both sides, so that the outline runs beside the ribbon. */
-function outlineRibbon(sink: PathSink, sheet: Sheet, ribbon: number, view: MapView, highest: { x: number; y: number }): void {
+function outlineRibbon(sink: PathSink, sheet: Sheet, ribbon: number, view: MapView, lowest: { x: number; y: number }): void {
   const place = sheet.placeIn(view);
   const grow = CLEAR_OF_RIBBON_PX / ribbon;
   const wider: typeof place = (x, y, out) => {
     place(x <= 0 ? -grow : x >= 1 ? 1 + grow : x, y, out);
-    note(out[0]!, out[1]!, view, highest);
+    note(out[0]!, out[1]!, view, lowest);
   };
   traceRings(sheet.bands[0]!, wider, sheet.bendEvery(view), sink);
 }

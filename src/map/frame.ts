@@ -24,25 +24,29 @@ export function assertWholeFrame({ head, codes }: Frame): void {
 }
 
 /**
- * Codes in which nodes without an estimate carry the mean of their neighbours, so that isolines run straight up to
- * the hatched part instead of closing in front of it. The very array when every node has an estimate.
+ * Codes in which nodes without a value of their own (no estimate, or on land) carry the mean of their neighbours, so
+ * that isolines run straight up to the shore or the hatched part instead of closing in front of it. The very array
+ * when every node has its value.
+ *
+ * @param dry 1 for nodes on land; null when none is
  */
-export function bridgedCodes(codes: Uint16Array, nx: number, ny: number): Uint16Array {
-  if (!codes.includes(NO_ESTIMATE)) return codes;
+export function bridgedCodes(codes: Uint16Array, nx: number, ny: number, dry: Uint8Array | null = null): Uint16Array {
+  if (!codes.includes(NO_ESTIMATE) && !dry?.includes(1)) return codes;
   const out = codes.slice();
   for (let j = 0; j < ny; j++)
-    for (let i = 0; i < nx; i++) if (codes[j * nx + i] === NO_ESTIMATE) out[j * nx + i] = neighbourMean(codes, nx, ny, i, j);
+    for (let i = 0; i < nx; i++) if (isBare(codes, dry, j * nx + i)) out[j * nx + i] = neighbourMean(codes, dry, nx, ny, i, j);
   return out;
 }
 
-function neighbourMean(codes: Uint16Array, nx: number, ny: number, i: number, j: number): number {
+const isBare = (codes: Uint16Array, dry: Uint8Array | null, node: number): boolean => codes[node] === NO_ESTIMATE || dry?.[node] === 1;
+
+function neighbourMean(codes: Uint16Array, dry: Uint8Array | null, nx: number, ny: number, i: number, j: number): number {
   let sum = 0;
   let count = 0;
   for (let y = Math.max(0, j - 1); y <= Math.min(ny - 1, j + 1); y++)
     for (let x = Math.max(0, i - 1); x <= Math.min(nx - 1, i + 1); x++) {
-      const code = codes[y * nx + x]!;
-      if (code === NO_ESTIMATE) continue;
-      sum += code;
+      if (isBare(codes, dry, y * nx + x)) continue;
+      sum += codes[y * nx + x]!;
       count++;
     }
   return count === 0 ? 0 : Math.round(sum / count);

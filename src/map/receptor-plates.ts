@@ -9,10 +9,10 @@ export const receptorPlates: Record<ReceptorKind, { letter: string; name: string
   irrigation: { letter: 'I', name: 'irrigation offtake', outline: 'M-15 -13H15L9 14H-9Z' },
   industry: { letter: 'N', name: 'industrial intake', outline: 'M-8 -14H8L16 0L8 14H-8L-16 0Z' },
   hatchery: { letter: 'H', name: 'hatchery', outline: 'M0 -16L15 -3L9 14H-9L-15 -3Z' },
-  'fish-farm': { letter: 'F', name: 'fish farm', outline: 'M-9 -14H9A14 14 0 0 1 9 14H-9A14 14 0 0 1 -9 -14Z' },
+  'fish-farm': { letter: 'F', name: 'fish farm', outline: 'M0 -17L17 0L0 17L-17 0Z' },
   shellfish: { letter: 'S', name: 'shellfish water', outline: 'M-15 -4A15 11 0 0 1 15 -4L6 14H-6Z' },
   ecological: { letter: 'E', name: 'ecological site', outline: 'M0 -17L17 13H-17Z' },
-  other: { letter: 'O', name: 'other receptor', outline: 'M-13 -14H13A3 3 0 0 1 16 -11V11A3 3 0 0 1 13 14H-13A3 3 0 0 1 -16 11V-11A3 3 0 0 1 -13 -14Z' },
+  other: { letter: 'O', name: 'other receptor', outline: 'M-7 -15H7L15 -7V7L7 15H-7L-15 7V-7Z' },
 };
 
 /** How a plate is filled: filled may exceed, open is not predicted to, hatched cannot be estimated, plain has nothing to judge by. */

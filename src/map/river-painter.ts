@@ -1,5 +1,5 @@
 import { alongCourse, coursePoint, ribbonPx, type Course } from './channel-course';
-import { haloText, mapFont } from './label-book';
+import { haloText, LabelBook, mapFont } from './label-book';
 import type { MapView } from './mercator';
 import { mapInk, type MapTheme } from './palette';
 
@@ -24,9 +24,10 @@ export function paintRiver(context: CanvasRenderingContext2D, reaches: readonly 
     });
     context.stroke();
   }
+  const book = new LabelBook(context, theme, { left: 0, top: 0, right: view.width, bottom: view.height });
   for (const reach of reaches) {
     paintArrows(context, reach, view, theme);
-    paintChainages(context, reach, view, theme);
+    paintChainages(context, book, reach, view, theme);
     if (view.zoom >= BANKS_FROM_ZOOM) paintBanks(context, reach, view, theme);
   }
 }
@@ -34,12 +35,13 @@ export function paintRiver(context: CanvasRenderingContext2D, reaches: readonly 
 const span = ({ chainageKm }: Course): [number, number] => [chainageKm[0]!, chainageKm[chainageKm.length - 1]!];
 const kmPerPixel = (view: MapView): number => view.metresPerPixel / 1_000;
 
-/** Visits places every so many pixels down the course, at fixed chainages, so that they stay put while the map is dragged. */
+/** Visits places every so many pixels down the course, at fixed chainages, so that they stay put while the map is dragged, and clear of the round figures that carry ticks. */
 function everyPx(course: Course, view: MapView, stepPx: number, visit: (x: number, y: number, leftX: number, leftY: number, km: number) => void): void {
   const [top, bottom] = span(course);
   const stepKm = 2 ** Math.round(Math.log2(stepPx * kmPerPixel(view)));
   const point = coursePoint();
-  for (let km = Math.floor(top / stepKm) * stepKm; km >= bottom; km -= stepKm) {
+  for (let km = (Math.floor(top / stepKm) + 0.43) * stepKm; km >= bottom; km -= stepKm) {
+    if (km > top) continue;
     alongCourse(course, km, point);
     const [x, y] = [point.x * view.scale - view.offsetX, point.y * view.scale - view.offsetY];
     if (x > -20 && y > -20 && x < view.width + 20 && y < view.height + 20) visit(x, y, point.leftX, point.leftY, km);
@@ -64,8 +66,8 @@ function paintArrows(context: CanvasRenderingContext2D, { course, widthM }: Rive
 }
 
 /** Ticks on the left bank with the chainage, at whole kilometres or tenths as room allows. */
-function paintChainages(context: CanvasRenderingContext2D, { course, widthM, prefix }: RiverReach, view: MapView, theme: MapTheme): void {
-  if (view.zoom < 10.5) return;
+function paintChainages(context: CanvasRenderingContext2D, book: LabelBook, { course, widthM, prefix }: RiverReach, view: MapView, theme: MapTheme): void {
+  if (view.zoom < 11) return;
   const [top, bottom] = span(course);
   const stepKm = [0.1, 0.2, 0.5, 1, 2, 5, 10].find((step) => step / kmPerPixel(view) >= 85) ?? 20;
   const half = ribbonPx(widthM, view.metresPerPixel, view.zoom) / 2;
@@ -84,7 +86,7 @@ function paintChainages(context: CanvasRenderingContext2D, { course, widthM, pre
     context.stroke();
     const text = `${prefix} ${stepKm < 1 ? km.toFixed(1) : km}`;
     const clear = half + 8 + Math.abs(point.leftX) * (context.measureText(text).width / 2) + Math.abs(point.leftY) * 5;
-    haloText(context, theme, text, x + point.leftX * clear, y + point.leftY * clear);
+    book.print(text, [[x + point.leftX * clear, y + point.leftY * clear], [x - point.leftX * clear, y - point.leftY * clear]], 11, 400);
   }
 }
 

@@ -4,6 +4,7 @@ import { fromPlane } from '../../shared/geo';
 import type { EstimateWater } from '../../shared/schemas/estimate';
 import type { Level } from '../../shared/schemas/estimate-result';
 import { alongCourse, courseOf, coursePoint, reachWidthM, ribbonPx, type Course } from './channel-course';
+import { dryNodes } from './dry-nodes';
 import { assertWholeFrame, bridgedCodes, codeOfLevel, type Frame } from './frame';
 import { worldX, worldY, type MapView } from './mercator';
 
@@ -62,7 +63,7 @@ export function prepareFrame(frame: Frame, levels: Level[], water: EstimateWater
   assertWholeFrame(frame);
   const levelCodes = levels.map((level) => codeOfLevel(level.value, frame.head.scale));
   const grid = frame.head.grid;
-  if (grid.kind === 'plane') return { levels, sheets: [{ full: planeSheet(grid, frame.codes, levelCodes), thin: null, widthPx: () => Infinity }], clipsToWater: true };
+  if (grid.kind === 'plane') return { levels, sheets: [{ full: planeSheet(grid, frame.codes, levelCodes, water), thin: null, widthPx: () => Infinity }], clipsToWater: true };
   const sheets: PreparedFrame['sheets'] = [];
   let from = 0;
   for (const part of grid.parts) {
@@ -75,15 +76,16 @@ export function prepareFrame(frame: Frame, levels: Level[], water: EstimateWater
   return { levels, sheets, clipsToWater: false };
 }
 
-function planeSheet(grid: PlaneGrid, codes: Uint16Array, levelCodes: number[]): Sheet {
+function planeSheet(grid: PlaneGrid, codes: Uint16Array, levelCodes: number[], water: EstimateWater): Sheet {
   const { nx, ny } = grid;
+  const dry = water.kind === 'open' ? dryNodes(grid, water.area) : null;
   const x0 = worldX(fromPlane(grid, grid.x0M, 0)[0]);
   const stepX = (worldX(fromPlane(grid, grid.x0M + (nx - 1) * grid.dxM, 0)[0]) - x0) / Math.max(1, nx - 1);
   const rowY = Float64Array.from({ length: ny }, (_, j) => worldY(fromPlane(grid, 0, grid.y0M + j * grid.dyM)[1]));
   return {
     nx,
     ny,
-    bands: bandsOf(bridgedCodes(codes, nx, ny), nx, ny, levelCodes),
+    bands: bandsOf(bridgedCodes(codes, nx, ny, dry), nx, ny, levelCodes),
     blanks: blanksOf(codes, nx, ny),
     bendEvery: () => Infinity,
     placeIn: ({ scale, offsetX, offsetY }) => (x, y, out) => {

@@ -1,7 +1,8 @@
 import L from 'leaflet';
 import { useEffect, useRef } from 'react';
-import { useMap } from 'react-leaflet';
+import { useMap, useMapEvents } from 'react-leaflet';
 import type { LonLat } from '../../shared/schemas/basics';
+import { tidyLabels } from './label-places';
 
 export const latLngOf = ([lon, lat]: LonLat): L.LatLngTuple => [lat, lon];
 
@@ -51,7 +52,9 @@ export function useMarks(marks: readonly Mark[], events: MarkEvents): void {
       if (known) refresh(known, mark);
       else all.set(mark.id, place(map, mark, latest));
     }
+    tidyLabels(map);
   }, [map, marks]);
+  useMapEvents({ zoomend: () => tidyLabels(map) });
 
   useEffect(() => {
     const all = standing.current;
@@ -74,6 +77,7 @@ function place(map: L.Map, mark: Mark, latest: { current: MarkEvents }): Standin
     if (ended) {
       held.isDragged = false;
       marker.setLatLng(latLngOf(answer ?? held.mark.position));
+      tidyLabels(map);
     }
   };
   marker.on('dragstart', () => void (held.isDragged = true));
