@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { isInArea } from '../geo';
 import { bankSchema, instantSchema, lonLatSchema, nameSchema, notNegative, positive, rangeSchema, ringSchema, textSchema } from './basics';
 
 /**
@@ -332,6 +333,13 @@ export const estimateDocumentSchema = z
       if (receptorIds.has(receptor.id)) ctx.addIssue({ code: 'custom', path: ['receptors', i, 'id'], message: `Two receptors have the id ${receptor.id}` });
       receptorIds.add(receptor.id);
     });
+    if (doc.water.kind === 'open') {
+      const { area, name } = doc.water;
+      doc.releases.forEach((release, i) => {
+        if (!isInArea(release.position, area))
+          ctx.addIssue({ code: 'custom', path: ['releases', i, 'position'], message: `Longitude ${release.position[0]}, latitude ${release.position[1]} lies on land or outside ${name}: move the release onto the water` });
+      });
+    }
     if (doc.water.kind === 'river') {
       const river = doc.water;
       const byId = new Map(river.reaches.map((reach) => [reach.id, reach] as const));
