@@ -8,7 +8,7 @@ export type MenuEntry = {
   label: ReactNode;
   to?: string;
   onSelect?: () => void;
-  icon?: IconName;
+  icon?: IconName | undefined;
   isDisabled?: boolean;
   /** Marks the one that holds now. */
   isChosen?: boolean;
@@ -21,7 +21,7 @@ type MenuProps = {
   label: ReactNode;
   /** For a button without words. */
   ariaLabel?: string;
-  icon?: IconName;
+  icon?: IconName | undefined;
   kind?: ButtonKind;
   hasArrow?: boolean;
   anchor?: 'bottom start' | 'bottom end' | 'top start' | 'top end';

@@ -1,0 +1,47 @@
+import type { ComponentType } from 'react';
+import { createBrowserRouter, redirect, type LoaderFunctionArgs, type RouteObject } from 'react-router-dom';
+import { Loading } from '../components/progress-text';
+import { queryClient } from '../lib/query-client';
+import { sessionQuery } from '../lib/session';
+import { homeOf } from './places';
+import { RouteError } from './route-error';
+import { SignedInFrame } from './signed-in-frame';
+import { VisitorFrame } from './visitor-frame';
+
+/** One page of the product, fetched when it is first visited. */
+function page<Name extends string>(load: () => Promise<Record<Name, ComponentType>>, name: Name): Pick<RouteObject, 'lazy'> {
+  return { lazy: async () => ({ Component: (await load())[name] }) };
+}
+
+/** Sends visitors to the sign-in page, and back afterwards; people without incidents go to the first place that is theirs. */
+async function requirePerson({ request }: LoaderFunctionArgs) {
+  const { person } = await queryClient.ensureQueryData(sessionQuery);
+  const { pathname, search } = new URL(request.url);
+  if (!person) return redirect(pathname === '/' ? '/sign-in' : `/sign-in?next=${encodeURIComponent(pathname + search)}`);
+  if (pathname === '/' && homeOf(person.roles) !== '/') return redirect(homeOf(person.roles));
+  return null;
+}
+
+const places: RouteObject[] = [
+  { index: true, ...page(() => import('../features/incidents/routes/watch-page'), 'WatchPage') },
+  { path: 'incidents', ...page(() => import('../features/incidents/routes/incident-list-page'), 'IncidentListPage') },
+  { path: 'incidents/:incidentId', ...page(() => import('../features/incidents/routes/incident-page'), 'IncidentPage') },
+];
+
+const visitorPages: RouteObject[] = [];
+
+export const router = createBrowserRouter([
+  {
+    HydrateFallback: () => <Loading what="the page" />,
+    ErrorBoundary: RouteError,
+    children: [
+      { Component: VisitorFrame, children: [{ ErrorBoundary: RouteError, children: visitorPages }] },
+      {
+        id: 'signed-in',
+        Component: SignedInFrame,
+        loader: requirePerson,
+        children: [{ ErrorBoundary: RouteError, children: [...places, { path: '*', ...page(() => import('./not-found-page'), 'NotFoundPage') }] }],
+      },
+    ],
+  },
+]);
