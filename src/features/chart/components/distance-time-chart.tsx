@@ -1,0 +1,115 @@
+import { scaleLinear } from 'd3-scale';
+import { useMemo } from 'react';
+import { formatClock, formatConcentration, formatElapsed, formatTimeOfDay, type Measure } from '../../../../shared/format';
+import type { EstimateReceptor, EstimateWater } from '../../../../shared/schemas/estimate';
+import type { Level } from '../../../../shared/schemas/estimate-result';
+import { bandColours } from '../../../map/palette';
+import { useWidth } from '../hooks/use-width';
+import { distancePaths, travelledKm, valueBetween, type DistanceTime } from '../model/distance-contours';
+import { clockTicks } from '../model/time-ticks';
+
+const LEFT = 74;
+const RIGHT = 60;
+const TOP = 10;
+const BOTTOM = 40;
+const HEIGHT = 320;
+
+type Props = {
+  field: DistanceTime;
+  levels: readonly Level[];
+  water: EstimateWater;
+  receptors: readonly EstimateReceptor[];
+  measure: Measure;
+  startMs: number;
+  horizonS: number;
+  offset: string;
+  timeS: number;
+  theme: 'day' | 'night';
+  onTime: (s: number) => void;
+};
+
+/** Section-mean concentration by time and place along the river, receptors as lines across. */
+export function DistanceTimeChart({ field, levels, water, receptors, measure, startMs, horizonS, offset, timeS, theme, onTime }: Props) {
+  const [ref, width] = useWidth(720);
+  const km = useMemo(() => travelledKm(field), [field]);
+  const drawn = useMemo(() => [...levels].filter((level) => level.value > 0).sort((a, b) => a.value - b.value), [levels]);
+  const x = useMemo(() => scaleLinear([0, horizonS], [LEFT, Math.max(LEFT + 50, width - RIGHT)]), [horizonS, width]);
+  const y = useMemo(() => scaleLinear([0, km[km.length - 1] ?? 1], [TOP, HEIGHT - BOTTOM]), [km]);
+  const paths = useMemo(() => distancePaths(field, drawn.map((level) => level.value), x, (column) => y(valueBetween(km, column))), [field, drawn, x, y, km]);
+  const colours = bandColours(drawn.length, theme);
+  const prefix = water.kind === 'river' ? (water.reaches.find((reach) => reach.id === field.reachIds[0])?.chainagePrefix ?? 'km') : 'km';
+  const lines = receptors.flatMap((receptor) => {
+    const column = receptor.channel ? columnOf(field, receptor.channel) : null;
+    return column === null ? [] : [{ receptor, at: y(valueBetween(km, column)) }];
+  });
+
+  return (
+    <figure className="m-0">
+      <div ref={ref} className="w-full">
+        <svg
+          width={width}
+          height={HEIGHT}
+          role="img"
+          aria-label={`Concentration along ${water.name} over time, mean over the section. Receptors: ${lines.map((one) => one.receptor.code).join(', ') || 'none on this path'}`}
+          className="block cursor-pointer"
+          onClick={(event) => onTime(x.invert(event.clientX - event.currentTarget.getBoundingClientRect().left))}
+        >
+          {paths.map((path, i) => (
+            <path key={drawn[i]!.value} d={path} fillRule="evenodd" fill={colours[i]} fillOpacity={0.85} strokeWidth={drawn[i]!.isActionValue ? 2 : 0.75} strokeDasharray={drawn[i]!.isActionValue ? '7 4' : undefined} className="stroke-ink" />
+          ))}
+          {y.ticks(6).map((tick) => (
+            <g key={tick} transform={`translate(${LEFT} ${y(tick)})`}>
+              <line x2={-5} className="stroke-ink" />
+              <text x={-9} dy="0.32em" textAnchor="end" className="fill-ink2 text-note">
+                {prefix} {chainageAt(field, km, tick).toFixed(1)}
+              </text>
+            </g>
+          ))}
+          {lines.map(({ receptor, at }) => (
+            <g key={receptor.id}>
+              <line x1={LEFT} x2={width - RIGHT} y1={at} y2={at} className="stroke-ink" strokeWidth={1} />
+              <text x={width - RIGHT + 5} y={at} dy="0.32em" className="fill-ink text-note font-semibold">
+                {receptor.code}
+              </text>
+            </g>
+          ))}
+          {clockTicks(startMs, horizonS, offset, Math.max(2, Math.floor((width - LEFT - RIGHT) / 84))).map((tick) => (
+            <g key={tick.atS} transform={`translate(${x(tick.atS)} ${HEIGHT - BOTTOM})`}>
+              <line y2={5} className="stroke-ink" />
+              <text y={18} textAnchor="middle" className="fill-ink text-note">
+                {tick.isMidnight ? formatClock(startMs + tick.atS * 1_000, offset).slice(4, -6) : formatTimeOfDay(startMs + tick.atS * 1_000, offset)}
+              </text>
+              <text y={32} textAnchor="middle" className="fill-ink2 text-note">
+                {formatElapsed(tick.atS)}
+              </text>
+            </g>
+          ))}
+          <path d={`M${LEFT} ${TOP}V${HEIGHT - BOTTOM}H${width - RIGHT}`} fill="none" className="stroke-ink" />
+          <line x1={x(timeS)} x2={x(timeS)} y1={TOP} y2={HEIGHT - BOTTOM} strokeWidth={2} className="stroke-kingfisher" />
+        </svg>
+      </div>
+      <figcaption className="text-note text-ink2">
+        Mean over the section, release at the top, water runs downwards. Bands from {drawn.map((level) => `${formatConcentration(level.value, measure).text} ${formatConcentration(level.value, measure).unit}`).join(', ')}; dashed edges are action values.
+      </figcaption>
+    </figure>
+  );
+}
+
+/** Column of a place in the field, between two of its columns; null when the path does not pass it. */
+function columnOf(field: DistanceTime, place: { reachId: string; chainageKm: number }): number | null {
+  for (let i = 1; i < field.chainageKm.length; i++) {
+    if (field.reachIds[i] !== place.reachId && field.reachIds[i - 1] !== place.reachId) continue;
+    const a = field.chainageKm[i - 1]!;
+    const b = field.chainageKm[i]!;
+    if (place.chainageKm <= a && place.chainageKm >= b && a !== b) return i - 1 + (a - place.chainageKm) / (a - b);
+  }
+  return null;
+}
+
+function chainageAt(field: DistanceTime, km: readonly number[], travelled: number): number {
+  const i = Math.max(1, km.findIndex((value) => value >= travelled));
+  const a = km[i - 1] ?? 0;
+  const b = km[i] ?? a;
+  const share = b === a ? 0 : (travelled - a) / (b - a);
+  return field.chainageKm[i - 1]! + ((field.chainageKm[i] ?? field.chainageKm[i - 1]!) - field.chainageKm[i - 1]!) * share;
+}

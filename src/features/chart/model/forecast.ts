@@ -1,0 +1,62 @@
+import type { EnvelopeHead, FrameHead, StreamHead } from '../../../../shared/frames';
+import type { Check, EstimateResult, Level, ReceptorAnswer } from '../../../../shared/schemas/estimate-result';
+import type { FieldError } from '../../../../shared/problem';
+
+export type Frame = { head: FrameHead; codes: Uint16Array };
+export type Envelope = { head: EnvelopeHead; codes: Uint16Array };
+
+/** What has arrived of an estimate so far. Each message gives a new object; frames are kept by index. */
+export type Forecast = {
+  unit: 'kg/m3' | 'counts/m3';
+  levels: Level[];
+  frameTimesS: number[];
+  frames: (Frame | undefined)[];
+  envelope: Envelope | null;
+  answers: ReceptorAnswer[];
+  result: EstimateResult | null;
+  progress: { stage: string; done: number; of: number } | null;
+  failed: { title: string; detail: string; errors: FieldError[] } | null;
+};
+
+export const emptyForecast: Forecast = { unit: 'kg/m3', levels: [], frameTimesS: [], frames: [], envelope: null, answers: [], result: null, progress: null, failed: null };
+
+/** The payload is a copy that starts at a fresh buffer, so it can be read in place. */
+const codesOf = (payload: Uint8Array): Uint16Array => new Uint16Array(payload.buffer, payload.byteOffset, payload.byteLength / 2);
+
+export function withMessage(forecast: Forecast, head: StreamHead, payload: Uint8Array): Forecast {
+  switch (head.type) {
+    case 'start':
+      return { ...emptyForecast, unit: head.unit, levels: head.levels, frameTimesS: head.frameTimesS };
+    case 'progress':
+      return { ...forecast, progress: { stage: head.stage, done: head.done, of: head.of } };
+    case 'receptor':
+      return { ...forecast, answers: [...forecast.answers.filter((answer) => answer.receptorId !== head.answer.receptorId), head.answer] };
+    case 'frame': {
+      const frames = forecast.frames.slice();
+      frames[head.index] = { head, codes: codesOf(payload) };
+      return { ...forecast, frames };
+    }
+    case 'envelope':
+      return { ...forecast, envelope: { head, codes: codesOf(payload) } };
+    case 'result':
+      return { ...forecast, result: head.result, answers: head.result.receptors, levels: head.result.levels, frameTimesS: head.result.frameTimesS, progress: null };
+    case 'failed':
+      return { ...forecast, progress: null, failed: { title: head.title, detail: head.detail, errors: head.errors } };
+  }
+}
+
+/** Index of the frame to show at a time: the last one not after it that has arrived, else the first that has. */
+export function frameIndexAt(forecast: Forecast, timeS: number): number | null {
+  let found: number | null = null;
+  forecast.frameTimesS.forEach((at, i) => {
+    if (at <= timeS + 0.5 && forecast.frames[i]) found = i;
+  });
+  if (found !== null) return found;
+  const first = forecast.frames.findIndex((frame) => frame !== undefined);
+  return first === -1 ? null : first;
+}
+
+export const readableChecks = (checks: readonly Check[]): Check[] => {
+  const rank = { stop: 0, warn: 1, note: 2 } as const;
+  return [...checks].sort((a, b) => rank[a.severity] - rank[b.severity]);
+};
