@@ -80,7 +80,7 @@ function containerAtSea(): EstimateDocumentInput {
   const current: CurrentPart[] = [
     { kind: 'tide', name: 'M2', majorMps: 0.18, minorMps: 0, floodTowardDeg: 350, periodS: TIDE_S, maxFloodS: maxFloodS(startAt) },
     { kind: 'residual', speedMps: 0.1, towardDeg: 30 },
-    { kind: 'wind', windSpeedMps: 8, windFromDeg: 225, driftFraction: 0.015, turnDeg: 0 },
+    { kind: 'wind', windSpeedMps: 8, windFromDeg: 225, driftFraction: 0.02, turnDeg: 0 },
   ];
   return {
     format: 'downreach-estimate/1',
@@ -89,7 +89,7 @@ function containerAtSea(): EstimateDocumentInput {
     horizonS: 36 * HOUR_S,
     frameCount: 73,
     substance: assembleSubstance(item('substances', 'phenol')),
-    water: { ...assembleWater(item('waters', 'branvell-bay')), current, coefficientNote: 'Neaps; residual 0.10 m/s toward 030; wind 8 m/s from 225, of which 1.5 % moves the upper 6 m (1 to 2 % is common practice, no source)' } as EstimateDocumentInput['water'],
+    water: { ...assembleWater(item('waters', 'branvell-bay')), current, coefficientNote: 'Neaps; residual 0.10 m/s toward 030; wind 8 m/s from 225, of which 2 % moves the upper 6 m (1 to 2 % for 1 to 5 m is common practice, no source)' } as EstimateDocumentInput['water'],
     releases: [
       {
         id: 'release-1', ...source('container-route'),
