@@ -23,6 +23,8 @@ export function* firstPlaces(): Generator<TilePlace> {
   for (let zoom = 0; zoom <= 3; zoom++) yield* placesIn(EARTH, zoom);
   for (let zoom = 4; zoom <= 11; zoom++) yield* placesIn(islandBounds, zoom);
   yield* placesIn(districtBounds, 12);
+  // One tile of each deeper zoom, so that the places of its names are known before somebody waits for them.
+  for (let zoom = 13; zoom <= MAX_ZOOM; zoom++) yield* placesIn([-117.07, -44.48, -117.07, -44.48], zoom);
 }
 /** Everything the archives may hold. */
 export function* allPlaces(): Generator<TilePlace> {

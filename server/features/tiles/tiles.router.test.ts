@@ -149,7 +149,7 @@ it('a first start draws what the first look needs, a second one nothing', async 
   db.close();
   rmSync(fresh, { recursive: true, force: true });
   expect(lines).toHaveLength(1);
-  expect(most).toBe(12);
+  expect(most).toBe(15);
 }, 60_000);
 
 it('latitude and mercator row are inverse to each other', () => {
