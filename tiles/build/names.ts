@@ -29,6 +29,7 @@ export const names: Name[] = [
   { text: 'Nettimar Sands', at: [-117.335, -44.4225], kind: 'head', rank: 3, minZoom: 12, side: 'right' },
   { text: 'Cockle Flats', at: [-117.3165, -44.517], kind: 'marsh', rank: 3, minZoom: 12 },
   { text: 'Lake Thessaby', at: [-116.841, -44.587], kind: 'lake', rank: 1, minZoom: 11, turnDeg: -33 },
+  { text: 'Ollemar estuary', at: [-117.2665, -44.5012], kind: 'lake', rank: 2, minZoom: 13, turnDeg: 4 },
   { text: 'Ferrowmere Marsh', at: [-117.223, -44.5145], kind: 'marsh', rank: 2, minZoom: 12 },
   { text: 'Kestovar Harbour', at: [-117.289, -44.4905], kind: 'lake', rank: 3, minZoom: 15, turnDeg: -6 },
   { text: 'North Mole', at: [-117.3118, -44.4946], kind: 'structure', rank: 3, minZoom: 13, side: 'left' },

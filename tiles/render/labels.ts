@@ -68,10 +68,11 @@ function placeAlong(ctx: SKRSContext2D, shape: Shape, zoom: number, atPx: number
     const t = (s - sums[low - 1]!) / (sums[low]! - sums[low - 1]! || 1);
     return [line[low - 1]![0] + t * (line[low]![0] - line[low - 1]![0]), line[low - 1]![1] + t * (line[low]![1] - line[low - 1]![1])];
   };
+  const windowPx = zoom <= 12 ? 16 : 11;
   // The baseline follows the stream as seen through a window, so that letters do not wobble with every bend.
   const smooth = (s: number): [number, number] => {
     let [x, y] = [0, 0];
-    for (let k = -6; k <= 6; k++) { const p = pointAt(s + k * 9); x += p[0] / 13; y += p[1] / 13; }
+    for (let k = -6; k <= 6; k++) { const p = pointAt(s + k * windowPx); x += p[0] / 13; y += p[1] / 13; }
     return [x, y];
   };
   const sizePx = (shape.kind === 'stream' ? 11 : 12) + Math.max(0, Math.min(3, zoom - 10)) * (shape.properties['rank'] === 1 ? 1.2 : 0.6);
@@ -82,7 +83,7 @@ function placeAlong(ctx: SKRSContext2D, shape: Shape, zoom: number, atPx: number
   const widths = [...text].map((c) => ctx.measureText(c).width + (c === ' ' ? 3 : 1) * spacingPx);
   const total = widths.reduce((a, b) => a + b, 0);
   let s = atPx - total / 2;
-  if (s < 60 || s + total > sums[sums.length - 1]! - 60) return null;
+  if (s < 40 || s + total > sums[sums.length - 1]! - 40) return null;
   const lift = sizePx * 0.72 + (shape.properties['rank'] === 1 ? 3 + Math.max(0, zoom - 13) * 2.5 : 2);
   const glyphs: Label['glyphs'] = [];
   const box = { minX: Infinity, minY: Infinity, maxX: -Infinity, maxY: -Infinity };
@@ -91,7 +92,7 @@ function placeAlong(ctx: SKRSContext2D, shape: Shape, zoom: number, atPx: number
     const middle = s + widths[i]! / 2;
     const [a, b, p] = [smooth(middle - 5), smooth(middle + 5), smooth(middle)];
     const turn = Math.atan2(b[1] - a[1], b[0] - a[0]);
-    if (before !== null && Math.abs(turn - before) > 0.35) return null;
+    if (before !== null && Math.abs(turn - before) > 0.4) return null;
     before = turn;
     const [x, y] = [p[0] + Math.sin(turn) * lift, p[1] - Math.cos(turn) * lift];
     glyphs.push({ text: c, x, y, turn });
@@ -111,7 +112,7 @@ function lineLabels(ctx: SKRSContext2D, shape: Shape, zoom: number): Label[] {
   const count = Math.max(1, Math.floor(length / every));
   return Array.from({ length: count }, (_, k) => {
     // A little to either side of the wished-for place there may be a straighter stretch.
-    for (const shift of [0, 40, -40, 80, -80, 130, -130]) {
+    for (const shift of [0, 30, -30, 60, -60, 95, -95, 130, -130, 170, -170]) {
       const label = placeAlong(ctx, shape, zoom, ((k + 0.5) * length) / count + shift);
       if (label) return label;
     }
@@ -125,8 +126,8 @@ export function placeLabels(ctx: SKRSContext2D, shapes: { names: Shape[]; rivers
     .filter(({ properties }) => zoom >= Number(properties['minZoom'] ?? 0) && zoom <= Number(properties['maxZoom'] ?? 22))
     .sort((a, b) => Number(a.properties['rank']) - Number(b.properties['rank']));
   const candidates = shown.map((shape) => placeName(ctx, shape, zoom));
-  if (zoom >= 11)
-    for (const river of shapes.rivers.filter(({ kind, properties }) => properties['name'] && (kind === 'river' || zoom >= 12)))
+  if (zoom >= 10)
+    for (const river of shapes.rivers.filter(({ kind, properties }) => properties['name'] && (zoom >= 12 || (kind === 'river' && (zoom >= 11 || properties['rank'] === 1)))))
       candidates.push(...lineLabels(ctx, river, zoom));
   const placed: Label[] = [];
   for (const label of candidates) if (!placed.some((other) => overlaps(label.box, other.box))) placed.push(label);
