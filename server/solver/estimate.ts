@@ -1,0 +1,157 @@
+import type { EstimateDocument } from '../../shared/schemas/estimate';
+import type { EstimateResult, ReceptorAnswer } from '../../shared/schemas/estimate-result';
+import { commonChecks } from './checks/common-checks';
+import { checkDoor } from './door';
+import { ENGINE_VERSION } from './engine-version';
+import { lossClock } from './loss';
+import { Meter } from './meter';
+import { resolveReleases, weightsOf } from './release-profile';
+import { amountWorking } from './results/amount-working';
+import { packField, largestOf } from './results/frame-message';
+import { contourLevels } from './results/levels';
+import { receptorAnswer } from './results/receptor-answer';
+import { solverFor } from './solvers';
+import type { Books, EstimateSink, GriddedField, PreparedField, ReceptorSite, RunInput } from './types';
+
+export type SolveOptions = {
+  /** Coarser grids and integrals, for a forecast that follows the hand. */
+  preview?: boolean;
+  isCancelled?: () => boolean;
+};
+
+/** Frames sent before the receptors are answered, so that something shows at once. */
+const FIRST_FRAMES = 8;
+/** A preview asks no more of the release-time integral than this. */
+const PREVIEW_TOLERANCE = 1e-4;
+
+/**
+ * Solves one estimate document. Messages go to the sink as they are ready: start, first frames, receptor answers, the
+ * other frames, envelope, result. Pure and repeatable: the same document gives the same bytes.
+ *
+ * @throws SolverInputError where the document cannot be solved, with field, value and remedy
+ * @throws SolverCancelled when `isCancelled` says so; it is asked every few milliseconds
+ */
+export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options: SolveOptions = {}): EstimateResult {
+  checkDoor(doc);
+  const input = runInput(doc, options);
+  const solver = solverFor(doc.water);
+  const field = solver.prepare(input);
+  const frameTimesS = Array.from({ length: doc.frameCount }, (_, k) => (doc.horizonS * (k + 1)) / doc.frameCount);
+  const frames = new FrameWriter(input, field, frameTimesS, sink);
+  const unit = doc.substance.measure === 'count' ? 'counts/m3' : 'kg/m3';
+  sink({ type: 'start', solver: solver.name, engineVersion: ENGINE_VERSION, unit, levels: frames.levels, frameTimesS });
+  frames.write(0, Math.min(FIRST_FRAMES, doc.frameCount));
+  const { answers, sites } = answerReceptors(input, field, sink);
+  frames.write(Math.min(FIRST_FRAMES, doc.frameCount), doc.frameCount);
+  frames.writeEnvelope();
+  const books = field.books(doc.horizonS, input.weights.likely);
+  const diagnostics = diagnosticsOf(input, books, frames.cappedValues);
+  const result: EstimateResult = {
+    engineVersion: ENGINE_VERSION,
+    solver: solver.name,
+    seed: doc.seed,
+    unit,
+    levels: frames.levels,
+    frameTimesS,
+    receptors: answers,
+    distanceTime: field.distanceTime(frameTimesS, input.weights.likely),
+    checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...field.checks, ...sites.flatMap((site) => site.checks)],
+    diagnostics,
+    working: [...amountWorking(input), ...field.working],
+  };
+  sink({ type: 'result', result });
+  return result;
+}
+
+function runInput(doc: EstimateDocument, options: SolveOptions): RunInput {
+  const releases = resolveReleases(doc);
+  const isPreview = options.preview ?? false;
+  return {
+    doc,
+    releases,
+    weights: weightsOf(releases),
+    loss: lossClock(doc.substance.loss, doc.startAt),
+    isPreview,
+    tolerance: isPreview ? Math.max(doc.tolerance, PREVIEW_TOLERANCE) : doc.tolerance,
+    meter: new Meter(options.isCancelled),
+  };
+}
+
+/** Makes frames once each, chooses the levels from three of them, and sends them. */
+class FrameWriter {
+  readonly levels;
+  cappedValues = 0;
+  private readonly made = new Map<number, GriddedField>();
+
+  constructor(
+    private readonly input: RunInput,
+    private readonly field: PreparedField,
+    private readonly timesS: readonly number[],
+    private readonly sink: EstimateSink,
+  ) {
+    const n = timesS.length;
+    const probes = [...new Set([Math.floor(n / 6), Math.floor(n / 2), n - 1])].map((index) => largestOf(this.make(index).values)).sort((a, b) => a - b);
+    this.levels = contourLevels(input.doc, probes[Math.floor(probes.length / 2)]!);
+  }
+
+  private make(index: number): GriddedField {
+    const known = this.made.get(index);
+    if (known) return known;
+    const made = this.field.gridAt(this.timesS[index]!, this.input.weights.likely);
+    this.made.set(index, made);
+    return made;
+  }
+
+  write(from: number, to: number): void {
+    for (let index = from; index < to; index++) {
+      this.input.meter.assertWanted();
+      const made = this.make(index);
+      this.made.delete(index);
+      const { payload, ...head } = packField(made, this.levels);
+      this.cappedValues += countAt(made.values, this.input.doc.substance.solubilityKgM3);
+      this.sink({ type: 'frame', index, timeS: this.timesS[index]!, grid: made.grid, ...head }, payload);
+      this.sink({ type: 'progress', stage: 'frames', done: index + 1, of: this.timesS.length });
+    }
+  }
+
+  writeEnvelope(): void {
+    this.input.meter.assertWanted();
+    const made = this.field.envelope(this.timesS, this.input.weights.likely);
+    const { payload, ...head } = packField(made, this.levels);
+    this.sink({ type: 'envelope', grid: made.grid, ...head }, payload);
+  }
+}
+
+function countAt(values: Float64Array, cap: number | null): number {
+  if (cap === null) return 0;
+  let count = 0;
+  for (let i = 0; i < values.length; i++) if (values[i] === cap) count++;
+  return count;
+}
+
+function answerReceptors(input: RunInput, field: PreparedField, sink: EstimateSink): { answers: ReceptorAnswer[]; sites: ReceptorSite[] } {
+  const { receptors } = input.doc;
+  const sites: ReceptorSite[] = [];
+  const answers = receptors.map((receptor, index) => {
+    input.meter.assertWanted();
+    const site = field.receptor(index, receptor);
+    const answer = receptorAnswer(input, receptor, site);
+    sites.push(site);
+    sink({ type: 'receptor', answer });
+    sink({ type: 'progress', stage: 'receptors', done: index + 1, of: receptors.length });
+    return answer;
+  });
+  return { answers, sites };
+}
+
+const diagnosticsOf = ({ doc, meter }: RunInput, books: Books, cappedValues: number): EstimateResult['diagnostics'] => ({
+  massReleased: books.released,
+  massInWater: books.inWater,
+  massLost: books.lost,
+  massLeft: books.left,
+  massResidual: books.released > 0 ? (books.released - books.inWater - books.lost - books.left) / books.released : 0,
+  booksAtS: doc.horizonS,
+  quadratureError: meter.worstError,
+  evaluations: meter.evaluations,
+  cappedValues,
+});

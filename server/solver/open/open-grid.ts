@@ -1,0 +1,137 @@
+import type { PlaneGrid } from '../../../shared/frames';
+import type { Weights } from '../release-profile';
+import type { GriddedField } from '../types';
+import { clearLand, type PlaneArea } from './area-mask';
+import { gridPuffs } from './grid-puffs';
+import { addPuffs } from './puff-kernel';
+import { Puff, type OpenMotion, type OpenSource } from './puffs';
+
+export type Box = { x0: number; y0: number; x1: number; y1: number; sigmaM: number };
+
+/** What the grids of one estimate share. */
+export type OpenGridding = {
+  readonly motion: OpenMotion;
+  readonly sources: readonly OpenSource[];
+  readonly area: PlaneArea;
+  readonly originLon: number;
+  readonly originLat: number;
+  readonly maxNodes: number;
+  readonly withLoss: boolean;
+  /** Values are capped at the solubility, kg/m3. */
+  readonly solubility: number;
+};
+
+/** Five standard deviations round the clouds at time t, and the smallest standard deviation among them; null before any release. */
+export function cloudBox(motion: OpenMotion, sources: readonly OpenSource[], weights: Weights, tS: number): Box | null {
+  const box: Box = { x0: Infinity, y0: Infinity, x1: -Infinity, y1: -Infinity, sigmaM: Infinity };
+  for (const source of sources) {
+    const { profile, index } = source.release;
+    if (tS <= profile.startS || weights[index] === 0) continue;
+    const puff = new Puff(motion, source);
+    const last = Math.min(tS, profile.stopS);
+    const samples = profile.isInstant ? 1 : 41;
+    for (let k = 0; k < samples; k++) {
+      puff.seen(profile.startS + (samples === 1 ? 0 : ((last - profile.startS) * k) / (samples - 1)), tS, false);
+      const [sxx, , syy] = puff.covariance;
+      box.sigmaM = Math.min(box.sigmaM, Math.sqrt(Math.min(sxx!, syy!)));
+      for (const origin of source.origins) {
+        box.x0 = Math.min(box.x0, origin.x + puff.shiftX - 5 * Math.sqrt(sxx!));
+        box.x1 = Math.max(box.x1, origin.x + puff.shiftX + 5 * Math.sqrt(sxx!));
+        box.y0 = Math.min(box.y0, origin.y + puff.shiftY - 5 * Math.sqrt(syy!));
+        box.y1 = Math.max(box.y1, origin.y + puff.shiftY + 5 * Math.sqrt(syy!));
+      }
+    }
+  }
+  return box.x1 > box.x0 ? box : null;
+}
+
+export const clipBox = (box: Box, area: PlaneArea): Box | null => {
+  const clipped = { x0: Math.max(box.x0, area.x0), y0: Math.max(box.y0, area.y0), x1: Math.min(box.x1, area.x1), y1: Math.min(box.y1, area.y1), sigmaM: box.sigmaM };
+  return clipped.x1 > clipped.x0 && clipped.y1 > clipped.y0 ? clipped : null;
+};
+
+export const unionBox = (a: Box | null, b: Box | null): Box | null =>
+  !a || !b ? (a ?? b) : { x0: Math.min(a.x0, b.x0), y0: Math.min(a.y0, b.y0), x1: Math.max(a.x1, b.x1), y1: Math.max(a.y1, b.y1), sigmaM: Math.min(a.sigmaM, b.sigmaM) };
+
+/** Five nodes a standard deviation where `maxNodes` allows it, and never fewer than 24 a side. */
+export function gridFor(box: Box, origin: { originLon: number; originLat: number }, maxNodes: number): PlaneGrid {
+  const nodes = (width: number): number => Math.min(maxNodes, Math.max(24, Math.ceil((5 * width) / Math.max(box.sigmaM, 1e-3)) + 1));
+  const nx = nodes(box.x1 - box.x0);
+  const ny = nodes(box.y1 - box.y0);
+  return { kind: 'plane', ...origin, x0M: box.x0, y0M: box.y0, dxM: (box.x1 - box.x0) / (nx - 1), dyM: (box.y1 - box.y0) / (ny - 1), nx, ny };
+}
+
+/** Adds all releases at time t to `out`, each capped at the strength of what was spilled. */
+export function addField(out: Float64Array, grid: PlaneGrid, gridding: OpenGridding, weights: Weights, tS: number): void {
+  const smallest = 0.7 * Math.max(grid.dxM, grid.dyM);
+  for (const source of gridding.sources) {
+    const weight = weights[source.release.index]!;
+    const puffs = gridPuffs(gridding.motion, source, tS, weight, smallest, gridding.withLoss);
+    if (source.release.capPerKg === Infinity) {
+      addPuffs(out, grid, puffs);
+      continue;
+    }
+    const alone = new Float64Array(out.length);
+    addPuffs(alone, grid, puffs);
+    const cap = weight * source.release.capPerKg;
+    for (let i = 0; i < out.length; i++) out[i]! += Math.min(alone[i]!, cap);
+  }
+}
+
+const capAt = (values: Float64Array, cap: number): void => {
+  if (cap === Infinity) return;
+  for (let i = 0; i < values.length; i++) if (values[i]! > cap) values[i] = cap;
+};
+
+/** The field at one time on a grid that follows the cloud; land is zero. */
+export function fieldAt(gridding: OpenGridding, weights: Weights, tS: number): GriddedField {
+  const cloud = cloudBox(gridding.motion, gridding.sources, weights, tS);
+  const box = cloud && clipBox(cloud, gridding.area);
+  if (!box) return { grid: emptyGrid(gridding), values: new Float64Array(4) };
+  const grid = gridFor(box, gridding, gridding.maxNodes);
+  const values = new Float64Array(grid.nx * grid.ny);
+  addField(values, grid, gridding, weights, tS);
+  clearLand(values, grid, gridding.area);
+  capAt(values, gridding.solubility);
+  return { grid, values };
+}
+
+function emptyGrid({ sources, originLon, originLat }: OpenGridding): PlaneGrid {
+  const at = sources[0]!.origins[0]!;
+  return { kind: 'plane', originLon, originLat, x0M: at.x, y0M: at.y, dxM: 1, dyM: 1, nx: 2, ny: 2 };
+}
+
+/** Largest value over all time at each node of one grid over all clouds, from fields close enough for a cloud to move one node or one standard deviation. */
+export function envelopeOf(gridding: OpenGridding, weights: Weights, horizonS: number, maxFields: number): GriddedField {
+  const { motion, sources, area } = gridding;
+  const startS = Math.min(...sources.map((source) => source.release.profile.startS));
+  let cloud: Box | null = null;
+  for (let k = 1; k <= 48; k++) cloud = unionBox(cloud, cloudBox(motion, sources, weights, startS + ((horizonS - startS) * k) / 48));
+  const box = cloud && clipBox(cloud, area);
+  if (!box) return { grid: emptyGrid(gridding), values: new Float64Array(4) };
+  const grid = gridFor(box, gridding, gridding.maxNodes);
+  const out = new Float64Array(grid.nx * grid.ny);
+  const scratch = new Float64Array(out.length);
+  for (const tS of envelopeTimes(gridding, startS, horizonS, Math.max(grid.dxM, grid.dyM), maxFields)) {
+    scratch.fill(0);
+    addField(scratch, grid, gridding, weights, tS);
+    for (let i = 0; i < out.length; i++) if (scratch[i]! > out[i]!) out[i] = scratch[i]!;
+  }
+  clearLand(out, grid, area);
+  capAt(out, gridding.solubility);
+  return { grid, values: out };
+}
+
+function envelopeTimes({ motion, sources }: OpenGridding, startS: number, horizonS: number, cellM: number, maxFields: number): number[] {
+  const births = sources.map((source) => source.release.profile);
+  const out: number[] = [];
+  const speed = Math.max(motion.current.maxSpeedMps, 1e-4);
+  const least = (horizonS - startS) / maxFields;
+  for (let t = startS; t < horizonS && out.length < maxFields; ) {
+    const youngest = Math.min(...births.filter((profile) => profile.startS <= t).map((profile) => t - Math.min(t, profile.stopS)));
+    const sigma = Math.max(cellM, Math.sqrt(motion.spread.smallest(youngest)));
+    t += Math.max(least, sigma / speed);
+    out.push(Math.min(t, horizonS));
+  }
+  return out;
+}

@@ -1,0 +1,109 @@
+import type { Meter } from '../meter';
+import { AdaptiveQuadrature, type Triage } from '../math/quadrature';
+import { findMaximum } from '../math/roots';
+import type { Feature, UnitResponse } from '../types';
+import { Puff, type OpenMotion, type OpenSource } from './puffs';
+
+/** Farther than this many standard deviations a puff adds less than 1e-14 of its peak and is left out. */
+const FAR_SIGMA = 8;
+/** Widest stretch, in standard deviations travelled, that 15 points integrate well. */
+const TAKE_SIGMA = 4;
+
+/**
+ * Concentration at a place against time per kilogram of one release: the puff solution, or for a release that lasts
+ * its integral over the time of release, C(t) = integral m'(s) g(x, t; s) ds, by adaptive quadrature to `tolerance`.
+ * Stretches of release time whose puffs cannot reach the place are left out by a bound on their motion.
+ */
+export function openResponse(motion: OpenMotion, source: OpenSource, x: number, y: number, horizonS: number, tolerance: number, meter: Meter): UnitResponse {
+  const { profile, capPerKg } = source.release;
+  const puff = new Puff(motion, source);
+  const features = passages(motion, source, x, y, horizonS);
+  if (profile.isInstant) {
+    return {
+      features,
+      at(tS, withLoss) {
+        if (tS <= profile.startS) return 0;
+        puff.seen(profile.startS, tS, withLoss);
+        meter.count(1);
+        return Math.min(capPerKg, puff.at(x, y));
+      },
+    };
+  }
+  const quadrature = new AdaptiveQuadrature(meter);
+  const triageAt = triageFor(motion, source, puff, x, y);
+  const switches = motion.loss.switches(profile.startS, Math.min(profile.stopS, horizonS));
+  const knots = [...profile.knotsS, ...switches, ...motion.current.kinksS].filter((t) => t >= profile.startS && t <= profile.stopS).sort((a, b) => a - b);
+  return {
+    features,
+    at(tS, withLoss) {
+      if (tS <= profile.startS) return 0;
+      const cuts = knots.filter((t) => t < tS);
+      cuts.push(Math.min(tS, profile.stopS));
+      const integrand = (releasedS: number): number => {
+        puff.seen(releasedS, tS, withLoss);
+        return profile.rate(releasedS) * puff.at(x, y);
+      };
+      return Math.min(capPerKg, quadrature.integrate(integrand, cuts, tolerance, triageAt(tS)));
+    },
+  };
+}
+
+/** Bounds how near the puffs released between a and b can come, and how much they differ. */
+function triageFor(motion: OpenMotion, source: OpenSource, puff: Puff, x: number, y: number): (tS: number) => Triage {
+  const { spread, current } = motion;
+  const start = source.startVarianceM2;
+  return (tS) => (a, b) => {
+    const travelled = current.maxSpeedMps * (b - a);
+    const widest = Math.sqrt(start + spread.largest(tS - a));
+    puff.seen((a + b) / 2, tS, false);
+    let nearest = Infinity;
+    for (const origin of source.origins) nearest = Math.min(nearest, Math.hypot(x - origin.x - puff.shiftX, y - origin.y - puff.shiftY));
+    if (nearest - travelled / 2 > FAR_SIGMA * widest) return 'skip';
+    const narrowest = Math.sqrt(start + spread.smallest(tS - b));
+    // A stretch is wide too where the puffs grow many times over within it.
+    return travelled > TAKE_SIGMA * narrowest || widest > 4 * narrowest ? ((b - a) < 1e-6 ? 'take' : 'split') : 'take';
+  };
+}
+
+/** When puffs of this release come nearest to the place, in standard deviations: where its answer rises and falls. */
+function passages(motion: OpenMotion, source: OpenSource, x: number, y: number, horizonS: number): Feature[] {
+  const { profile } = source.release;
+  const out: Feature[] = [];
+  const births = profile.isInstant ? [profile.startS] : [0, 0.25, 0.5, 0.75, 1].map((share) => profile.startS + share * (profile.stopS - profile.startS));
+  const puff = new Puff(motion, source);
+  const velocity = new Float64Array(2);
+  for (const birthS of births) {
+    if (birthS >= horizonS) continue;
+    for (let origin = 0; origin < source.origins.length; origin++) {
+      const nearness = (tS: number): number => {
+        puff.seen(birthS, tS, false);
+        return -puff.distance2(x, y, origin);
+      };
+      for (const tS of humps(nearness, birthS, horizonS)) {
+        // Beyond 12 standard deviations the passage leaves nothing that counts.
+        if (nearness(tS) < -144) continue;
+        motion.current.velocity(tS, velocity);
+        const sigma = Math.sqrt(puff.covariance[0]! + puff.covariance[2]!);
+        out.push({ atS: tS, scaleS: Math.min((tS - birthS) / 2, sigma / Math.max(1e-6, Math.hypot(velocity[0]!, velocity[1]!))) });
+      }
+    }
+  }
+  return out;
+}
+
+/** Local maxima of f on (from, to], found on 240 steps that widen with age and refined. */
+function humps(f: (x: number) => number, from: number, to: number): number[] {
+  const steps = 240;
+  const at = (i: number): number => from + (to - from) * (0.5 * (i / steps) + 0.5 * (i / steps) ** 3);
+  const out: number[] = [];
+  let before = -Infinity;
+  let here = f(at(1));
+  for (let i = 2; i <= steps; i++) {
+    const next = f(at(i));
+    if (here >= before && here >= next) out.push(findMaximum(f, at(i - 2), at(i), 1e-3 * (at(i) - at(i - 2))).x);
+    before = here;
+    here = next;
+  }
+  if (here > before) out.push(to);
+  return out;
+}

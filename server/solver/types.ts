@@ -1,0 +1,63 @@
+import type { FrameGrid, StreamHead } from '../../shared/frames';
+import type { EstimateDocument, EstimateReceptor } from '../../shared/schemas/estimate';
+import type { Check, WorkingLine } from '../../shared/schemas/estimate-result';
+import type { LossClock } from './loss';
+import type { Meter } from './meter';
+import type { ResolvedRelease, WeightSet, Weights } from './release-profile';
+
+/** Takes messages as they are ready. A payload is handed over: the engine keeps no reference. */
+export type EstimateSink = (head: StreamHead, payload?: Uint8Array) => void;
+
+/** What every solver is given. */
+export type RunInput = {
+  readonly doc: EstimateDocument;
+  readonly releases: readonly ResolvedRelease[];
+  readonly weights: WeightSet;
+  readonly loss: LossClock;
+  /** Coarser frames and release-time integrals, for a forecast that follows the hand. */
+  readonly isPreview: boolean;
+  readonly tolerance: number;
+  readonly meter: Meter;
+};
+
+/** A time around which a response may rise or fall within a few `scaleS`. */
+export type Feature = { readonly atS: number; readonly scaleS: number };
+
+/** Answer of one place to one release of one kilogram (or count). */
+export type UnitResponse = {
+  /** Concentration per kilogram, 1/m3. */
+  at(tS: number, withLoss: boolean): number;
+  readonly features: readonly Feature[];
+};
+
+/** A receptor as a solver sees it: one response per release; null where that release cannot reach it. */
+export type ReceptorSite = {
+  readonly distanceM: number | null;
+  readonly responses: readonly (UnitResponse | null)[];
+  /** Why nothing arrives, where no response is given. */
+  readonly reason: string;
+  readonly checks: readonly Check[];
+  /** How the peak came about; `peakS` is the time of the likely peak. */
+  working(peakS: number): WorkingLine[];
+};
+
+/** Concentrations per node, kg/m3; NaN where there is no estimate. */
+export type GriddedField = { grid: FrameGrid; values: Float64Array };
+
+/** Shares of the released amount, kg, at one time. */
+export type Books = { released: number; inWater: number; lost: number; left: number };
+
+export type DistanceTime = { timesS: number[]; chainageKm: number[]; reachIds: string[]; values: number[][] };
+
+/** A document made ready: concentration at a place and time, and grids at a time. */
+export type PreparedField = {
+  receptor(index: number, receptor: EstimateReceptor): ReceptorSite;
+  gridAt(tS: number, weights: Weights): GriddedField;
+  envelope(frameTimesS: readonly number[], weights: Weights): GriddedField;
+  distanceTime(timesS: readonly number[], weights: Weights): DistanceTime | null;
+  books(tS: number, weights: Weights): Books;
+  readonly working: readonly WorkingLine[];
+  readonly checks: readonly Check[];
+};
+
+export type Solver = { readonly name: string; prepare(input: RunInput): PreparedField };
