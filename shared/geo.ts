@@ -90,3 +90,20 @@ export function distanceM(a: LonLat, b: LonLat): number {
   const h = Math.sin(dLat / 2) ** 2 + Math.cos(a[1] * RAD) * Math.cos(b[1] * RAD) * Math.sin(dLon / 2) ** 2;
   return 2 * EARTH_RADIUS_M * Math.asin(Math.min(1, Math.sqrt(h)));
 }
+
+/** Distance from a position to an area, m: 0 inside it, else to its nearest outline. */
+export function distanceToAreaM(position: LonLat, area: readonly (readonly LonLat[])[]): number {
+  if (isInArea(position, area)) return 0;
+  const plane: LocalPlane = { originLon: position[0], originLat: position[1] };
+  let nearest = Infinity;
+  for (const ring of area) {
+    for (let i = 1; i < ring.length; i++) {
+      const [ax, ay] = toPlane(plane, ring[i - 1]!);
+      const [bx, by] = toPlane(plane, ring[i]!);
+      const length2 = (bx - ax) ** 2 + (by - ay) ** 2;
+      const t = length2 === 0 ? 0 : Math.min(1, Math.max(0, -(ax * (bx - ax) + ay * (by - ay)) / length2));
+      nearest = Math.min(nearest, Math.hypot(ax + t * (bx - ax), ay + t * (by - ay)));
+    }
+  }
+  return nearest;
+}

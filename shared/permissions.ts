@@ -1,3 +1,5 @@
+import type { RegisterName } from './schemas/registers';
+
 /** Which role may do what: the one table. The server enforces it on every route; the client shows only what it allows. */
 export const roles = ['planner', 'engineer', 'supervisor', 'coordinator', 'administrator'] as const;
 export type Role = (typeof roles)[number];
@@ -38,3 +40,12 @@ export type Action = keyof typeof permissions;
 
 export const allows = (held: readonly Role[], action: Action): boolean =>
   held.some((role) => (permissions[action] as readonly Role[]).includes(role));
+
+/** What writing to each register needs. */
+export const registerWriteActions = {
+  waters: 'water:write',
+  receptors: 'receptor:write',
+  sources: 'source:write',
+  substances: 'substance:write',
+  stations: 'station:write',
+} as const satisfies Record<RegisterName, Action>;

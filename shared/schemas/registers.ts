@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { type RuleProblem, substanceProblems, waterProblems } from '../register-rules';
 import { bankSchema, daySchema, idSchema, instantSchema, lonLatSchema, nameSchema, notNegative, positive, ringSchema, textSchema } from './basics';
 import { currentPartSchema, lossSchema, mixingSchema, reachSchema, receptorKindSchema } from './estimate';
 
@@ -6,6 +7,11 @@ import { currentPartSchema, lossSchema, mixingSchema, reachSchema, receptorKindS
 export const registerNames = ['waters', 'receptors', 'sources', 'substances', 'stations'] as const;
 export const registerNameSchema = z.enum(registerNames);
 export type RegisterName = z.infer<typeof registerNameSchema>;
+
+const report =
+  <T>(rule: (data: T) => RuleProblem[]) =>
+  (data: T, ctx: { addIssue: (issue: { code: 'custom'; path: (string | number)[]; message: string }) => void }): void =>
+    rule(data).forEach(({ path, message }) => ctx.addIssue({ code: 'custom', path, message }));
 
 /* ---------- waters ---------- */
 
@@ -30,10 +36,10 @@ const openDataSchema = z.object({
   calibrated: z.boolean().default(false),
   note: textSchema(2_000).default(''),
 });
-export const waterDataSchema = z.union([riverDataSchema, openDataSchema]);
-export type WaterData = z.infer<typeof waterDataSchema>;
+export const waterDataSchema = z.discriminatedUnion('kind', [riverDataSchema, openDataSchema]).superRefine(report(waterProblems));
 export type RiverData = z.infer<typeof riverDataSchema>;
 export type OpenWaterData = z.infer<typeof openDataSchema>;
+export type WaterData = RiverData | OpenWaterData;
 
 /* ---------- receptors ---------- */
 
@@ -87,36 +93,38 @@ export type SourceData = z.infer<typeof sourceDataSchema>;
 
 /* ---------- substances ---------- */
 
-export const substanceDataSchema = z.object({
-  otherNames: z.array(textSchema(120)).max(30).default([]),
-  cas: textSchema(20).default(''),
-  unNumber: textSchema(10).default(''),
-  /** What its figures count: "as N", "as Cr", "dissolved". */
-  basis: textSchema(40).default(''),
-  measure: z.enum(['mass', 'count']),
-  form: textSchema(200).default(''),
-  /** kg of the substance reckoned (on its basis) in one kg of the product as spilled. */
-  activeFraction: positive('kg/kg', 1).default(1),
-  productDensityKgM3: positive('kg/m3', 2e4).nullable().default(null),
-  solubilityKgM3: positive('kg/m3', 1e4).nullable().default(null),
-  loss: lossSchema.default({ kind: 'none' }),
-  hazards: textSchema(1_000).default(''),
-  publishedValues: z
-    .array(
-      z.object({
-        use: z.enum(['drinking', 'bathing', 'irrigation', 'livestock', 'aquatic', 'shellfish', 'other']),
-        value: positive('in the unit beside it', 1e12),
-        unit: z.enum(['ug/l', 'mg/l', 'counts/100ml']),
-        basis: textSchema(40).default(''),
-        averaging: textSchema(80).default(''),
-        source: textSchema(300).min(1, 'Name where the value is published'),
-      }),
-    )
-    .max(60)
-    .default([]),
-  sheetSource: textSchema(300).default(''),
-  note: textSchema(2_000).default(''),
-});
+export const substanceDataSchema = z
+  .object({
+    otherNames: z.array(textSchema(120)).max(30).default([]),
+    cas: textSchema(20).default(''),
+    unNumber: textSchema(10).default(''),
+    /** What its figures count: "as N", "as Cr", "dissolved". */
+    basis: textSchema(40).default(''),
+    measure: z.enum(['mass', 'count']),
+    form: textSchema(200).default(''),
+    /** kg of the substance reckoned (on its basis) in one kg of the product as spilled. */
+    activeFraction: positive('kg/kg', 1).default(1),
+    productDensityKgM3: positive('kg/m3', 2e4).nullable().default(null),
+    solubilityKgM3: positive('kg/m3', 1e4).nullable().default(null),
+    loss: lossSchema.default({ kind: 'none' }),
+    hazards: textSchema(1_000).default(''),
+    publishedValues: z
+      .array(
+        z.object({
+          use: z.enum(['drinking', 'bathing', 'irrigation', 'livestock', 'aquatic', 'shellfish', 'other']),
+          value: positive('in the unit beside it', 1e12),
+          unit: z.enum(['ug/l', 'mg/l', 'counts/100ml']),
+          basis: textSchema(40).default(''),
+          averaging: textSchema(80).default(''),
+          source: textSchema(300).min(1, 'Name where the value is published'),
+        }),
+      )
+      .max(60)
+      .default([]),
+    sheetSource: textSchema(300).default(''),
+    note: textSchema(2_000).default(''),
+  })
+  .superRefine(report(substanceProblems));
 export type SubstanceData = z.infer<typeof substanceDataSchema>;
 
 /* ---------- stations: gauges and sampling points ---------- */
@@ -198,4 +206,51 @@ export const registerItemSchema = z.object({
 /** Days after which an unchecked entry is stale. Common practice, no source. */
 export const staleAfterDays: Record<RegisterName, number> = { waters: 1_095, receptors: 365, sources: 365, substances: 1_095, stations: 730 };
 
-export type RegisterHistoryEntry = { version: number; at: string; by: string; reason: string; name: string; code: string; changedPaths: string[] };
+/** What differs from the version before: path, and both values as short text ('' where there was none). */
+export const registerChangeSchema = z.object({ path: z.string(), from: z.string(), to: z.string() });
+export type RegisterChange = z.infer<typeof registerChangeSchema>;
+export const registerHistoryEntrySchema = z.object({
+  version: z.number().int(),
+  at: z.string(),
+  by: z.string(),
+  reason: z.string(),
+  name: z.string(),
+  code: z.string(),
+  changedPaths: z.array(z.string()),
+  changes: z.array(registerChangeSchema),
+});
+export type RegisterHistoryEntry = z.infer<typeof registerHistoryEntrySchema>;
+
+/** One stored version, whole. */
+export const registerVersionSchema = z.object({
+  version: z.number().int(),
+  at: z.string(),
+  by: z.string(),
+  reason: z.string(),
+  code: z.string(),
+  name: z.string(),
+  ownerName: z.string(),
+  lastCheckedOn: z.string().nullable(),
+  isArchived: z.boolean(),
+  data: z.unknown(),
+});
+export type RegisterVersion<R extends RegisterName = RegisterName> = Omit<z.infer<typeof registerVersionSchema>, 'data'> & { data: RegisterData[R] };
+
+const yesNo = z.enum(['true', 'false', '1', '0']).transform((text) => text === 'true' || text === '1');
+/** Query of GET /api/registers/:register. Without a page size the whole register comes at once. */
+export const registerListQuerySchema = z.object({
+  search: z.string().trim().max(200, 'At most 200 characters').default(''),
+  stale: yesNo.default(false),
+  archived: yesNo.default(false),
+  page: z.coerce.number().int().min(1, 'Pages count from 1').max(100_000).default(1),
+  pageSize: z.coerce.number().int().min(1, 'At least 1').max(2_000, 'At most 2,000 a page').default(2_000),
+});
+export type RegisterListQuery = z.output<typeof registerListQuerySchema>;
+/** `total` counts what the search found, `staleCount` the stale ones of the whole register in use. */
+export const registerListSchema = z.object({ items: z.array(registerItemSchema), total: z.number().int(), page: z.number().int(), pageSize: z.number().int(), staleCount: z.number().int() });
+export type RegisterList<R extends RegisterName = RegisterName> = Omit<z.infer<typeof registerListSchema>, 'items'> & { items: RegisterItem<R>[] };
+
+/** Body of archive and restore. */
+export const registerMoveSchema = z.object({ version: z.number().int().min(1), reason: textSchema(300).default('') });
+/** Body of "checked": somebody has looked at the entry and found it right, today unless said. */
+export const registerCheckedSchema = z.object({ version: z.number().int().min(1), on: daySchema.optional() });
