@@ -40,6 +40,7 @@ export function DistrictMap({ theme, label, onClick, onPointer, initialView, fit
   const helpId = useId();
   const state = useMemo(() => ({ theme, tool, setTool, byKeyboard }), [theme, tool, byKeyboard]);
   const first = initialView ?? { bounds: fitTo ?? DISTRICT };
+  const everything = fitTo ?? ('bounds' in first ? first.bounds : null);
 
   useEffect(() => {
     if (!map) return;
@@ -87,10 +88,10 @@ export function DistrictMap({ theme, label, onClick, onPointer, initialView, fit
           <ZoomClasses />
           <BaseTiles theme={theme} />
           <PointerRelay onClick={onClick} onPointer={onPointer} />
-          <MapKeys onClick={onClick} onKeyboard={setByKeyboard} fitTo={fitTo ?? ('bounds' in first ? first.bounds : null)} />
+          <MapKeys onKeyboard={setByKeyboard} fitTo={everything} />
           {tool === 'measure' && <MeasureTool />}
           {children}
-          <MapToolbar fitTo={fitTo ?? ('bounds' in first ? first.bounds : null)} />
+          <MapToolbar fitTo={everything} />
           <MapFoot />
         </MapContainer>
       </div>

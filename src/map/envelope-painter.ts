@@ -1,23 +1,29 @@
 import { concentrationText, type PaintOptions } from './frame-painter';
-import { LabelBook } from './label-book';
+import { haloText, mapFont } from './label-book';
 import type { MapView } from './mercator';
 import { mapInk } from './palette';
 import type { PreparedFrame, Sheet } from './sheets';
-import { strokeLines, traceLines, traceRings, type Lines, type PathSink } from './trace';
+import { strokeLines, traceLines, traceRings, type PathSink } from './trace';
 
 /** Keeps the outline of a river's envelope off its ribbon, px. */
 const CLEAR_OF_RIBBON_PX = 5;
 
-/** Strokes the outline of the first level over all time, long-dashed, with its words once. */
+/** Where the words go: below the outline of a river, to the right of an outline on open water; isolines print theirs at the top. */
+type Spot = { x: number; y: number; score: number };
+
+/** Strokes the outline of the first level over all time, dotted, with its words once. */
 export function paintEnvelope(context: CanvasRenderingContext2D, prepared: PreparedFrame, view: MapView, water: Path2D | null, options: PaintOptions): void {
   const ink = mapInk[options.theme];
+  const words = prepared.levels[0] ? `reached at any time: ${concentrationText(prepared.levels[0].value, options.measure)}` : '';
+  context.font = mapFont(11, 400);
+  const room = context.measureText(words).width + 8;
+  const spot: Spot = { x: 0, y: 0, score: -Infinity };
   context.save();
   if (water) context.clip(water, 'evenodd');
   context.beginPath();
-  const lowest = { x: 0, y: -Infinity };
   for (const entry of prepared.sheets) {
-    if (entry.thin) outlineRibbon(context, entry.thin, entry.widthPx(view), view, lowest);
-    else strokeAndNote(context, traceLines(entry.full, entry.full.bands[0]!, entry.full.placeIn(view), Infinity), view, lowest);
+    if (entry.thin) outlineRibbon(context, entry.thin, entry.widthPx(view), view, room, spot);
+    else outlineOpen(context, entry.full, view, room, spot);
   }
   context.lineJoin = 'round';
   context.lineWidth = 3.5;
@@ -30,29 +36,27 @@ export function paintEnvelope(context: CanvasRenderingContext2D, prepared: Prepa
   context.setLineDash([2, 4]);
   context.stroke();
   context.restore();
-  const level = prepared.levels[0];
-  if (level && lowest.y > -Infinity) new LabelBook(context, options.theme, view.seen).print(`reached at any time: ${concentrationText(level.value, options.measure)}`, [[lowest.x, lowest.y + 13]], 11, 400);
+  if (spot.score > -Infinity) haloText(context, options.theme, words, spot.x, spot.y);
 }
 
-function strokeAndNote(sink: PathSink, lines: Lines, view: MapView, lowest: { x: number; y: number }): void {
+function outlineOpen(sink: PathSink, sheet: Sheet, view: MapView, room: number, spot: Spot): void {
+  const lines = traceLines(sheet, sheet.bands[0]!, sheet.placeIn(view), Infinity);
   strokeLines(lines, sink);
-  for (let k = 0; k < lines.points.length; k += 2) note(lines.points[k]!, lines.points[k + 1]!, view, lowest);
-}
-
-/** Remembers the lowest vertex in sight that leaves room for a line of words below it; the figures of the isolines prefer the top. */
-function note(x: number, y: number, { seen }: MapView, lowest: { x: number; y: number }): void {
-  if (y <= lowest.y || y < seen.top || x < seen.left + 110 || x > seen.right - 110 || y > seen.bottom - 60) return;
-  lowest.x = x;
-  lowest.y = y;
+  for (let k = 0; k < lines.points.length; k += 2) note(lines.points[k]! + room / 2 + 4, lines.points[k + 1]!, lines.points[k]!, view, room, spot);
 }
 
 /** Rings of the thin sheet widened to both sides, so that the outline runs beside the ribbon. */
-function outlineRibbon(sink: PathSink, sheet: Sheet, ribbon: number, view: MapView, lowest: { x: number; y: number }): void {
+function outlineRibbon(sink: PathSink, sheet: Sheet, ribbon: number, view: MapView, room: number, spot: Spot): void {
   const place = sheet.placeIn(view);
   const grow = CLEAR_OF_RIBBON_PX / ribbon;
   const wider: typeof place = (x, y, out) => {
     place(x <= 0 ? -grow : x >= 1 ? 1 + grow : x, y, out);
-    note(out[0]!, out[1]!, view, lowest);
+    note(out[0]!, out[1]! + 13, out[1]!, view, room, spot);
   };
   traceRings(sheet.bands[0]!, wider, sheet.bendEvery(view), sink);
+}
+
+function note(x: number, y: number, score: number, { seen }: MapView, room: number, spot: Spot): void {
+  if (score <= spot.score || x - room / 2 < seen.left || x + room / 2 > seen.right || y < seen.top + 10 || y > seen.bottom - 50) return;
+  Object.assign(spot, { x, y, score });
 }

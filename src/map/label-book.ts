@@ -35,12 +35,18 @@ export class LabelBook {
     const half = this.context.measureText(text).width / 2 + 3;
     for (const [x, y] of places) {
       const box = { left: x - half, right: x + half, top: y - fontPx * 0.6, bottom: y + fontPx * 0.6 };
-      if (!this.isFree(box)) continue;
-      this.taken.push(box);
+      if (!this.take(box)) continue;
       haloText(this.context, this.theme, text, x, y);
       return true;
     }
     return false;
+  }
+
+  /** Keeps a place for something drawn by other hands; false when it is taken or out of sight. */
+  take(box: Box): boolean {
+    if (!this.isFree(box)) return false;
+    this.taken.push(box);
+    return true;
   }
 
   private isFree(box: Box): boolean {

@@ -9,13 +9,13 @@ const STEP_PX = 80;
 const FINE_STEP_PX = 8;
 const moves: Record<string, [number, number]> = { ArrowLeft: [-1, 0], ArrowRight: [1, 0], ArrowUp: [0, -1], ArrowDown: [0, 1] };
 
-type Props = { onClick?: (position: LonLat) => void; onKeyboard: (byKeyboard: boolean) => void; fitTo: [LonLat, LonLat] | null };
+type Props = { onKeyboard: (byKeyboard: boolean) => void; fitTo: [LonLat, LonLat] | null };
 
-/** Works the map by keyboard: arrows (finer with Shift), plus and minus, Home, Enter at the cross-hair. */
-export function MapKeys({ onClick, onKeyboard, fitTo }: Props) {
+/** Works the map by keyboard: arrows (finer with Shift), plus and minus, Home; Enter is a click at the cross-hair. */
+export function MapKeys({ onKeyboard, fitTo }: Props) {
   const map = useMap();
-  const { byKeyboard, tool } = useMapState();
-  const [spoken, setSpoken] = useState('');
+  const { byKeyboard } = useMapState();
+  const [spoken, setSpoken] = useState(() => formatCoordinates(lonLatOf(map.getCenter()), 'decimal'));
 
   useEffect(() => {
     const element = map.getContainer();
@@ -31,10 +31,8 @@ export function MapKeys({ onClick, onKeyboard, fitTo }: Props) {
       else if (event.key === '+' || event.key === '=') map.zoomIn(1);
       else if (event.key === '-' || event.key === '_') map.zoomOut(1);
       else if (event.key === 'Home' && fitTo) map.fitBounds([[fitTo[0][1], fitTo[0][0]], [fitTo[1][1], fitTo[1][0]]], { padding: [32, 32] });
-      else if (event.key === 'Enter' || event.key === ' ') {
-        if (tool === 'none') onClick?.(lonLatOf(map.getCenter()));
-        else map.fire('click', { latlng: map.getCenter() });
-      } else return false;
+      else if (event.key === 'Enter' || event.key === ' ') map.fire('click', { latlng: map.getCenter() });
+      else return false;
       return true;
     };
     const byPointer = () => onKeyboard(false);
@@ -49,7 +47,7 @@ export function MapKeys({ onClick, onKeyboard, fitTo }: Props) {
       element.removeEventListener('blur', byPointer);
       map.off('moveend', speak);
     };
-  }, [map, onClick, onKeyboard, fitTo, tool]);
+  }, [map, onKeyboard, fitTo]);
 
   return (
     <>

@@ -8,7 +8,7 @@ export const ochre = ['#f4e8c3', '#e0c482', '#c89d48', '#a57627', '#7e541b', '#5
 /** Colours of what is drawn over the base map. */
 export const mapInk: Record<MapTheme, { ink: string; ink2: string; paper: string; kingfisher: string; river: string; hatch: string }> = {
   day: { ink: '#1c2832', ink2: '#49545e', paper: '#f9f6f2', kingfisher: '#006e8c', river: '#a5c4cc', hatch: '#49545e' },
-  night: { ink: '#ebe7e0', ink2: '#b8b4ac', paper: '#0f171e', kingfisher: '#5bc1d9', river: '#1d3540', hatch: '#b8b4ac' },
+  night: { ink: '#ebe7e0', ink2: '#b8b4ac', paper: '#0f171e', kingfisher: '#5bc1d9', river: '#2a4a57', hatch: '#b8b4ac' },
 };
 
 /** Bands lie over the map at this opacity, so that the water below stays readable. */

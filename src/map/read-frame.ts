@@ -43,13 +43,17 @@ function channelCode(grid: ChannelGrid, codes: Uint16Array, position: LonLat, wa
   return 0;
 }
 
+/** A chainage so close past the end of a part counts as its end: projecting a position rounds it by less. */
+const END_SLACK_KM = 0.002;
+
 /** Place of a chainage among ascending or descending chainages, in rows; null outside. */
 function rowAt(chainageKm: readonly number[], km: number): number | null {
-  for (let row = 1; row < chainageKm.length; row++) {
+  const last = chainageKm.length - 1;
+  for (let row = 1; row <= last; row++) {
     const [a, b] = [chainageKm[row - 1]!, chainageKm[row]!];
     if ((km - a) * (km - b) <= 0) return row - 1 + (a === b ? 0 : (km - a) / (b - a));
   }
-  return null;
+  return Math.abs(km - chainageKm[0]!) < END_SLACK_KM ? 0 : Math.abs(km - chainageKm[last]!) < END_SLACK_KM ? last : null;
 }
 
 const noneBare = (): boolean => false;

@@ -28,7 +28,7 @@ export function paintRiver(context: CanvasRenderingContext2D, reaches: readonly 
   for (const reach of reaches) {
     paintArrows(context, reach, view, theme);
     paintChainages(context, book, reach, view, theme);
-    if (view.zoom >= BANKS_FROM_ZOOM) paintBanks(context, reach, view, theme);
+    if (view.zoom >= BANKS_FROM_ZOOM) paintBanks(context, book, reach, view, theme);
   }
 }
 
@@ -91,15 +91,18 @@ function paintChainages(context: CanvasRenderingContext2D, book: LabelBook, { co
 }
 
 /** LEFT and RIGHT along the banks, turned with the river but never upside down. */
-function paintBanks(context: CanvasRenderingContext2D, { course, widthM }: RiverReach, view: MapView, theme: MapTheme): void {
+function paintBanks(context: CanvasRenderingContext2D, book: LabelBook, { course, widthM }: RiverReach, view: MapView, theme: MapTheme): void {
   const half = ribbonPx(widthM, view.metresPerPixel, view.zoom) / 2;
   context.font = mapFont(10, 600);
   everyPx(course, view, BANK_EVERY_PX, (x, y, lx, ly) => {
     const turn = Math.atan2(lx, -ly);
     const upright = Math.abs(turn) > Math.PI / 2 ? turn + Math.PI : turn;
     for (const [word, side] of [['LEFT', 1], ['RIGHT', -1]] as const) {
+      const [atX, atY] = [x + lx * side * (half + 9), y + ly * side * (half + 9)];
+      const [wide, high] = [6 + 17 * Math.abs(ly), 6 + 17 * Math.abs(lx)];
+      if (!book.take({ left: atX - wide, right: atX + wide, top: atY - high, bottom: atY + high })) continue;
       context.save();
-      context.translate(x + lx * side * (half + 9), y + ly * side * (half + 9));
+      context.translate(atX, atY);
       context.rotate(upright);
       context.letterSpacing = '1.5px';
       haloText(context, theme, word, 0, 0);
