@@ -19,9 +19,9 @@ export type SaveState = { phase: 'saved'; at: string; by: string } | { phase: 's
  * Sends the draft to the server a moment after each change, one request at a time. Until the server has confirmed, a copy is
  * kept in this browser. A write by somebody else in between stops the saving and is shown: nothing is overwritten silently.
  */
-export function useDraftSave(scenario: Scenario, draft: Draft, firstHeld: Draft, isEditable: boolean) {
+export function useDraftSave(scenario: Scenario, draft: Draft, first: { draft: Draft; version: number }, isEditable: boolean, isUrgent: boolean) {
   const client = useQueryClient();
-  const [held, setHeld] = useState<Held>({ draft: firstHeld, version: scenario.draftVersion, at: scenario.draftSavedAt, by: scenario.draftSavedBy });
+  const [held, setHeld] = useState<Held>({ ...first, at: scenario.draftSavedAt, by: scenario.draftSavedBy });
   const [trouble, setTrouble] = useState<Trouble | null>(null);
   const isBusy = useRef(false);
   const isDirty = draft !== held.draft;
@@ -46,9 +46,9 @@ export function useDraftSave(scenario: Scenario, draft: Draft, firstHeld: Draft,
         isBusy.current = false;
       }
     };
-    const timer = setTimeout(() => void send(), trouble?.kind === 'waiting' ? RETRY_MS : WAIT_MS);
+    const timer = setTimeout(() => void send(), trouble?.kind === 'waiting' ? RETRY_MS : isUrgent ? 0 : WAIT_MS);
     return () => clearTimeout(timer);
-  }, [mayTry, draft, held.version, trouble, scenario.id, client]);
+  }, [mayTry, draft, held.version, trouble, scenario.id, client, isUrgent]);
 
   /** Goes on from a draft the server already holds. */
   const adopt = useCallback(

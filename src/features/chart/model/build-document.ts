@@ -1,4 +1,3 @@
-import { isInArea } from '../../../../shared/geo';
 import type { FieldError } from '../../../../shared/problem';
 import { estimateDocumentSchema, type EstimateDocument } from '../../../../shared/schemas/estimate';
 import type { Draft, DraftRelease } from './draft';
@@ -22,16 +21,6 @@ function spilledVolumeM3(release: DraftRelease): number | null {
   return amount.how === 'volume-strength' || amount.how === 'volume-density' || amount.how === 'volume-count' ? amount.volumeM3.likely : null;
 }
 
-function outsideWater(draft: Draft): FieldError[] {
-  const { water } = draft;
-  if (water?.kind !== 'open') return [];
-  return draft.releases.flatMap((release, i) =>
-    isInArea(release.position, water.area)
-      ? []
-      : [{ path: `releases.${i}.position`, message: `${release.position[1].toFixed(4)}, ${release.position[0].toFixed(4)} is not in ${water.name}: move the release into the water` }],
-  );
-}
-
 /** Receptors left out shift the positions of the others: back to those of the draft. */
 function draftPath(path: readonly PropertyKey[], kept: readonly number[]): string {
   const at = path[0] === 'receptors' && typeof path[1] === 'number' ? ['receptors', kept[path[1]] ?? path[1], ...path.slice(2)] : path;
@@ -51,8 +40,7 @@ export function buildDocument(draft: Draft): Built {
     receptors: kept.map((i) => draft.receptors[i]),
   });
   if (!parsed.success) return { document: null, errors: parsed.error.issues.map((issue) => ({ path: draftPath(issue.path, kept), message: issue.message })) };
-  const outside = outsideWater(draft);
-  return outside.length > 0 ? { document: null, errors: outside } : { document: parsed.data, errors: [] };
+  return { document: parsed.data, errors: [] };
 }
 
 /** Messages standing at a field or inside it. */

@@ -1,0 +1,148 @@
+import { useEffect, useMemo, useState } from 'react';
+import { useMapEvents } from 'react-leaflet';
+import type L from 'leaflet';
+import { isRiver } from '../../../../shared/assemble';
+import { EARTH_RADIUS_M } from '../../../../shared/geo';
+import type { Measure } from '../../../../shared/format';
+import type { LonLat } from '../../../../shared/schemas/basics';
+import type { EstimateDocument, EstimateWater } from '../../../../shared/schemas/estimate';
+import { Button } from '../../../components/button';
+import { useTheme } from '../../../lib/theme';
+import { ConcentrationGauge } from '../../../map/concentration-gauge';
+import { DistrictMap } from '../../../map/district-map';
+import { EnvelopeLayer } from '../../../map/envelope-layer';
+import { FrameLayer } from '../../../map/frame-layer';
+import { ReceptorLayer } from '../../../map/receptor-layer';
+import { ReleaseLayer, type ReleaseMark } from '../../../map/release-layer';
+import { RiverLayer } from '../../../map/river-layer';
+import { THIN_RIBBON_PX } from '../../../map/sheets';
+import { useChart } from '../hooks/chart-context';
+import type { Clock } from '../model/arrival-words';
+import { formatTimeOfDay } from '../../../../shared/format';
+import { placeRelease } from '../model/draft-actions';
+import { frameIndexAt, type Forecast } from '../model/forecast';
+import type { Place } from '../model/place';
+import { boundsOf } from '../model/bounds';
+import { ReadOut } from './read-out';
+import type { Rows } from './receptors-panel';
+
+type Props = {
+  forecast: Forecast | null;
+  document: EstimateDocument | null;
+  isBehind: boolean;
+  timeS: number;
+  clock: Clock;
+  measure: Measure;
+  rows: Rows;
+  selectedId: string | null;
+  onSelect: (id: string | null) => void;
+  missing: string | null;
+};
+
+/** The map: river and receptors from the draft, the cloud from the forecast, releases to place and drag. */
+export function MapStage({ forecast, document, isBehind, timeS, clock, measure, rows, selectedId, onSelect, missing }: Props) {
+  const { draft, change, registers, isReadOnly, placing, setPlacing, selectRelease, selectedReleaseId } = useChart();
+  const { theme } = useTheme();
+  const [probe, setProbe] = useState<LonLat | null>(null);
+  const [refused, setRefused] = useState<{ why: string; nearest: Place | null } | null>(null);
+  const [showsEnvelope, setShowsEnvelope] = useState(true);
+  const [metresPerPixel, setMetresPerPixel] = useState(50);
+  const water = document?.water ?? null;
+  const index = forecast ? frameIndexAt(forecast, timeS) : null;
+  const frame = forecast && index !== null ? (forecast.frames[index] ?? null) : null;
+  const isPlacing = !isReadOnly && (draft.releases.length === 0 || placing !== null);
+
+  const place = (position: LonLat, moveId: string | null): LonLat | null => {
+    const outcome = placeRelease(draft, position, registers, moveId);
+    if (!('draft' in outcome)) {
+      setRefused({ why: outcome.refused, nearest: outcome.nearest });
+      return null;
+    }
+    change(() => outcome.draft, moveId ? `${moveId}.move` : '');
+    selectRelease(outcome.releaseId);
+    setPlacing(null);
+    setRefused(null);
+    return outcome.draft.releases.find((release) => release.id === outcome.releaseId)?.position ?? null;
+  };
+  const click = (position: LonLat) => {
+    if (isPlacing) place(position, placing?.moveId ?? null);
+    else setProbe(position);
+  };
+
+  const waterId = draft.water?.registerId ?? '';
+  const fitTo = useMemo(() => boundsOf([...draft.releases.map((release) => release.position), ...draft.receptors.map((receptor) => receptor.position)]),
+    // The view follows a change of water only: it must stay still while a release is dragged.
+    // eslint-disable-next-line react-hooks/exhaustive-deps
+    [waterId]);
+  const reaches = useMemo(() => (draft.water ? (draft.water.kind === 'river' ? draft.water.reaches : []) : registers.waters.flatMap((item) => (isRiver(item.data) ? item.data.reaches : []))), [draft.water, registers.waters]);
+  const releases = useMemo<ReleaseMark[]>(() => draft.releases.map((release) => ({ id: release.id, name: release.name, position: release.position, timeLabel: Number.isNaN(clock.startMs) ? '' : formatTimeOfDay(clock.startMs + startOf(release.timing) * 1_000, clock.offset) })), [draft.releases, clock.startMs, clock.offset]);
+  const numbers = useMemo(() => new Map(rows.map((row) => [row.receptor.id, row.number] as const)), [rows]);
+  const receptors = useMemo(() => rows.map((row) => row.receptor), [rows]);
+  const answers = useMemo(() => rows.flatMap((row) => row.answer ?? []), [rows]);
+
+  return (
+    <div className="relative h-full min-h-0 [grid-area:stage] print:h-[105mm]">
+      <DistrictMap theme={theme} label="Map of the district" onClick={click} fitTo={fitTo}>
+        <ScaleReport onScale={setMetresPerPixel} />
+        <RiverLayer reaches={reaches} />
+        {water && forecast && <CloudLayers forecast={forecast} frame={frame} water={water} theme={theme} measure={measure} showsEnvelope={showsEnvelope} />}
+        <ReceptorLayer receptors={receptors} answers={answers} numbers={numbers} selectedId={selectedId} onSelect={onSelect} />
+        <ReleaseLayer releases={releases} selectedId={selectedReleaseId} onSelect={selectRelease} {...(isReadOnly ? {} : { onMove: (id: string, position: LonLat, ended: boolean) => dragTo(ended, draft, id, position, registers, place) })} />
+      </DistrictMap>
+      {isPlacing && !refused && (
+        <p role="status" className="pointer-events-none absolute top-3 left-1/2 z-[1001] w-max max-w-[70%] -translate-x-1/2 rounded-sm bg-sheet px-4 py-2 font-semibold shadow-float print:hidden">
+          {placing?.moveId ? 'Click the water where it belongs' : 'Click the water where it got in'}
+        </p>
+      )}
+      {refused && (
+        <div role="alert" className="absolute top-3 left-3 z-[1001] flex max-w-[min(28rem,75%)] flex-wrap items-center gap-2 rounded-sm border-l-4 border-bad bg-sheet p-3 shadow-float print:hidden">
+          <span className="flex-1 basis-48">{refused.why}</span>
+          {refused.nearest && <Button onClick={() => place(refused.nearest!.position, placing?.moveId ?? null)}>Use {refused.nearest.words}</Button>}
+          <Button kind="quiet" icon="close" aria-label="Close" onClick={() => setRefused(null)} />
+        </div>
+      )}
+      {forecast && forecast.levels.length > 0 && (
+        <div className="absolute bottom-14 left-3 z-[1000] rounded-sm bg-sheet/90 p-2 shadow-float max-md:hidden print:block">
+          <ConcentrationGauge levels={forecast.levels} measure={measure} theme={theme} />
+          <label className="flex items-center gap-2 text-note print:hidden">
+            <input type="checkbox" className="accent-kingfisher" checked={showsEnvelope} onChange={(event) => setShowsEnvelope(event.target.checked)} />
+            Outline of all it reaches
+          </label>
+        </div>
+      )}
+      {probe && frame && water && <ReadOut position={probe} frame={frame} envelope={forecast?.envelope ?? null} water={water} ribbonM={THIN_RIBBON_PX * metresPerPixel} timeS={frame.head.timeS} clock={clock} measure={measure} onClose={() => setProbe(null)} />}
+      {(missing || isBehind) && forecast && (
+        <p className="pointer-events-none absolute inset-x-0 bottom-0 z-[999] bg-sheet/85 px-4 py-1.5 text-center font-semibold print:hidden">
+          {missing ? <><s className="text-ink2">Forecast of the last complete figures.</s> {missing}</> : 'Solving the change'}
+        </p>
+      )}
+    </div>
+  );
+}
+
+const startOf = (timing: { kind: string; atS?: number | null; startS?: number | null; rows?: { atS: number | null }[] }): number => timing.atS ?? timing.startS ?? timing.rows?.[0]?.atS ?? 0;
+
+/** While in hand the ring follows the water without changing the draft; let go, the draft changes. */
+function dragTo(ended: boolean, draft: Parameters<typeof placeRelease>[0], id: string, position: LonLat, registers: Parameters<typeof placeRelease>[2], place: (position: LonLat, id: string) => LonLat | null): LonLat | null {
+  if (ended) return place(position, id);
+  const outcome = placeRelease(draft, position, registers, id);
+  return 'draft' in outcome ? (outcome.draft.releases.find((release) => release.id === id)?.position ?? null) : null;
+}
+
+function CloudLayers({ forecast, frame, water, theme, measure, showsEnvelope }: { forecast: Forecast; frame: Forecast['frames'][number] | null; water: EstimateWater; theme: 'day' | 'night'; measure: Measure; showsEnvelope: boolean }) {
+  return (
+    <>
+      <FrameLayer frame={frame ?? null} levels={forecast.levels} water={water} theme={theme} measure={measure} />
+      {showsEnvelope && <EnvelopeLayer envelope={forecast.envelope} levels={forecast.levels} water={water} theme={theme} measure={measure} />}
+    </>
+  );
+}
+
+/** Tells how many metres a pixel is, so that a click on a river drawn as a thin ribbon is read as in the river. */
+function ScaleReport({ onScale }: { onScale: (metresPerPixel: number) => void }) {
+  const map = useMapEvents({ zoomend: () => onScale(scaleOf(map)) });
+  useEffect(() => onScale(scaleOf(map)), [map, onScale]);
+  return null;
+}
+
+const scaleOf = (map: L.Map): number => (2 * Math.PI * EARTH_RADIUS_M * Math.cos((map.getCenter().lat * Math.PI) / 180)) / 2 ** (map.getZoom() + 8);
