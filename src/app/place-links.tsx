@@ -44,7 +44,7 @@ function PlaceMenu({ heading, places, pathname }: { heading: string; places: Pla
   const current = places.find((place) => isAt(place, pathname));
   return (
     <div className={`flex items-center border-b-3 ${current ? here : elsewhere}`}>
-      <Menu label={current ? `${heading}: ${current.label}` : heading} kind="quiet" buttonClassName={current ? 'text-ink!' : 'font-normal! text-ink2!'} entries={places.map((place) => ({ label: place.label, to: place.to, isChosen: place === current }))} />
+      <Menu label={current ? `${heading}: ${current.label}` : heading} kind="quiet" buttonClassName={`gap-1! px-3! ${current ? 'text-ink!' : 'font-normal! text-ink2!'}`} entries={places.map((place) => ({ label: place.label, to: place.to, isChosen: place === current }))} />
     </div>
   );
 }

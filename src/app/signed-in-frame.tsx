@@ -29,21 +29,23 @@ export function SignedInFrame() {
       <a href="#page" className="absolute top-1 left-1 z-50 -translate-y-20 bg-paper px-4 py-2.5 focus:translate-y-0">
         Skip to the page
       </a>
-      <header className="no-print flex min-h-14 flex-wrap items-stretch justify-between gap-x-4 border-b border-ink bg-paper px-4 sm:px-6 lg:px-8">
-        <div className="flex items-stretch gap-x-3 lg:gap-x-6">
-          <Link to="/" className="flex items-center no-underline" aria-label="Downreach, to the first page">
-            <Wordmark />
-          </Link>
-          <PlaceLinks roles={session.person.roles} />
+      <header>
+        <div className="no-print flex min-h-14 flex-wrap items-stretch justify-between gap-x-4 border-b border-ink bg-paper px-4 sm:px-6 lg:px-8">
+          <div className="flex items-stretch gap-x-3 lg:gap-x-6">
+            <Link to="/" className="flex items-center no-underline" aria-label="Downreach, to the first page">
+              <Wordmark />
+            </Link>
+            <PlaceLinks roles={session.person.roles} />
+          </div>
+          <div className="flex items-center gap-1">
+            <WatchClock />
+            <ThemeSwitch />
+            <PersonMenu name={session.person.name} />
+          </div>
         </div>
-        <div className="flex items-center gap-1">
-          <WatchClock />
-          <ThemeSwitch />
-          <PersonMenu name={session.person.name} />
-        </div>
+        {session.isDemo && <DemoLine />}
+        <ConnectionLine />
       </header>
-      {session.isDemo && <DemoLine />}
-      <ConnectionLine />
       <main id="page" tabIndex={-1} className={`outline-none ${isFullBleed ? 'min-h-0 flex-1' : ''}`} aria-busy={isBusy || undefined}>
         <Outlet />
       </main>
@@ -55,6 +57,8 @@ export function SignedInFrame() {
 function WatchClock() {
   const offset = useDefaultOffset();
   const now = useNow(1_000);
+  const isOnWatch = useLocation().pathname === '/';
+  if (isOnWatch) return null;
   return (
     <span className="mr-2 hidden text-lead whitespace-nowrap md:inline" title="The time where this installation stands">
       <span className="font-semibold">{formatTimeOfDay(now, offset)}</span> <span className="text-note text-ink2">{formatOffset(offset)}</span>

@@ -9,11 +9,13 @@ export function VisitorFrame() {
   const session = useSession();
   return (
     <>
-      <header className="no-print flex min-h-14 items-center justify-between border-b border-ink px-4 sm:px-6 lg:px-8">
-        <Wordmark />
-        <ThemeSwitch />
+      <header>
+        <div className="no-print flex min-h-14 items-center justify-between border-b border-ink px-4 sm:px-6 lg:px-8">
+          <Wordmark />
+          <ThemeSwitch />
+        </div>
+        {session?.isDemo && <DemoLine />}
       </header>
-      {session?.isDemo && <DemoLine />}
       <main id="page">
         <Outlet />
       </main>

@@ -60,7 +60,7 @@ export function DataTable<Row>({ caption, isCaptionShown = false, columns, rows,
           {shown.map((row) => {
             const key = rowKey(row);
             return (
-              <tr key={key} aria-selected={selectedKey === key || undefined} onClick={onRow ? () => onRow(row) : undefined} className={classNames('border-b border-rule align-top', onRow && 'cursor-pointer hover:bg-sheet', selectedKey === key && 'bg-kingfisher-wash')}>
+              <tr key={key} aria-current={selectedKey === key || undefined} onClick={onRow ? () => onRow(row) : undefined} className={classNames('border-b border-rule align-top', onRow && 'cursor-pointer hover:bg-sheet', selectedKey === key && 'bg-kingfisher-wash')}>
                 {columns.map((column, i) => (
                   <td key={column.key} className={classNames('py-2.5 pr-5 last:pr-0', column.align === 'end' && 'text-right whitespace-nowrap', column.className)}>
                     {i === 0 && onRow ? (

@@ -12,7 +12,7 @@ export function TextInput({ className, ...rest }: InputHTMLAttributes<HTMLInputE
 }
 
 export function TextArea({ className, rows = 3, ...rest }: TextareaHTMLAttributes<HTMLTextAreaElement> & { ref?: Ref<HTMLTextAreaElement> }) {
-  return <textarea rows={rows} {...rest} {...useFieldInput(rest)} className={classNames(inputClass, 'field-sizing-content max-h-80', className)} />;
+  return <textarea rows={rows} {...rest} {...useFieldInput(rest)} className={classNames(inputClass, 'field-sizing-content max-h-80 min-h-18', className)} />;
 }
 
 export function SelectInput({ className, children, ...rest }: SelectHTMLAttributes<HTMLSelectElement> & { ref?: Ref<HTMLSelectElement> }) {

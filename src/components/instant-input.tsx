@@ -1,6 +1,6 @@
 import { useId, useState, type KeyboardEvent } from 'react';
-import { civilAt, instantMs, instantOf, isoWithOffset } from '../../shared/civil';
-import { formatClock, formatOffset, formatTimeOfDay } from '../../shared/format';
+import { instantMs, instantOf, isoWithOffset } from '../../shared/civil';
+import { formatDayYear, formatOffset, formatTimeOfDay } from '../../shared/format';
 import { classNames } from '../lib/class-names';
 import { parseDay, parseTimeOfDay } from '../lib/parse-instant';
 import { Button } from './button';
@@ -28,6 +28,8 @@ export function InstantInput({ value, offset, onChange, hasNow = false }: Instan
   const [time, setTime] = useState(() => timeText(ms, offset));
   const [known, setKnown] = useState({ value, offset });
   const [isLeft, setIsLeft] = useState(false);
+  // Tells "today" and the year of a day typed without one.
+  const [shownAtMs] = useState(() => Date.now());
 
   const show = (instant: number) => {
     setDay(dayText(instant, offset));
@@ -44,7 +46,7 @@ export function InstantInput({ value, offset, onChange, hasNow = false }: Instan
   const write = (dayTyped: string, timeTyped: string) => {
     setDay(dayTyped);
     setTime(timeTyped);
-    const parsedDay = parseDay(dayTyped, Date.now(), offset);
+    const parsedDay = parseDay(dayTyped, shownAtMs, offset);
     const parsedTime = parseTimeOfDay(timeTyped);
     send(parsedDay.ok && parsedTime.ok ? isoWithOffset(instantOf(parsedDay.value, parsedTime.value.hour, parsedTime.value.minute, 0, offset), offset) : null);
   };
@@ -65,7 +67,7 @@ export function InstantInput({ value, offset, onChange, hasNow = false }: Instan
     if (!Number.isNaN(ms)) show(ms);
   };
 
-  const dayParsed = parseDay(day, Date.now(), offset);
+  const dayParsed = parseDay(day, shownAtMs, offset);
   const timeParsed = parseTimeOfDay(time);
   const problem = isLeft ? (!dayParsed.ok ? dayParsed.why : !timeParsed.ok ? timeParsed.why : null) : null;
   return (
@@ -109,7 +111,7 @@ export function InstantInput({ value, offset, onChange, hasNow = false }: Instan
         <FieldError id={`${id}-read`}>{problem}</FieldError>
       ) : (
         <p id={`${id}-read`} className="mt-1 text-note text-ink2">
-          {Number.isNaN(ms) ? 'Day as 2031-05-12 or 12 May, time as 06:40' : `Read as ${formatClock(ms, offset)} ${civilAt(ms, offset).year}`}
+          {Number.isNaN(ms) ? 'Day as 2031-05-12 or 12 May, time as 06:40' : `Read as ${formatDayYear(ms, offset)} ${formatTimeOfDay(ms, offset)}`}
         </p>
       )}
     </>

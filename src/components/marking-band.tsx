@@ -3,7 +3,7 @@ import type { Marking } from '../../shared/schemas/incidents';
 const words: Record<Marking, { word: string; says: string; look: string }> = {
   REAL: { word: 'REAL', says: 'a real event', look: 'marking-real' },
   EXERCISE: { word: 'EXERCISE', says: 'not a real event', look: 'marking-exercise' },
-  PLANNING: { word: 'PLANNING', says: 'prepared in advance, nothing has happened', look: 'marking-planning' },
+  PLANNING: { word: 'PLANNING', says: 'nothing has happened', look: 'marking-planning' },
 };
 
 /** Across every page of an incident. Told apart by the word and by the pattern. */

@@ -42,7 +42,7 @@ export function Menu({ label, ariaLabel, icon, kind = 'plain', hasArrow = true, 
         {label}
         {hasArrow && <Icon name="down" className="size-4" />}
       </MenuButton>
-      <MenuItems anchor={anchor} className="z-50 min-w-52 rounded-sm border border-edge bg-sheet py-1 shadow-float outline-none [--anchor-gap:4px] [--anchor-padding:8px]">
+      <MenuItems anchor={anchor} modal={false} className="z-50 min-w-52 rounded-sm border border-edge bg-sheet py-1 shadow-float outline-none [--anchor-gap:4px] [--anchor-padding:8px]">
         {all.map((part, i) => (
           <MenuSection key={part.heading ?? i} className={i > 0 ? 'mt-1 border-t border-rule pt-1' : ''}>
             {part.heading && <MenuHeading className="px-4 pt-2 pb-1 text-note text-ink2">{part.heading}</MenuHeading>}

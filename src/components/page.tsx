@@ -28,8 +28,8 @@ export function Page({ title, tabTitle, above, below, actions, marking, children
     <>
       <title>{`${tabTitle ?? title} · Downreach`}</title>
       {marking && <MarkingBand marking={marking} />}
-      <div className="mx-auto w-full max-w-[88rem] px-4 pb-24 sm:px-6 lg:px-8">
-        <div className="staff min-h-[calc(100dvh-10rem)] pl-6 sm:pl-9">
+      <div className="mx-auto w-full max-w-[88rem] px-4 sm:px-6 lg:px-8">
+        <div className="staff min-h-[calc(100dvh-6rem)] pb-24 pl-6 sm:pl-9 print:min-h-0 print:pb-0 print:pl-0">
           <header className="flex flex-wrap items-end justify-between gap-x-8 gap-y-4 border-b border-ink pt-8 pb-4">
             <div className="min-w-0">
               {above && <div className="mb-1 text-body text-ink2">{above}</div>}

@@ -39,11 +39,10 @@ function ArrivalRow({ arrival, offset, nowMs, isLarge }: { arrival: NextArrival;
         {arrival.receptorName}
       </p>
       <p className="text-ink2">
-        {isPast ? 'may have arrived from ' : 'arrives '}
+        {isPast ? 'may be there since ' : 'earliest '}
         <time dateTime={arrival.earliestAt} className="font-semibold whitespace-nowrap text-ink">
           {formatClock(earliest, offset)}
         </time>
-        {' at the earliest'}
         <Likely arrival={arrival} offset={offset} /> <span className="whitespace-nowrap">{formatOffset(offset)}</span>
       </p>
     </RuledRow>
@@ -51,7 +50,7 @@ function ArrivalRow({ arrival, offset, nowMs, isLarge }: { arrival: NextArrival;
 }
 
 function Likely({ arrival, offset }: { arrival: NextArrival; offset: string }) {
-  if (arrival.likelyAt === null) return <>, and only with the high amount</>;
+  if (arrival.likelyAt === null) return <>, only with the high amount</>;
   const earliest = instantMs(arrival.earliestAt);
   const likely = instantMs(arrival.likelyAt);
   const isOneDay = formatDay(earliest, offset) === formatDay(likely, offset);

@@ -61,7 +61,7 @@ function LogRow({ entry, offset }: { entry: LogEntry; offset: string }) {
     <RuledRow
       leadWidth="narrow"
       lead={
-        <span className="text-lead font-semibold text-ink sm:-ml-0.5">
+        <span className="text-lead font-semibold text-ink">
           <TimeText iso={whenOf(entry)} offset={offset} say="time" hasOffset={false} />
         </span>
       }

@@ -20,7 +20,7 @@ export function RunningList({ runs }: { runs: Watch['runningRuns'] }) {
             key={run.runId}
             trail={
               canCancel && (
-                <Button kind="quiet" onClick={() => cancel.mutate(run.runId)} isBusy={cancel.isPending && cancel.variables === run.runId} aria-label={`Stop solving ${run.scenarioName}`}>
+                <Button kind="quiet" className="max-sm:-ml-2" onClick={() => cancel.mutate(run.runId)} isBusy={cancel.isPending && cancel.variables === run.runId} aria-label={`Stop solving ${run.scenarioName}`}>
                   Stop
                 </Button>
               )

@@ -24,7 +24,9 @@ export function WatchPage() {
   const skewMs = useServerSkew(data);
   const nowMs = useNow(1_000, skewMs);
   const offset = useDefaultOffset();
-  const canStart = useCan('incident:create') && useCan('scenario:write');
+  const canOpen = useCan('incident:create');
+  const canSketch = useCan('scenario:write');
+  const canStart = canOpen && canSketch;
   return (
     <Page
       title={formatDayYear(nowMs, offset)}
