@@ -16,7 +16,9 @@ export type PlaceAnswer = { place: Place } | { place: null; why: string; nearest
 
 const halfWidthM = (reach: Reach): number => Math.max(...reach.hydraulics.map((row) => row.widthM)) / 2;
 
-function inRiver(position: LonLat, water: WaterItem): { place: Place; offM: number } | null {
+type RiverHit = { place: Place; offM: number; isTidal: boolean };
+
+function inRiver(position: LonLat, water: WaterItem): RiverHit | null {
   if (!isRiver(water.data)) return null;
   const snap = snapToReaches(position, water.data.reaches);
   const reach = water.data.reaches.find((candidate) => candidate.id === snap?.reachId);
@@ -26,6 +28,7 @@ function inRiver(position: LonLat, water: WaterItem): { place: Place; offM: numb
   const chainageKm = Math.round(snap.chainageKm * 100) / 100;
   return {
     offM: Math.max(0, snap.distanceM - half),
+    isTidal: reach.tidal,
     place: { water, position: onBank(reach, chainageKm, bank), channel: { reachId: reach.id, chainageKm, bank }, words: channelWords(reach, chainageKm, bank) },
   };
 }
@@ -50,14 +53,15 @@ export function placeAt(position: LonLat, waters: readonly WaterItem[]): PlaceAn
   const usable = waters.filter((water) => !water.isArchived);
   const rivers = usable.flatMap((water) => inRiver(position, water) ?? []).sort((a, b) => a.offM - b.offM);
   const nearest = rivers[0];
-  if (nearest && nearest.offM === 0) return { place: nearest.place };
   const area = usable.filter((water) => !isRiver(water.data) && isInArea(position, water.data.area)).sort((a, b) => areaSize(a) - areaSize(b))[0];
+  // Where a tidal reach and a tidal water overlap, the water is meant: it knows the tide.
+  if (nearest && nearest.offM === 0 && !(nearest.isTidal && area)) return { place: nearest.place };
   if (area) return { place: { water: area, position, channel: null, words: `in ${area.name}` } };
   if (nearest && nearest.offM <= REACH_OF_A_CLICK_M) return { place: nearest.place };
   return notInWater(nearest ?? null, position);
 }
 
-function notInWater(nearest: { place: Place; offM: number } | null, position: LonLat): PlaceAnswer {
+function notInWater(nearest: RiverHit | null, position: LonLat): PlaceAnswer {
   const where = `${position[1].toFixed(4)}, ${position[0].toFixed(4)}`;
   if (!nearest) return { place: null, nearest: null, why: `${where} is in no registered water: click in a water, or register this one first` };
   const offKm = (distanceM(position, nearest.place.position) / 1_000).toFixed(1);
