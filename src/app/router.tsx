@@ -27,7 +27,6 @@ const places: RouteObject[] = [
   { path: 'incidents', ...page(() => import('../features/incidents/routes/incident-list-page'), 'IncidentListPage') },
   { path: 'incidents/:incidentId', ...page(() => import('../features/incidents/routes/incident-page'), 'IncidentPage') },
   { path: 'scenarios/:scenarioId', handle: { isFullBleed: true }, ...page(() => import('../features/chart/routes/chart-page'), 'ChartPage') },
-  { path: 'scenarios/:scenarioId', ...page(() => import('../features/chart/routes/chart-page'), 'ChartPage'), handle: { isFullBleed: true } },
 ];
 
 const visitorPages: RouteObject[] = [];
