@@ -11,6 +11,7 @@ export const apiPaths = {
   passwordChange: '/api/session/password',
   passwordForgotten: '/api/session/password-forgotten',
   passwordSet: '/api/session/password-set',
+  passwordLink: '/api/session/password-link',
   people: '/api/people',
   person: (id: string) => `/api/people/${id}`,
   personInvite: (id: string) => `/api/people/${id}/invite`,

@@ -1,7 +1,7 @@
 import { randomBytes } from 'node:crypto';
 import Database from 'better-sqlite3';
 import session, { type SessionData } from 'express-session';
-import type { RequestHandler } from 'express';
+import type { Request, RequestHandler } from 'express';
 import type { Config } from '../config';
 
 declare module 'express-session' {
@@ -25,6 +25,7 @@ export class SessionStore extends session.Store {
     this.setMaxListeners(0);
     this.db = new Database(file);
     this.db.pragma('journal_mode = WAL');
+    this.db.pragma('synchronous = NORMAL');
     this.db.exec(`create table if not exists sessions (sid text primary key, person_id text not null, data text not null, expires_at integer not null);
       create index if not exists sessions_person on sessions (person_id);
       create table if not exists secrets (id integer primary key check (id = 1), value text not null);`);
@@ -42,15 +43,22 @@ export class SessionStore extends session.Store {
   }
 
   override set(sid: string, data: SessionData, done?: (error?: unknown) => void): void {
-    const expiresAt = data.cookie.expires ? new Date(data.cookie.expires).getTime() : this.now() + 86_400_000;
+    this.deleteExpired();
     this.db.prepare('insert into sessions (sid, person_id, data, expires_at) values (?, ?, ?, ?) on conflict (sid) do update set person_id = excluded.person_id, data = excluded.data, expires_at = excluded.expires_at')
-      .run(sid, data.personId ?? '', JSON.stringify(data), expiresAt);
+      .run(sid, data.personId ?? '', JSON.stringify(data), this.expiryOf(data));
     done?.();
   }
 
+  /** Every request puts the end off; a step too small to matter is not written. */
   override touch(sid: string, data: SessionData, done?: () => void): void {
-    if (data.cookie.expires) this.db.prepare('update sessions set expires_at = ? where sid = ?').run(new Date(data.cookie.expires).getTime(), sid);
+    const expiresAt = this.expiryOf(data);
+    this.db.prepare('update sessions set expires_at = ? where sid = ? and expires_at < ?').run(expiresAt, sid, expiresAt - idleMsOf(data) / 60);
     done?.();
+  }
+
+  /** By the server's own clock: the cookie's date is for the browser. */
+  private expiryOf(data: SessionData): number {
+    return this.now() + idleMsOf(data);
   }
 
   override destroy(sid: string, done?: (error?: unknown) => void): void {
@@ -73,6 +81,18 @@ export class SessionStore extends session.Store {
     this.db.close();
   }
 }
+
+const idleMsOf = (data: SessionData): number => data.cookie.originalMaxAge ?? 86_400_000;
+
+/** Opens a fresh session under a new id, so that an id planted beforehand is worth nothing. */
+export const openSession = (req: Request, { personId, signedInAt }: Pick<SessionData, 'personId' | 'signedInAt'>): Promise<void> =>
+  new Promise((resolve, reject) => {
+    req.session.regenerate((error: unknown) => {
+      if (error) return reject(error as Error);
+      Object.assign(req.session, { personId, signedInAt });
+      resolve();
+    });
+  });
 
 export const SESSION_COOKIE = 'downreach.sid';
 
