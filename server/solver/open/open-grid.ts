@@ -58,7 +58,7 @@ export function gridFor(box: Box, origin: { originLon: number; originLat: number
   const nodes = (width: number): number => Math.min(maxNodes, Math.max(24, Math.ceil((5 * width) / Math.max(box.sigmaM, 1e-3)) + 1));
   const nx = nodes(box.x1 - box.x0);
   const ny = nodes(box.y1 - box.y0);
-  return { kind: 'plane', ...origin, x0M: box.x0, y0M: box.y0, dxM: (box.x1 - box.x0) / (nx - 1), dyM: (box.y1 - box.y0) / (ny - 1), nx, ny };
+  return { kind: 'plane', originLon: origin.originLon, originLat: origin.originLat, x0M: box.x0, y0M: box.y0, dxM: (box.x1 - box.x0) / (nx - 1), dyM: (box.y1 - box.y0) / (ny - 1), nx, ny };
 }
 
 /** Adds all releases at time t to `out`, each capped at the strength of what was spilled. */
