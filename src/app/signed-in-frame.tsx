@@ -2,7 +2,7 @@ import { useQueryClient } from '@tanstack/react-query';
 import { useEffect } from 'react';
 import { Link, Outlet, ScrollRestoration, useLocation, useMatches, useNavigate, useNavigation } from 'react-router-dom';
 import { apiPaths } from '../../shared/api-paths';
-import { formatOffset, formatTimeOfDay } from '../../shared/format';
+import { formatDayYear, formatOffset, formatTimeOfDay } from '../../shared/format';
 import { Menu } from '../components/menu';
 import { api } from '../lib/api-client';
 import { useChangeEvents, useConnection } from '../lib/events';
@@ -45,6 +45,7 @@ export function SignedInFrame() {
         </div>
         {session.isDemo && <DemoLine />}
         <ConnectionLine />
+        <PrintedLine />
       </header>
       <main id="page" tabIndex={-1} className={`outline-none ${isFullBleed ? 'min-h-0 flex-1' : ''}`} aria-busy={isBusy || undefined}>
         <Outlet />
@@ -63,6 +64,17 @@ function WatchClock() {
     <span className="mr-2 hidden text-lead whitespace-nowrap md:inline" title="The time where this installation stands">
       <span className="font-semibold">{formatTimeOfDay(now, offset)}</span> <span className="text-note text-ink2">{formatOffset(offset)}</span>
     </span>
+  );
+}
+
+/** On paper only: a copy goes out of date, so it says when it was made. */
+function PrintedLine() {
+  const offset = useDefaultOffset();
+  const now = useNow(30_000);
+  return (
+    <p className="hidden px-4 py-1 text-note print:block">
+      Printed {formatDayYear(now, offset)} {formatTimeOfDay(now, offset)} {formatOffset(offset)}. This copy is not renewed.
+    </p>
   );
 }
 

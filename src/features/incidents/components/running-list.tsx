@@ -26,7 +26,7 @@ export function RunningList({ runs }: { runs: Watch['runningRuns'] }) {
               )
             }
           >
-            <Link to={`/scenarios/${run.scenarioId}?run=${run.runId}`} className="font-semibold">
+            <Link to={`/scenarios/${run.scenarioId}?run=${run.runId}`} className="font-semibold pointer-coarse:inline-flex pointer-coarse:min-h-11 pointer-coarse:items-center">
               {run.scenarioName}
             </Link>
             <div className="text-ink2">{run.state === 'queued' ? 'Waits for its turn' : <ProgressText stage="Solving" done={run.done} of={run.of} />}</div>

@@ -37,11 +37,11 @@ export function ScenarioList({ incident }: { incident: Incident }) {
 }
 
 function ScenarioRow({ scenario, offset }: { scenario: ScenarioSummary; offset: string }) {
-  const { latestRunState, latestRunId, revisionCount } = scenario;
+  const { latestRunState, revisionCount } = scenario;
   const state = latestRunState === null ? null : runWords[latestRunState as RunState];
   return (
     <RuledRow
-      to={`/scenarios/${scenario.id}${latestRunId ? `?run=${latestRunId}` : ''}`}
+      to={`/scenarios/${scenario.id}`}
       openLabel={`Open the chart of ${scenario.name}`}
       trail={<div className="pointer-events-none sm:text-right">{state ? <StatusWord tone={state.tone}>{state.word}</StatusWord> : <span className="text-ink2">never saved</span>}</div>}
     >

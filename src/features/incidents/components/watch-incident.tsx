@@ -15,7 +15,7 @@ export function WatchIncident({ incident, nowMs }: { incident: Incident; nowMs: 
       <MarkingBand marking={incident.marking} />
       <header className="flex flex-wrap items-baseline justify-between gap-x-6 gap-y-1 border-b border-edge py-3">
         <h2 id={`incident-${incident.id}`} className="min-w-0 text-figure font-semibold break-words">
-          <Link to={`/incidents/${incident.id}`} className="text-ink hover:text-kingfisher">
+          <Link to={`/incidents/${incident.id}`} className="inline-block text-ink hover:text-kingfisher pointer-coarse:py-1.5">
             {incident.name}
           </Link>
         </h2>

@@ -47,7 +47,7 @@ export function IncidentPage() {
 
 const Above = ({ incident }: { incident: Incident }) => (
   <>
-    <Link to="/incidents">Incidents</Link> / {incident.number}
+    <Link to="/incidents" className="pointer-coarse:inline-flex pointer-coarse:min-h-11 pointer-coarse:items-center">Incidents</Link> / {incident.number}
   </>
 );
 
