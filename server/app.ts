@@ -7,12 +7,12 @@ import { allRoutes } from './features';
 import { findActor } from './features/people/person.service';
 import { createTilesRouter } from './features/tiles/tiles.router';
 import { attemptLimits } from './http/attempt-limits';
-import { refuseDeepNesting, refuseForeignWrites, requestId, requireJson } from './http/guards';
+import { limitBody, refuseDeepNesting, refuseForeignWrites, requestId, requireJson } from './http/guards';
 import { notFoundHandler, problemHandler } from './http/problems';
 import { mountRoutes } from './http/routes';
 import { sessionMiddleware } from './http/sessions';
 
-const BODY_LIMIT = '4mb';
+const BODY_LIMIT = 4 * 1024 * 1024;
 
 /** Nothing from any other host: no page needs it and no page may ask for it. */
 const securityHeaders = (isDevelopment: boolean): RequestHandler =>
@@ -51,7 +51,7 @@ export function createApp(deps: Deps, client?: RequestHandler): Express {
   app.use(requestId, securityHeaders(deps.config.isDevelopment));
   app.use(compression({ filter: isCompressible }));
   app.use('/tiles', createTilesRouter({ folder: deps.config.tilesFolder }));
-  app.use('/api', refuseForeignWrites, requireJson, express.json({ limit: BODY_LIMIT }), refuseDeepNesting, ...sessionMiddleware(deps.config, deps.sessions, () => deps.now().getTime()));
+  app.use('/api', refuseForeignWrites, requireJson, limitBody(BODY_LIMIT), express.json({ limit: BODY_LIMIT }), refuseDeepNesting, ...sessionMiddleware(deps.config, deps.sessions, () => deps.now().getTime()));
   app.use(attemptLimits(deps.now));
   app.use(mountRoutes(allRoutes(deps), (req) => findActor(deps.db, req.session.personId)));
   app.use('/api', notFoundHandler);

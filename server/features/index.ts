@@ -1,9 +1,11 @@
 import type { Deps } from '../deps';
 import type { Route } from '../http/routes';
+import { auditRoutes } from './audit/audit.routes';
 import { estimateRoutes } from './estimates/estimate.routes';
 import { eventRoutes } from './events/event.routes';
 import { incidentRoutes } from './incidents/incident.routes';
 import { registerRoutes } from './registers/register.routes';
+import { outboxRoutes } from './outbox/outbox.routes';
 import { personRoutes } from './people/person.routes';
 import { runRoutes } from './runs/run.routes';
 import { scenarioRoutes } from './scenarios/scenario.routes';
@@ -16,6 +18,8 @@ export function allRoutes(deps: Deps): Route[] {
   const routes: Route[] = [
     ...sessionRoutes(deps),
     ...personRoutes(deps),
+    ...outboxRoutes(deps),
+    ...auditRoutes(deps),
     ...watchRoutes(deps),
     ...incidentRoutes(deps),
     ...scenarioRoutes(deps),

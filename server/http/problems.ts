@@ -26,7 +26,7 @@ const valueAt = (input: unknown, path: readonly PropertyKey[]): unknown =>
 export function fieldErrors(error: z.ZodError, input: unknown): FieldError[] {
   return error.issues.slice(0, 50).map((issue) => {
     const value = shown(valueAt(input, issue.path));
-    return { path: issue.path.map(String).join('.'), message: value === '' || issue.message.includes(value) ? issue.message : `${issue.message} (got ${value})` };
+    return { path: issue.path.map(String).join('.'), message: value === '' || (issue.code === 'custom' && issue.message.includes(value)) ? issue.message : `${issue.message} (got ${value})` };
   });
 }
 
@@ -38,14 +38,17 @@ export function sendProblem(res: Response, code: ProblemCode, detail: string, ex
 
 export const notFoundHandler: RequestHandler = (req, res) => sendProblem(res, 'not-found', `No ${req.method} ${req.path} here`);
 
+export const TOO_LARGE = 'The request is larger than 4 MB: send less';
+
 /** Last handler: turns whatever was thrown into a problem. Unknown errors are logged under the request id, never shown. */
 export const problemHandler =
   (log: (line: string) => void): ErrorRequestHandler =>
   (error: unknown, req, res, next) => {
+    if (res.writableEnded) return;
     if (res.headersSent) return next(error);
     if (error instanceof AppError) return sendProblem(res, error.code, error.detail, error.extra);
     const http = error as { type?: string; status?: number; message?: string };
-    if (http?.type === 'entity.too.large') return sendProblem(res, 'too-large', 'The request is larger than 4 MB: send less');
+    if (http?.type === 'entity.too.large') return sendProblem(res, 'too-large', TOO_LARGE);
     if (http?.type === 'entity.parse.failed') return sendProblem(res, 'bad-json', `The body is not JSON: ${http.message ?? ''}`);
     if (http?.status !== undefined && http.status >= 400 && http.status < 500)
       return sendProblem(res, http.status === 415 ? 'unsupported-type' : 'bad-json', `The request cannot be read: ${http.message ?? ''}`);

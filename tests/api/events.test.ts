@@ -1,0 +1,65 @@
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
+import { apiPaths } from '../../shared/api-paths';
+import { readEvents } from '../helpers/stream-client';
+import { type Fetch, type TestApp, startTestApp } from '../helpers/test-app';
+
+let app: TestApp;
+
+beforeAll(async () => {
+  app = await startTestApp();
+});
+afterAll(() => app.close());
+
+const open = async (fetchAs: Fetch) => {
+  const leaving = new AbortController();
+  const response = await fetchAs(apiPaths.events, { signal: leaving.signal });
+  const stream = readEvents(response);
+  await vi.waitFor(() => expect(stream.text()).toContain(': connected'));
+  return { response, ...stream, leave: () => leaving.abort() };
+};
+
+describe('the stream of changes', () => {
+  it('tells what changed, as server-sent events that no proxy may hold back', async () => {
+    const { response, events, leave } = await open(await app.fetchAs('planner'));
+    expect(response.headers.get('content-type')).toContain('text/event-stream');
+    expect(response.headers.get('cache-control')).toBe('no-cache, no-transform');
+    const planner = await app.agentFor('planner');
+    const { body } = await planner.post(apiPaths.incidents).send({ name: 'Test', marking: 'REAL' }).expect(201);
+    await vi.waitFor(() => expect(events).toMatchObject([{ topic: 'incident', id: body.id }]));
+    leave();
+  });
+
+  it('tells each person only of what that person may read', async () => {
+    const planner = await open(await app.fetchAs('planner'));
+    const administrator = await open(await app.fetchAs('administrator'));
+    app.deps.changes.announce({ topic: 'incident', id: 'i1', incidentId: 'i1' });
+    app.deps.changes.announce({ topic: 'run', id: 'r1', scenarioId: 's1', incidentId: 'i1', state: 'done', progress: null });
+    app.deps.changes.announce({ topic: 'outbox', id: 'm1' });
+    app.deps.changes.announce({ topic: 'person', id: 'p1' });
+    app.deps.changes.announce({ topic: 'register', id: 'w1' });
+    await vi.waitFor(() => expect([planner.events.length, administrator.events.length]).toEqual([3, 3]));
+    expect(planner.events.map(({ topic }) => topic)).toEqual(['incident', 'run', 'register']);
+    expect(administrator.events.map(({ topic }) => topic)).toEqual(['outbox', 'person', 'register']);
+    planner.leave();
+    administrator.leave();
+  });
+
+  it('ends when the person signs out', async () => {
+    const fetchAs = await app.fetchAs('planner');
+    const { ended } = await open(fetchAs);
+    expect((await fetchAs(apiPaths.signOut, { method: 'POST' })).ok).toBe(true);
+    await ended;
+  });
+
+  it('ends when the person is no longer active', async () => {
+    const fetchAs = await app.fetchAs('coordinator');
+    const { ended } = await open(fetchAs);
+    const { person } = (await (await fetchAs(apiPaths.session)).json()) as { person: { id: string } };
+    app.deps.sessions.destroyAllOf(person.id);
+    await ended;
+  });
+
+  it('is closed to visitors', async () => {
+    expect((await app.fetchVisitor(apiPaths.events)).status).toBe(401);
+  });
+});
