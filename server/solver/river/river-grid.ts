@@ -156,10 +156,13 @@ export function riverDistanceTime(gridding: RiverGridding, weights: Weights, tim
   const reached = Math.min(path.endTravelS, Math.max(0, last - path.release.profile.startS) + EDGE_SIGMA * Math.sqrt(2 * kappa * Math.max(0, last)));
   const chainageKm: number[] = [];
   const reachIds: string[] = [];
-  for (let i = 0; i < places; i++) {
-    const travelS = (reached * i) / (places - 1);
-    const segment = [...path.segments].reverse().find((item) => item.startTravelS <= travelS)!;
-    chainageKm.push(Math.max(segment.toKm, segment.fromKm - ((travelS - segment.startTravelS) * segment.state.speedMps) / 1_000));
+  // Evenly spaced in distance: evenly spaced in time, slow water at the end would take nearly all places.
+  const spans = path.segments.map((segment) => Math.min(segment.fromKm - segment.toKm, (Math.max(0, reached - segment.startTravelS) * segment.state.speedMps) / 1_000));
+  const stepKm = spans.reduce((sum, span) => sum + span, 0) / (places - 1);
+  for (let i = 0, segmentAt = 0, passedKm = 0; i < places; i++) {
+    while (segmentAt < spans.length - 1 && i * stepKm > passedKm + spans[segmentAt]!) passedKm += spans[segmentAt++]!;
+    const segment = path.segments[segmentAt]!;
+    chainageKm.push(Math.max(segment.toKm, segment.fromKm - (i * stepKm - passedKm)));
     reachIds.push(segment.state.reach.id);
   }
   const n = gridding.across.count;
