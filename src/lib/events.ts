@@ -64,6 +64,8 @@ export class ChangeFollower {
   }
 }
 
+const RETRY_MS = 3_000;
+
 type Connection = { isUp: boolean; sinceMs: number };
 let connection: Connection = { isUp: true, sinceMs: Date.now() };
 const listeners = new Set<() => void>();
@@ -85,17 +87,30 @@ export function useChangeEvents(client: QueryClient, isOn: boolean): void {
   useEffect(() => {
     if (!isOn) return;
     const follower = new ChangeFollower(client);
-    const source = new EventSource(apiPaths.events);
-    source.onmessage = (message: MessageEvent<string>) => follower.take(JSON.parse(message.data) as ChangeEvent);
-    source.onopen = () => {
-      // What happened while the stream was down is unknown: ask for everything in sight.
-      if (!connection.isUp) void client.invalidateQueries();
-      setConnection(true);
+    let source: EventSource;
+    let retry: ReturnType<typeof setTimeout> | undefined;
+    const open = () => {
+      source = new EventSource(apiPaths.events);
+      source.onmessage = (message: MessageEvent<string>) => follower.take(JSON.parse(message.data) as ChangeEvent);
+      source.onopen = () => {
+        // What happened while the stream was down is unknown: ask for everything in sight.
+        if (!connection.isUp) void client.invalidateQueries();
+        setConnection(true);
+      };
+      source.onerror = () => {
+        setConnection(false);
+        // A refused stream is never tried again by the browser: the session may have ended, or the server is starting.
+        if (source.readyState !== EventSource.CLOSED) return;
+        void client.invalidateQueries({ queryKey: ['session'] });
+        retry = setTimeout(open, RETRY_MS);
+      };
     };
-    source.onerror = () => setConnection(false);
+    open();
     return () => {
+      clearTimeout(retry);
       source.close();
       follower.stop();
+      setConnection(true);
     };
   }, [client, isOn]);
 }

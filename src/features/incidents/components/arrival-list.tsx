@@ -1,5 +1,5 @@
-import { instantMs } from '../../../../shared/civil';
-import { formatClock, formatDay, formatOffset, formatTimeOfDay } from '../../../../shared/format';
+import { civilAt, instantMs } from '../../../../shared/civil';
+import { formatClock, formatDay, formatDayYear, formatOffset, formatTimeOfDay } from '../../../../shared/format';
 import type { NextArrival } from '../../../../shared/schemas/incidents';
 import { RuledList, RuledRow } from '../../../components/ruled-list';
 import { StatusWord } from '../../../components/status-word';
@@ -41,13 +41,17 @@ function ArrivalRow({ arrival, offset, nowMs, isLarge }: { arrival: NextArrival;
       <p className="text-ink2">
         {isPast ? 'may be there since ' : 'earliest '}
         <time dateTime={arrival.earliestAt} className="font-semibold whitespace-nowrap text-ink">
-          {formatClock(earliest, offset)}
+          {clockFrom(earliest, nowMs, offset)}
         </time>
         <Likely arrival={arrival} offset={offset} /> <span className="whitespace-nowrap">{formatOffset(offset)}</span>
       </p>
     </RuledRow>
   );
 }
+
+/** The year is said as soon as it is not the present one. */
+const clockFrom = (ms: number, nowMs: number, offset: string): string =>
+  civilAt(ms, offset).year === civilAt(nowMs, offset).year ? formatClock(ms, offset) : `${formatDayYear(ms, offset)} ${formatTimeOfDay(ms, offset)}`;
 
 function Likely({ arrival, offset }: { arrival: NextArrival; offset: string }) {
   if (arrival.likelyAt === null) return <>, only with the high amount</>;
