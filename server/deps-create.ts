@@ -16,13 +16,14 @@ export async function createDeps(config: Config, now: () => Date = () => new Dat
   };
   const base = { config, db, now, newId: randomUUID, log };
   const jobs = new JobRunner(base);
+  const changes = new ChangeBus();
   return {
     ...base,
     sessions: new SessionStore(config.sessionsFile, () => now().getTime()),
     audit: new AuditTrail(now),
-    changes: new ChangeBus(),
+    changes,
     jobs,
-    mail: new MailQueue({ ...base, jobs }),
+    mail: new MailQueue({ ...base, jobs, changes }),
   };
 }
 
