@@ -1,5 +1,6 @@
 import L from 'leaflet';
-import type { MapView } from './mercator';
+import { LABELS_PLACED, markBoxes } from './label-places';
+import { metresPerPixelAt, type MapView, type PixelBox } from './mercator';
 
 /** A private but long-standing method of Leaflet 1, which its own image overlays use to animate a zoom. */
 type Animating = { _latLngToNewLayerPoint(at: L.LatLng, zoom: number, centre: L.LatLng): L.Point };
@@ -7,7 +8,11 @@ type Animating = { _latLngToNewLayerPoint(at: L.LatLng, zoom: number, centre: L.
 /** Room drawn round the visible map, as a share of its size, so that a drag shows no bare edge before it ends. */
 const MARGIN = 0.25;
 
-export type Draw = (view: MapView, contexts: CanvasRenderingContext2D[]) => void;
+/** Draws and answers the boxes of the words it printed, so that other canvases keep clear of them. */
+export type Draw = (view: MapView, contexts: CanvasRenderingContext2D[]) => readonly PixelBox[];
+
+/** What each canvas of a map printed last, and in which view. */
+const printed = new WeakMap<L.Map, Map<CanvasOverlay, { place: string; boxes: readonly PixelBox[] }>>();
 
 /**
  * Stacked canvases over the map that are redrawn after each move and zoom and stretched while a zoom is animated.
@@ -17,7 +22,7 @@ export class CanvasOverlay extends L.Layer {
   private host: HTMLDivElement | null = null;
   private northWest: L.LatLng | null = null;
   private drawnZoom = 0;
-  private view: MapView | null = null;
+  private view: (MapView & { marks: PixelBox[] }) | null = null;
 
   constructor(
     private readonly paneName: string,
@@ -36,14 +41,15 @@ export class CanvasOverlay extends L.Layer {
     return this;
   }
 
-  override onRemove(): this {
+  override onRemove(map: L.Map): this {
+    printed.get(map)?.delete(this);
     this.host?.remove();
     this.host = null;
     return this;
   }
 
   override getEvents(): { [name: string]: L.LeafletEventHandlerFn } {
-    return { moveend: this.lay, viewreset: this.lay, resize: this.lay, zoom: this.stretch, zoomanim: (event) => this.stretchTo(event as L.ZoomAnimEvent) };
+    return { moveend: this.lay, viewreset: this.lay, resize: this.lay, [LABELS_PLACED]: this.redraw, zoom: this.stretch, zoomanim: (event) => this.stretchTo(event as L.ZoomAnimEvent) };
   }
 
   /** Draws something else in the same view. */
@@ -61,7 +67,12 @@ export class CanvasOverlay extends L.Layer {
       context.clearRect(0, 0, context.canvas.width, context.canvas.height);
       context.scale(ratio, ratio);
     }
-    this.draw(this.view, contexts);
+    const shared = printed.get(this._map) ?? new Map();
+    printed.set(this._map, shared);
+    const place = `${this.view.zoom} ${this.view.offsetX} ${this.view.offsetY}`;
+    this.view.marks = markBoxes(this._map, this.host.getBoundingClientRect());
+    for (const [overlay, words] of shared) if (overlay !== this && words.place === place) this.view.marks.push(...words.boxes);
+    shared.set(this, { place, boxes: this.draw(this.view, contexts) });
   }
 
   private lay(): void {
@@ -84,8 +95,9 @@ export class CanvasOverlay extends L.Layer {
       offsetY: origin.y,
       width: whole.x,
       height: whole.y,
-      metresPerPixel: (40_075_016.7 * Math.cos((map.getCenter().lat * Math.PI) / 180)) / (256 * scale),
+      metresPerPixel: metresPerPixelAt(map.getCenter().lat, map.getZoom()),
       seen: { left: margin.x, top: margin.y, right: margin.x + size.x, bottom: margin.y + size.y },
+      marks: [],
     };
     this.redraw();
   }

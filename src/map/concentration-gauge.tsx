@@ -21,10 +21,12 @@ export function ConcentrationGauge({ levels, unit, measure, theme, ramp }: Props
     const written = formatConcentration(level.value, measure, unit ? { unit } : {});
     return unit ? written.text : `${written.text} ${written.unit}`;
   };
-  const words = drawn.map((level) => `${figure(level)}${level.isActionValue ? ` (action value${level.label === '' ? '' : `: ${level.label}`})` : ''}`);
+  const words = drawn.map((level) => `${figure(level)}${level.isActionValue ? ' (action value)' : ''}`);
+  // About 7.2 px a character at this size; the words beside an action value take 90 px.
+  const longest = Math.max(0, ...drawn.map((level) => figure(level).length * 7.2 + (level.isActionValue ? 90 : 0)));
   const right = STAFF_LEFT + STAFF_PX + 10;
   return (
-    <svg className="gauge" width={right + 168} height={height} role="img" aria-label={`Concentration in ${unit ? unitLabel[unit] : 'printed units'}, bands from ${words.join(', ')} upwards`}>
+    <svg className="gauge" width={right + longest} height={height} role="img" aria-label={`Concentration in ${unit ? unitLabel[unit] : 'printed units'}, bands from ${words.join(', ')} upwards`}>
       {drawn.map((level, k) => (
         <g key={level.value}>
           <rect x={STAFF_LEFT} y={edgeY(k + 1)} width={STAFF_PX} height={ROW_PX} fill={colours[k]} fillOpacity={BAND_OPACITY + 0.15} />
@@ -41,7 +43,7 @@ export function ConcentrationGauge({ levels, unit, measure, theme, ramp }: Props
             {figure(level)}
             {level.isActionValue && (
               <tspan className="gauge-note" fontWeight="400" dx="6">
-                {level.label === '' ? 'action value' : shortened(level.label)}
+                action value
               </tspan>
             )}
           </text>
@@ -50,5 +52,3 @@ export function ConcentrationGauge({ levels, unit, measure, theme, ramp }: Props
     </svg>
   );
 }
-
-const shortened = (text: string): string => (text.length > 16 ? `${text.slice(0, 15)}…` : text);

@@ -1,6 +1,6 @@
 import 'leaflet/dist/leaflet.css';
 import './map.css';
-import L from 'leaflet';
+import type L from 'leaflet';
 import { useEffect, useId, useMemo, useState, type ReactNode } from 'react';
 import { MapContainer } from 'react-leaflet';
 import type { LonLat } from '../../shared/schemas/basics';

@@ -21,9 +21,7 @@ export function EnvelopeLayer({ envelope, levels, water, theme, measure = 'mass'
   const waterPath = useMemo(() => waterPathKeeper(water), [water]);
   const prepared = useMemo(() => (envelope && outlined ? prepareFrame(envelope, [outlined], water) : null), [envelope, outlined, water]);
   const draw = useCallback<Draw>(
-    (view, [context]) => {
-      if (prepared) paintEnvelope(context!, prepared, view, prepared.clipsToWater ? waterPath(view) : null, { theme, measure });
-    },
+    (view, [context]) => (prepared ? paintEnvelope(context!, prepared, view, prepared.clipsToWater ? waterPath(view) : null, { theme, measure }) : []),
     [prepared, waterPath, theme, measure],
   );
   useCanvasOverlay(pane, canvases, draw);

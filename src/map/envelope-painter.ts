@@ -1,6 +1,6 @@
-import { concentrationText, type PaintOptions } from './frame-painter';
-import { haloText, mapFont } from './label-book';
-import type { MapView } from './mercator';
+import { concentrationText, extremes, outside, type PaintOptions } from './frame-painter';
+import { LabelBook } from './label-book';
+import type { MapView, PixelBox } from './mercator';
 import { mapInk } from './palette';
 import type { PreparedFrame, Sheet } from './sheets';
 import { strokeLines, traceLines, traceRings, type PathSink } from './trace';
@@ -8,22 +8,20 @@ import { strokeLines, traceLines, traceRings, type PathSink } from './trace';
 /** Keeps the outline of a river's envelope off its ribbon, px. */
 const CLEAR_OF_RIBBON_PX = 5;
 
-/** Where the words go: below the outline of a river, to the right of an outline on open water; isolines print theirs at the top. */
-type Spot = { x: number; y: number; score: number };
-
-/** Strokes the outline of the first level over all time, dotted, with its words once. */
-export function paintEnvelope(context: CanvasRenderingContext2D, prepared: PreparedFrame, view: MapView, water: Path2D | null, options: PaintOptions): void {
+/** Strokes the outline of the first level over all time, dotted, with its words once; answers where they stand. */
+export function paintEnvelope(context: CanvasRenderingContext2D, prepared: PreparedFrame, view: MapView, water: Path2D | null, options: PaintOptions): readonly PixelBox[] {
   const ink = mapInk[options.theme];
-  const words = prepared.levels[0] ? `reached at any time: ${concentrationText(prepared.levels[0].value, options.measure)}` : '';
-  context.font = mapFont(11, 400);
-  const room = context.measureText(words).width + 8;
-  const spot: Spot = { x: 0, y: 0, score: -Infinity };
+  const points: number[] = [];
   context.save();
   if (water) context.clip(water, 'evenodd');
   context.beginPath();
   for (const entry of prepared.sheets) {
-    if (entry.thin) outlineRibbon(context, entry.thin, entry.widthPx(view), view, room, spot);
-    else outlineOpen(context, entry.full, view, room, spot);
+    if (entry.thin) outlineRibbon(context, entry.thin, entry.widthPx(view), view, points);
+    else {
+      const lines = traceLines(entry.full, entry.full.bands[0]!, entry.full.placeIn(view));
+      strokeLines(lines, context);
+      for (const value of lines.points) points.push(value);
+    }
   }
   context.lineJoin = 'round';
   context.lineWidth = 3.5;
@@ -36,27 +34,27 @@ export function paintEnvelope(context: CanvasRenderingContext2D, prepared: Prepa
   context.setLineDash([2, 4]);
   context.stroke();
   context.restore();
-  if (spot.score > -Infinity) haloText(context, options.theme, words, spot.x, spot.y);
+  return prepared.levels[0] ? printWords(context, points, concentrationText(prepared.levels[0].value, options.measure), view, options) : [];
 }
 
-function outlineOpen(sink: PathSink, sheet: Sheet, view: MapView, room: number, spot: Spot): void {
-  const lines = traceLines(sheet, sheet.bands[0]!, sheet.placeIn(view), Infinity);
-  strokeLines(lines, sink);
-  for (let k = 0; k < lines.points.length; k += 2) note(lines.points[k]! + room / 2 + 4, lines.points[k + 1]!, lines.points[k]!, view, room, spot);
+/** Isolines print their figures at the top first, so these words go below first. */
+function printWords(context: CanvasRenderingContext2D, points: number[], figure: string, { seen, marks }: MapView, { theme }: PaintOptions): readonly PixelBox[] {
+  const inSight: number[] = [];
+  for (let k = 0; k < points.length; k += 2) if (points[k]! > seen.left && points[k]! < seen.right && points[k + 1]! > seen.top && points[k + 1]! < seen.bottom) inSight.push(points[k]!, points[k + 1]!);
+  const book = new LabelBook(context, theme, { marks }, { ...seen, bottom: seen.bottom - 40 });
+  const words = `reached at any time: ${figure}`;
+  const [top, bottom, right, left] = outside(extremes({ points: inSight }, 0, inSight.length / 2), 13, book.widthOf(words, 11, 400) / 2 + 8);
+  if (top && bottom && right && left) book.print(words, [bottom, right, left, top], 11, 400);
+  return book.printed;
 }
 
 /** Rings of the thin sheet widened to both sides, so that the outline runs beside the ribbon. */
-function outlineRibbon(sink: PathSink, sheet: Sheet, ribbon: number, view: MapView, room: number, spot: Spot): void {
+function outlineRibbon(sink: PathSink, sheet: Sheet, ribbon: number, view: MapView, points: number[]): void {
   const place = sheet.placeIn(view);
   const grow = CLEAR_OF_RIBBON_PX / ribbon;
   const wider: typeof place = (x, y, out) => {
     place(x <= 0 ? -grow : x >= 1 ? 1 + grow : x, y, out);
-    note(out[0]!, out[1]! + 13, out[1]!, view, room, spot);
+    points.push(out[0]!, out[1]!);
   };
-  traceRings(sheet.bands[0]!, wider, sheet.bendEvery(view), sink);
-}
-
-function note(x: number, y: number, score: number, { seen }: MapView, room: number, spot: Spot): void {
-  if (score <= spot.score || x - room / 2 < seen.left || x + room / 2 > seen.right || y < seen.top + 10 || y > seen.bottom - 50) return;
-  Object.assign(spot, { x, y, score });
+  traceRings(sheet.bands[0]!, wider, sheet.bends, sink);
 }

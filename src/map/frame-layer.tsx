@@ -21,11 +21,11 @@ export function FrameLayer({ frame, levels, water, theme, measure = 'mass', ramp
   const prepared = useMemo(() => (frame ? prepareFrame(frame, drawn, water) : null), [frame, drawn, water]);
   const draw = useCallback<Draw>(
     (view, [bands, lines]) => {
-      if (!prepared) return;
+      if (!prepared) return [];
       const path = prepared.clipsToWater ? waterPath(view) : null;
       const options = { theme, measure, ramp, labelOf };
       paintBands(bands!, prepared, view, path, options);
-      paintLines(lines!, prepared, view, path, options);
+      return paintLines(lines!, prepared, view, path, options);
     },
     [prepared, waterPath, theme, measure, ramp, labelOf],
   );

@@ -2,7 +2,7 @@ import { formatConcentration } from '../../shared/format';
 import type { Level } from '../../shared/schemas/estimate-result';
 import { hatchPattern } from './hatch';
 import { LabelBook } from './label-book';
-import type { MapView } from './mercator';
+import type { MapView, PixelBox } from './mercator';
 import { bandColours, madder, mapInk, type MapTheme } from './palette';
 import { THIN_RIBBON_PX, type PreparedFrame, type Sheet } from './sheets';
 import { strokeLines, traceBoxes, traceLines, traceRings, type Lines } from './trace';
@@ -27,12 +27,11 @@ export function paintBands(context: CanvasRenderingContext2D, prepared: Prepared
   for (const entry of prepared.sheets) {
     const sheet = chosenSheet(entry, view);
     const place = sheet.placeIn(view);
-    const bend = sheet.bendEvery(view);
     prepared.levels.forEach((_, k) => {
       const rings = sheet.bands[k]!;
       if (rings.ends.length === 0) return;
       context.beginPath();
-      traceRings(rings, place, bend, context);
+      traceRings(rings, place, sheet.bends, context);
       context.fillStyle = colours[k]!;
       context.fill('evenodd');
     });
@@ -45,14 +44,14 @@ function eraseBlanks(context: CanvasRenderingContext2D, sheet: Sheet, view: MapV
   if (sheet.blanks.length === 0) return;
   context.globalCompositeOperation = 'destination-out';
   context.beginPath();
-  traceBoxes(sheet.blanks, sheet.placeIn(view), sheet.bendEvery(view), context);
+  traceBoxes(sheet.blanks, sheet.placeIn(view), sheet.bends, context);
   context.fill();
   context.globalCompositeOperation = 'source-over';
 }
 
-/** Hatches what has no estimate, strokes each level's isoline, action values heavy and dashed, and prints the figures on them. */
-export function paintLines(context: CanvasRenderingContext2D, prepared: PreparedFrame, view: MapView, water: Path2D | null, options: PaintOptions): void {
-  const book = new LabelBook(context, options.theme, view.seen);
+/** Hatches what has no estimate, strokes each level's isoline, action values heavy and dashed, prints the figures on them; answers where. */
+export function paintLines(context: CanvasRenderingContext2D, prepared: PreparedFrame, view: MapView, water: Path2D | null, options: PaintOptions): readonly PixelBox[] {
+  const book = new LabelBook(context, options.theme, view, view.seen);
   const drawn = prepared.levels.flatMap((level, k) => prepared.sheets.map((entry) => isolines(entry, view, k, level)));
   context.save();
   if (water) context.clip(water, 'evenodd');
@@ -62,6 +61,7 @@ export function paintLines(context: CanvasRenderingContext2D, prepared: Prepared
   context.restore();
   const labelOf = options.labelOf ?? ((level: Level) => concentrationText(level.value, options.measure));
   for (const isAction of [true, false]) for (const each of drawn) if (each.level.isActionValue === isAction) printOn(book, each, labelOf(each.level));
+  return book.printed;
 }
 
 /** The isolines of one level on one sheet, with the width in which a river is drawn, infinite for open water. */
@@ -78,7 +78,7 @@ function paintHatch(context: CanvasRenderingContext2D, prepared: PreparedFrame, 
     if (sheet.blanks.length === 0) continue;
     eraseBlanks(context, sheet, view);
     context.beginPath();
-    traceBoxes(sheet.blanks, sheet.placeIn(view), sheet.bendEvery(view), context);
+    traceBoxes(sheet.blanks, sheet.placeIn(view), sheet.bends, context);
     context.fillStyle = hatchPattern(context, theme);
     context.fill();
   }
@@ -90,7 +90,7 @@ function isolines(entry: PreparedFrame['sheets'][number], view: MapView, k: numb
   const isThin = sheet === entry.thin;
   const ribbon = entry.widthPx(view);
   if (isThin && !level.isActionValue) return { level, ribbon, lines: { points: [], ends: [] } };
-  const lines = traceLines(sheet, sheet.bands[k]!, sheet.placeIn(view), sheet.bendEvery(view));
+  const lines = traceLines(sheet, sheet.bands[k]!, sheet.placeIn(view));
   return { level, ribbon, lines: isThin ? { ends: lines.ends, points: lengthened(lines, 6) } : lines };
 }
 
@@ -121,58 +121,74 @@ function strokeThin(context: CanvasRenderingContext2D, drawn: Drawn[], theme: Ma
   context.globalAlpha = 1;
 }
 
+/** In rivers and strips narrower than these the heavy line of an action value would hide the bands it parts, px. */
+const NARROW_RIVER_PX = 60;
+const NARROW_STRIP_PX = 24;
+
 function strokeActions(context: CanvasRenderingContext2D, drawn: Drawn[], theme: MapTheme): void {
   context.lineJoin = 'round';
   context.lineCap = 'butt';
   for (const { level, lines, ribbon } of drawn) {
     if (!level.isActionValue || lines.ends.length === 0) continue;
-    // Inside a river the line gives way to the bands it parts.
-    const heavy = ribbon < WIDE_RIBBON_PX ? 1.8 : 2.5;
+    const isNarrow = ribbon < NARROW_RIVER_PX || widthOf(lines) < NARROW_STRIP_PX;
     context.beginPath();
     strokeLines(lines, context);
-    context.lineWidth = 2 * heavy;
+    context.lineWidth = isNarrow ? 3 : 5;
     context.strokeStyle = mapInk[theme].paper;
     context.globalAlpha = 0.75;
     context.stroke();
     context.globalAlpha = 1;
-    context.lineWidth = heavy;
+    context.lineWidth = isNarrow ? 1.7 : 2.5;
     context.strokeStyle = mapInk[theme].ink;
-    context.setLineDash(ribbon < WIDE_RIBBON_PX ? [5, 3] : [8, 5]);
+    context.setLineDash(isNarrow ? [5, 3] : [8, 5]);
     context.stroke();
     context.setLineDash([]);
   }
 }
 
-/** From this width on a river has room for figures on its water; below, they stand beside it. */
-const WIDE_RIBBON_PX = 60;
-/** Lines shorter than this are not worth a figure. */
-const LEAST_LABELLED_PX = 70;
+/** Width of what the lines enclose, as that of the long strip with the same area and outline, px. */
+function widthOf({ points, ends }: Lines): number {
+  let area = 0;
+  let length = 0;
+  let from = 0;
+  for (const end of ends) {
+    for (let k = from; k < end; k++) {
+      const l = k + 1 < end ? k + 1 : from;
+      const [ax, ay, bx, by] = [points[2 * k]!, points[2 * k + 1]!, points[2 * l]!, points[2 * l + 1]!];
+      area += ax * by - bx * ay;
+      length += Math.hypot(bx - ax, by - ay);
+    }
+    from = end;
+  }
+  return length === 0 ? 0 : Math.abs(area) / length;
+}
 
 function printOn(book: LabelBook, { level, lines, ribbon }: Drawn, text: string): void {
   const sizePx = level.isActionValue ? 13 : 11;
   const weight = level.isActionValue ? 600 : 400;
-  if (ribbon < WIDE_RIBBON_PX) {
+  if (ribbon < NARROW_RIVER_PX) {
     // One figure a reach, above or below the river; only the action value, for want of room.
-    if (level.isActionValue) book.print(text, beside(extremes(lines, 0, lines.points.length / 2), ribbon / 2 + 9), sizePx, weight);
+    if (level.isActionValue) book.print(text, outside(extremes(lines, 0, lines.points.length / 2), ribbon / 2 + 9, 0), sizePx, weight);
     return;
   }
+  const width = book.widthOf(text, sizePx, weight);
   let from = 0;
   for (const end of lines.ends) {
-    if (level.isActionValue || lengthOf(lines, from, end) >= LEAST_LABELLED_PX) book.print(text, extremes(lines, from, end), sizePx, weight);
+    const ends = extremes(lines, from, end);
     from = end;
+    const [, , right, left] = ends;
+    // A line wide enough to carry its figure has it on itself; round a smaller one an action value stands outside.
+    if (right![0] - left![0] > 1.6 * width && book.print(text, ends, sizePx, weight)) continue;
+    if (level.isActionValue) book.print(text, [...outside(ends, 11, width / 2 + 6), ...outside(ends, 27, width / 2 + 22)], sizePx, weight);
   }
 }
 
-const beside = ([top, bottom]: [number, number][], clearPx: number): [number, number][] => (top && bottom ? [[top[0], top[1] - clearPx], [bottom[0], bottom[1] + clearPx]] : []);
-
-function lengthOf({ points }: Lines, from: number, end: number): number {
-  let length = 0;
-  for (let k = from + 1; k < end; k++) length += Math.hypot(points[2 * k]! - points[2 * k - 2]!, points[2 * k + 1]! - points[2 * k - 1]!);
-  return length;
-}
+/** The four extremes moved outward: so far up and down, and so far to the sides. */
+export const outside = ([top, bottom, right, left]: [number, number][], upPx: number, sidePx: number): [number, number][] =>
+  top && bottom && right && left ? [[top[0], top[1] - upPx], [bottom[0], bottom[1] + upPx], ...(sidePx > 0 ? ([[right[0] + sidePx, right[1]], [left[0] - sidePx, left[1]]] as [number, number][]) : [])] : [];
 
 /** Places tried for a figure: top, bottom, right and left of the line; there it hardly moves while time plays. */
-function extremes({ points }: Lines, from: number, end: number): [number, number][] {
+export function extremes({ points }: Pick<Lines, 'points'>, from: number, end: number): [number, number][] {
   if (end <= from) return [];
   let [top, bottom, right, left] = [from, from, from, from];
   for (let k = from; k < end; k++) {

@@ -1,15 +1,14 @@
 import type L from 'leaflet';
+import type { PixelBox } from './mercator';
 
-type Box = { left: number; top: number; right: number; bottom: number };
-
-const overlaps = (a: Box, b: Box): boolean => a.left < b.right && a.right > b.left && a.top < b.bottom && a.bottom > b.top;
+const overlaps = (a: PixelBox, b: PixelBox): boolean => a.left < b.right && a.right > b.left && a.top < b.bottom && a.bottom > b.top;
 const sides = ['right', 'left', 'below', 'above'] as const;
 type Side = (typeof sides)[number];
 
 /** A mark as seen: its drawn part and the size of its label, px on the map. */
-export type Labelled = { body: Box; labelWidth: number; labelHeight: number };
+export type Labelled = { body: PixelBox; labelWidth: number; labelHeight: number };
 
-function labelBox({ body, labelWidth, labelHeight }: Labelled, side: Side): Box {
+function labelBox({ body, labelWidth, labelHeight }: Labelled, side: Side): PixelBox {
   const middleX = (body.left + body.right) / 2;
   const middleY = (body.top + body.bottom) / 2;
   const left = side === 'right' ? body.right : side === 'left' ? body.left - labelWidth : middleX - labelWidth / 2;
@@ -22,7 +21,7 @@ function labelBox({ body, labelWidth, labelHeight }: Labelled, side: Side): Box 
  * already placed; null where there is none and the label is left out.
  */
 export function placeLabels(marks: readonly Labelled[]): (Side | null)[] {
-  const taken: Box[] = marks.map((mark) => mark.body);
+  const taken: PixelBox[] = marks.map((mark) => mark.body);
   return marks.map((mark) => {
     for (const side of sides) {
       const box = labelBox(mark, side);
@@ -43,7 +42,21 @@ export function tidyLabels(map: L.Map): void {
   requestAnimationFrame(() => {
     waiting.delete(map);
     const pane = map.getPane('markerPane');
-    if (pane) tidy(pane);
+    if (!pane) return;
+    tidy(pane);
+    map.fire(LABELS_PLACED);
+  });
+}
+
+/** Fired on a map after the labels of its marks have been placed. */
+export const LABELS_PLACED = 'labelsplaced';
+
+/** Boxes of all marks and shown labels, measured from the corner of an element. */
+export function markBoxes(map: L.Map, from: DOMRect): PixelBox[] {
+  const drawn = map.getPane('markerPane')?.querySelectorAll<HTMLElement>(".leaflet-marker-icon > svg, .mark-label:not([data-side='none'])") ?? [];
+  return [...drawn].map((element) => {
+    const box = element.getBoundingClientRect();
+    return { left: box.left - from.left, right: box.right - from.left, top: box.top - from.top, bottom: box.bottom - from.top };
   });
 }
 

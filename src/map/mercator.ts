@@ -12,6 +12,9 @@ export const toWorld = ([lon, lat]: LonLat): [number, number] => [worldX(lon), w
 /** Metres on the ground in one world unit at a latitude. */
 export const metresPerWorldUnit = (lat: number): number => (EQUATOR_M * Math.cos(lat * RAD)) / WORLD;
 
+/** Metres on the ground in one pixel of the map at a latitude. */
+export const metresPerPixelAt = (lat: number, zoom: number): number => metresPerWorldUnit(lat) / 2 ** zoom;
+
 /** What a canvas shows: pixel = world * scale - offset. */
 export type MapView = {
   zoom: number;
@@ -22,6 +25,9 @@ export type MapView = {
   height: number;
   /** Metres on the ground in one pixel at the middle of the view. */
   metresPerPixel: number;
-  /** Middle of what the reader sees, pixels: labels keep near it. */
-  seen: { left: number; top: number; right: number; bottom: number };
+  /** What of the canvas is in sight, pixels. */
+  seen: PixelBox;
+  /** Marks and their labels, which stand above the canvas: figures keep clear of them. */
+  marks: readonly PixelBox[];
 };
+export type PixelBox = { left: number; top: number; right: number; bottom: number };

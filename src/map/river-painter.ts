@@ -1,6 +1,6 @@
 import { alongCourse, coursePoint, ribbonPx, type Course } from './channel-course';
 import { haloText, LabelBook, mapFont } from './label-book';
-import type { MapView } from './mercator';
+import type { MapView, PixelBox } from './mercator';
 import { mapInk, type MapTheme } from './palette';
 
 export type RiverReach = { course: Course; widthM: number; prefix: string };
@@ -10,7 +10,7 @@ const BANKS_FROM_ZOOM = 14;
 const ARROW_EVERY_PX = 110;
 const BANK_EVERY_PX = 360;
 
-export function paintRiver(context: CanvasRenderingContext2D, reaches: readonly RiverReach[], view: MapView, theme: MapTheme): void {
+export function paintRiver(context: CanvasRenderingContext2D, reaches: readonly RiverReach[], view: MapView, theme: MapTheme): readonly PixelBox[] {
   context.lineJoin = 'round';
   context.lineCap = 'round';
   context.strokeStyle = mapInk[theme].river;
@@ -24,12 +24,13 @@ export function paintRiver(context: CanvasRenderingContext2D, reaches: readonly 
     });
     context.stroke();
   }
-  const book = new LabelBook(context, theme, { left: 0, top: 0, right: view.width, bottom: view.height });
+  const book = new LabelBook(context, theme, view, { left: 0, top: 0, right: view.width, bottom: view.height });
   for (const reach of reaches) {
     paintArrows(context, reach, view, theme);
     paintChainages(context, book, reach, view, theme);
     if (view.zoom >= BANKS_FROM_ZOOM) paintBanks(context, book, reach, view, theme);
   }
+  return book.printed;
 }
 
 const span = ({ chainageKm }: Course): [number, number] => [chainageKm[0]!, chainageKm[chainageKm.length - 1]!];

@@ -1,5 +1,6 @@
 import { useState } from 'react';
 import { useMap, useMapEvents } from 'react-leaflet';
+import { metresPerPixelAt } from './mercator';
 
 const LONGEST_PX = 130;
 
@@ -14,7 +15,7 @@ export const scaleText = (lengthM: number): string => (lengthM >= 1_000 ? `${len
 
 export function ScaleBar() {
   const map = useMap();
-  const read = () => (40_075_016.7 * Math.cos((map.getCenter().lat * Math.PI) / 180)) / (256 * 2 ** map.getZoom());
+  const read = () => metresPerPixelAt(map.getCenter().lat, map.getZoom());
   const [metresPerPixel, setMetresPerPixel] = useState(read);
   useMapEvents({ zoom: () => setMetresPerPixel(read()), moveend: () => setMetresPerPixel(read()) });
   const lengthM = scaleLengthM(metresPerPixel);

@@ -33,7 +33,7 @@ const river: EstimateWater = {
 const viewAt = (zoom: number): MapView => {
   const [x, y] = toWorld([centre.originLon, centre.originLat]);
   const worldScale = 2 ** zoom;
-  return { zoom, scale: worldScale, offsetX: x * worldScale - 600, offsetY: y * worldScale - 400, width: 1_200, height: 800, metresPerPixel: metresPerWorldUnit(centre.originLat) / worldScale, seen: { left: 0, top: 0, right: 1_200, bottom: 800 } };
+  return { zoom, scale: worldScale, offsetX: x * worldScale - 600, offsetY: y * worldScale - 400, width: 1_200, height: 800, metresPerPixel: metresPerWorldUnit(centre.originLat) / worldScale, seen: { left: 0, top: 0, right: 1_200, bottom: 800 }, marks: [] };
 };
 
 /** A cloud on the right bank half way round the bend. */
@@ -50,7 +50,7 @@ function pixelsOf(zoom: number, frame: Frame): { points: [number, number][]; rib
   const sheet = entry!.full;
   const points: [number, number][] = [];
   const add = (x: number, y: number) => void points.push([x, y]);
-  traceRings(sheet.bands[0]!, sheet.placeIn(view), sheet.bendEvery(view), { moveTo: add, lineTo: add, closePath: () => undefined });
+  traceRings(sheet.bands[0]!, sheet.placeIn(view), sheet.bends, { moveTo: add, lineTo: add, closePath: () => undefined });
   return { points, ribbon: entry!.widthPx(view) };
 }
 
@@ -93,7 +93,7 @@ describe('contours in a river', () => {
 
   it('draw one line across at each end of a thin cloud, and none along the banks', () => {
     const sheet = prepareFrame(bendFrame(9), levels, river).sheets[0]!.thin!;
-    const lines = traceLines(sheet, sheet.bands[0]!, sheet.placeIn(viewAt(12)), sheet.bendEvery(viewAt(12)));
+    const lines = traceLines(sheet, sheet.bands[0]!, sheet.placeIn(viewAt(12)));
     expect(lines.ends).toHaveLength(2);
   });
 

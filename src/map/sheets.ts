@@ -19,8 +19,8 @@ export type Sheet = {
   /** Boxes without an estimate: x from, x to, y from, y to. */
   blanks: [number, number, number, number][];
   placeIn(view: MapView): Place;
-  /** Grid units along y after which a line must be bent, in a view; infinite where lines stay straight. */
-  bendEvery(view: MapView): number;
+  /** True where the grid bends, so that lines between its nodes are not straight. */
+  bends: boolean;
 };
 
 /** A grid as drawn: the full sheet, and one with the largest value right across for rivers too thin to show more. */
@@ -87,7 +87,7 @@ function planeSheet(grid: PlaneGrid, codes: Uint16Array, levelCodes: number[], w
     ny,
     bands: bandsOf(bridgedCodes(codes, nx, ny, dry), nx, ny, levelCodes),
     blanks: blanksOf(codes, nx, ny),
-    bendEvery: () => Infinity,
+    bends: false,
     placeIn: ({ scale, offsetX, offsetY }) => (x, y, out) => {
       const row = Math.min(ny - 2, Math.max(0, Math.floor(y)));
       const below = rowY[row]!;
@@ -128,7 +128,7 @@ function acrossMaximum(codes: Uint16Array, nAcross: number): Uint16Array {
 }
 
 /** Grid x runs from the left bank (0) to the right (nx - 1), grid y along the chainages: both follow the bends of the course. */
-const channelLie = (chainageKm: number[], course: Course, widthPx: (view: MapView) => number) => (nx: number): Pick<Sheet, 'placeIn' | 'bendEvery'> => ({
+const channelLie = (chainageKm: number[], course: Course, widthPx: (view: MapView) => number) => (nx: number): Pick<Sheet, 'placeIn' | 'bends'> => ({
   placeIn: (view) => {
     const point = coursePoint();
     const width = widthPx(view);
@@ -141,8 +141,5 @@ const channelLie = (chainageKm: number[], course: Course, widthPx: (view: MapVie
       out[1] = point.y * view.scale - view.offsetY + point.leftY * offset;
     };
   },
-  bendEvery: (view) => {
-    const stepM = (Math.abs(chainageKm[chainageKm.length - 1]! - chainageKm[0]!) * 1_000) / (chainageKm.length - 1);
-    return Math.max(0.02, (6 * view.metresPerPixel) / Math.max(1, stepM));
-  },
+  bends: true,
 });

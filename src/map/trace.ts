@@ -7,38 +7,48 @@ export type PathSink = { moveTo(x: number, y: number): void; lineTo(x: number, y
 /** Open lines in pixels: x, y pairs; line k ends before vertex `ends[k]`. */
 export type Lines = { points: number[]; ends: number[] };
 
-/** Walks from one grid position towards the next and gives the pixels on the way, the last included. */
-function walk(place: Place, bendEvery: number, ax: number, ay: number, bx: number, by: number, out: Float64Array, visit: (x: number, y: number) => void): void {
-  const steps = Math.min(400, Math.ceil(Math.abs(by - ay) / bendEvery) || 1);
-  for (let k = 1; k <= steps; k++) {
-    place(ax + ((bx - ax) * k) / steps, ay + ((by - ay) * k) / steps, out);
+/** Longest straight piece of a line that follows a bending grid, px. */
+const PIECE_PX = 6;
+const MOST_PIECES = 400;
+
+/** Walks from one grid position to the next in pieces short enough to follow the grid's bends; gives each pixel but the first. */
+function walk(place: Place, ax: number, ay: number, bx: number, by: number, out: Float64Array, visit: (x: number, y: number) => void): void {
+  place(ax, ay, out);
+  const [fromX, fromY] = [out[0]!, out[1]!];
+  place(bx, by, out);
+  const pieces = Math.min(MOST_PIECES, Math.ceil(Math.hypot(out[0]! - fromX, out[1]! - fromY) / PIECE_PX) || 1);
+  const [toX, toY] = [out[0]!, out[1]!];
+  for (let k = 1; k < pieces; k++) {
+    place(ax + ((bx - ax) * k) / pieces, ay + ((by - ay) * k) / pieces, out);
     visit(out[0]!, out[1]!);
   }
+  visit(toX, toY);
 }
 
 /** Closed rings, for filling. */
-export function traceRings(rings: Rings, place: Place, bendEvery: number, sink: PathSink): void {
+export function traceRings(rings: Rings, place: Place, bends: boolean, sink: PathSink): void {
   const out = new Float64Array(2);
   const { points, ends } = rings;
-  let from = 0;
   const lineTo = (x: number, y: number) => sink.lineTo(x, y);
+  let from = 0;
   for (const end of ends) {
     place(points[2 * from]!, points[2 * from + 1]!, out);
     sink.moveTo(out[0]!, out[1]!);
     for (let k = from + 1; k < end; k++) {
-      if (bendEvery === Infinity) {
+      if (bends) walk(place, points[2 * k - 2]!, points[2 * k - 1]!, points[2 * k]!, points[2 * k + 1]!, out, lineTo);
+      else {
         place(points[2 * k]!, points[2 * k + 1]!, out);
         sink.lineTo(out[0]!, out[1]!);
-      } else walk(place, bendEvery, points[2 * k - 2]!, points[2 * k - 1]!, points[2 * k]!, points[2 * k + 1]!, out, lineTo);
+      }
     }
-    if (bendEvery !== Infinity) walk(place, bendEvery, points[2 * end - 2]!, points[2 * end - 1]!, points[2 * from]!, points[2 * from + 1]!, out, lineTo);
+    if (bends) walk(place, points[2 * end - 2]!, points[2 * end - 1]!, points[2 * from]!, points[2 * from + 1]!, out, lineTo);
     sink.closePath();
     from = end;
   }
 }
 
 /** The rings without the stretches where they only follow the grid's border: the isolines proper. */
-export function traceLines(sheet: Pick<Sheet, 'nx' | 'ny'>, rings: Rings, place: Place, bendEvery: number): Lines {
+export function traceLines(sheet: Pick<Sheet, 'nx' | 'ny' | 'bends'>, rings: Rings, place: Place): Lines {
   const lines: Lines = { points: [], ends: [] };
   const out = new Float64Array(2);
   const { points, ends } = rings;
@@ -59,7 +69,11 @@ export function traceLines(sheet: Pick<Sheet, 'nx' | 'ny'>, rings: Rings, place:
         visit(out[0]!, out[1]!);
         open = true;
       }
-      walk(place, bendEvery, ax, ay, bx, by, out, visit);
+      if (sheet.bends) walk(place, ax, ay, bx, by, out, visit);
+      else {
+        place(bx, by, out);
+        visit(out[0]!, out[1]!);
+      }
     }
     if (open) lines.ends.push(lines.points.length / 2);
     from = end;
@@ -77,8 +91,8 @@ export function strokeLines(lines: Lines, sink: PathSink): void {
 }
 
 /** Boxes of the grid as closed paths that follow its bends. */
-export function traceBoxes(boxes: Sheet['blanks'], place: Place, bendEvery: number, sink: PathSink): void {
-  for (const [x0, x1, y0, y1] of boxes) traceRings({ points: Float64Array.of(x0, y0, x1, y0, x1, y1, x0, y1), ends: [4] }, place, bendEvery, sink);
+export function traceBoxes(boxes: Sheet['blanks'], place: Place, bends: boolean, sink: PathSink): void {
+  for (const [x0, x1, y0, y1] of boxes) traceRings({ points: Float64Array.of(x0, y0, x1, y0, x1, y1, x0, y1), ends: [4] }, place, bends, sink);
 }
 
 /** Rings of longitude and latitude already in world units, skipping vertices that fall on the pixel before. */
