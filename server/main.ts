@@ -47,7 +47,8 @@ function announce(): void {
 async function stop(): Promise<void> {
   http.close();
   http.closeAllConnections();
-  await closePool();
+  // Runs are put back before their workers end.
   await closeDeps(deps);
+  await closePool();
   process.exit(0);
 }

@@ -306,7 +306,7 @@ export const estimateDocumentSchema = z
     title: textSchema(200).default(''),
     /** T0: the zero of elapsed time, with the UTC offset in which times are shown. */
     startAt: instantSchema,
-    horizonS: positive('s', estimateLimits.horizonS),
+    horizonS: positive('s', estimateLimits.horizonS).min(60, 'Must be at least 60 s'),
     frameCount: z.number().int().min(2).max(estimateLimits.frames, `At most ${estimateLimits.frames} frames`).default(48),
     substance: estimateSubstanceSchema,
     water: estimateWaterSchema,
