@@ -30,7 +30,7 @@ export const nextArrivalSchema = z.object({
   receptorCode: z.string(),
   receptorName: z.string(),
   verdict: z.string(),
-  /** Rounded down to the minute-step of shared/clock-time.ts: never later than reckoned. */
+  /** Rounded as everywhere (shared/format.ts): never later than reckoned. */
   earliestAt: z.string(),
   /** Null where only the high amount exceeds the action value. */
   likelyAt: z.string().nullable(),

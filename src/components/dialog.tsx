@@ -10,7 +10,7 @@ export function Dialog({ isOpen, onClose, title, says, actions, width = 'narrow'
     <HeadlessDialog open={isOpen} onClose={onClose} className="relative z-50">
       <div className="fixed inset-0 bg-[rgb(10_20_28/0.45)]" aria-hidden="true" />
       <div className="fixed inset-0 flex items-start justify-center overflow-y-auto p-0 sm:p-6 sm:pt-[10vh]">
-        <DialogPanel className={`w-full border-t-4 border-t-kingfisher bg-paper sm:border-x sm:border-b sm:border-edge max-sm:min-h-dvh sm:rounded-b-sm ${width === 'wide' ? 'sm:max-w-3xl' : 'sm:max-w-xl'}`}>
+        <DialogPanel className={`w-full border-t-4 border-t-kingfisher bg-paper sm:border-x sm:border-b sm:border-x-edge sm:border-b-edge max-sm:min-h-dvh sm:rounded-b-sm ${width === 'wide' ? 'sm:max-w-3xl' : 'sm:max-w-xl'}`}>
           <div className="flex items-center justify-between gap-4 border-b border-rule px-5 pt-4 pb-3 sm:px-7">
             <DialogTitle className="text-figure font-semibold text-balance">{title}</DialogTitle>
             <Button kind="quiet" icon="close" aria-label="Close" onClick={onClose} className="-mr-2" />

@@ -26,7 +26,7 @@ describe('next arrivals', () => {
     const [arrival] = next(at(0), { code: 'INT-1', closingS: 1_800, answers: [answer([2 * hour + 1_000, 3 * hour, null], [5 * hour, 6 * hour, null])] });
     expect(arrival).toEqual({
       incidentId: 'incident-1', scenarioId: 'scenario-1', runId: 'run-1', receptorCode: 'INT-1', receptorName: 'Name of INT-1', verdict: 'may exceed',
-      earliestAt: '2031-05-12T08:45:00-08:00', likelyAt: '2031-05-12T09:30:00-08:00', closeByAt: '2031-05-12T08:25:00-08:00',
+      earliestAt: '2031-05-12T08:55:00-08:00', likelyAt: '2031-05-12T09:40:00-08:00', closeByAt: '2031-05-12T08:25:00-08:00',
     });
   });
 

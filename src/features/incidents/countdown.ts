@@ -1,14 +1,21 @@
-import { formatDuration } from '../../../shared/format';
+import { formatDuration, formatEntered } from '../../../shared/format';
 
 export type Countdown = { text: string; isPast: boolean };
 
-/** Time left in whole minutes, never more than there is; after the moment the time since. */
+const FAR_S = 10 * 86_400;
+const DAYS_S = 48 * 3_600;
+/** Cut to minutes, from two days on to hours, from ten days on to days: never more than there is. */
+function write(seconds: number): string {
+  if (seconds >= FAR_S) return `${formatEntered(Math.floor(seconds / 86_400))} d`;
+  const step = seconds >= DAYS_S ? 3_600 : 60;
+  return formatDuration(Math.floor(seconds / step) * step);
+}
+
+/** Time left; after the moment the time since. */
 export function countdownTo(ms: number, nowMs: number): Countdown {
   const leftS = (ms - nowMs) / 1_000;
   if (leftS < 0) {
-    const since = Math.floor(-leftS / 60) * 60;
-    return { text: since === 0 ? 'now' : formatDuration(since), isPast: true };
+    return { text: leftS > -60 ? 'now' : write(-leftS), isPast: true };
   }
-  const left = Math.floor(leftS / 60) * 60;
-  return { text: left === 0 ? 'under 1 min' : formatDuration(left), isPast: false };
+  return { text: leftS < 60 ? 'under 1 min' : write(leftS), isPast: false };
 }

@@ -37,8 +37,10 @@ describe('the Watch', () => {
     expect([none, later, sooner].sort(byUrgency).map(({ id }) => id)).toEqual(['sooner', 'later', 'none']);
   });
 
-  it('counts down in whole minutes and never says more time than there is', () => {
+  it('counts down in minutes, hours or days and never says more time than there is', () => {
     expect(countdownTo(8_159_000, 0)).toEqual({ text: '2 h 15 min', isPast: false });
+    expect(countdownTo(175_900_000, 0)).toEqual({ text: '2 d', isPast: false });
+    expect(countdownTo(1_000_000_000, 0)).toEqual({ text: '11 d', isPast: false });
     expect(countdownTo(59_000, 0)).toEqual({ text: 'under 1 min', isPast: false });
     expect(countdownTo(0, 30_000)).toEqual({ text: 'now', isPast: true });
     expect(countdownTo(0, 1_259_000)).toEqual({ text: '20 min', isPast: true });

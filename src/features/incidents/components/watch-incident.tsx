@@ -27,7 +27,7 @@ export function WatchIncident({ incident, nowMs }: { incident: Incident; nowMs: 
         <ArrivalList label={`Next arrivals, ${incident.name}`} arrivals={nextArrivals.slice(0, SHOWN)} offset={utcOffset} nowMs={nowMs} />
       ) : (
         <p className="border-b border-rule py-4 text-ink2">
-          {incident.scenarioCount === 0 ? 'No scenario yet: open the incident and add one.' : 'No saved forecast shows a receptor above its action value from now on. That is an estimate, not a statement that the water is fit for any use.'}
+          {incident.scenarioCount === 0 ? 'No scenario yet: open the incident and add one.' : 'No saved forecast has an arrival still to come. This does not say that the water is fit for any use.'}
         </p>
       )}
       {more > 0 && (

@@ -76,7 +76,7 @@ function NextArrivals({ incident }: { incident: Incident }) {
   return (
     <Section title="Next arrivals">
       {incident.nextArrivals.length === 0 ? (
-        <p className="border-b border-rule py-4 text-ink2">No saved forecast shows a receptor above its action value from now on. That is an estimate, not a statement that the water is fit for any use.</p>
+        <p className="border-b border-rule py-4 text-ink2">No saved forecast has an arrival still to come. This does not say that the water is fit for any use.</p>
       ) : (
         <ArrivalList label="Next arrivals" arrivals={incident.nextArrivals} offset={incident.utcOffset} nowMs={nowMs} />
       )}
