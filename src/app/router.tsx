@@ -1,5 +1,7 @@
-import type { ComponentType } from 'react';
+import { createElement, type ComponentType } from 'react';
 import { createBrowserRouter, redirect, type LoaderFunctionArgs, type RouteObject } from 'react-router-dom';
+import { registerNames, type RegisterName } from '../../shared/schemas/registers';
+import { registerNames, type RegisterName } from '../../shared/schemas/registers';
 import { Loading } from '../components/progress-text';
 import { queryClient } from '../lib/query-client';
 import { sessionQuery } from '../lib/session';
@@ -13,6 +15,26 @@ function page<Name extends string>(load: () => Promise<Record<Name, ComponentTyp
   return { lazy: async () => ({ Component: (await load())[name] }) };
 }
 
+/** List and entry of one register: five registers, one pair of pages. */
+function registerPlaces(register: RegisterName): RouteObject[] {
+  return [
+    {
+      path: register,
+      lazy: async () => {
+        const { RegisterListPage } = await import('../features/registers/routes/register-list-page');
+        return { Component: () => <RegisterListPage key={register} register={register} /> };
+      },
+    },
+    {
+      path: `${register}/:itemId`,
+      lazy: async () => {
+        const { RegisterItemPage } = await import('../features/registers/routes/register-item-page');
+        return { Component: () => <RegisterItemPage key={register} register={register} /> };
+      },
+    },
+  ];
+}
+
 /** Sends visitors to the sign-in page, and back afterwards; people without incidents go to the first place that is theirs. */
 async function requirePerson({ request }: LoaderFunctionArgs) {
   const { person } = await queryClient.ensureQueryData(sessionQuery);
@@ -22,11 +44,17 @@ async function requirePerson({ request }: LoaderFunctionArgs) {
   return null;
 }
 
+const registerPages = (register: RegisterName): RouteObject[] => [
+  { path: register, lazy: async () => ({ element: createElement((await import('../features/registers/routes/register-list-page')).RegisterListPage, { register }) }) },
+  { path: `${register}/:itemId`, lazy: async () => ({ element: createElement((await import('../features/registers/routes/register-item-page')).RegisterItemPage, { register }) }) },
+];
+
 const places: RouteObject[] = [
   { index: true, ...page(() => import('../features/incidents/routes/watch-page'), 'WatchPage') },
   { path: 'incidents', ...page(() => import('../features/incidents/routes/incident-list-page'), 'IncidentListPage') },
   { path: 'incidents/:incidentId', ...page(() => import('../features/incidents/routes/incident-page'), 'IncidentPage') },
   { path: 'scenarios/:scenarioId', handle: { isFullBleed: true }, ...page(() => import('../features/chart/routes/chart-page'), 'ChartPage') },
+  ...registerNames.flatMap(registerPlaces),
 ];
 
 const visitorPages: RouteObject[] = [];
