@@ -139,6 +139,15 @@ describe('a spoiled estimate document', () => {
   }, 120_000);
 });
 
+describe('an unknown unit', () => {
+  it('is refused with the units there are', async () => {
+    const actionValue = { substanceId: 'tracer', value: 5, unit: 'grains/gallon', source: 'invented' };
+    const receptor = { code: 'INT-9', name: 'Intake', data: { kind: 'intake', position: [-118, -44], waterId: 'river', contact: {}, actionValues: [actionValue] } };
+    const problem = await probe(everybody.planner!, apiPaths.register('receptors'), { method: 'POST', headers: { 'content-type': 'application/json' }, body: JSON.stringify(receptor) }, 'unit');
+    expect(problem?.errors).toContainEqual({ path: 'data.actionValues.0.unit', message: expect.stringMatching(/ug\/l.*mg\/l.*counts\/100ml.*got grains\/gallon/) });
+  });
+});
+
 describe('a body of 100 MB', () => {
   const SIZE = 100 * 1024 * 1024;
   const open = (headers: Record<string, string>) => request(new URL(apiPaths.estimates, app.url), { method: 'POST', headers: { 'content-type': 'application/json', ...headers } });

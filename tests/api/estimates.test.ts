@@ -79,6 +79,8 @@ describe('a document that cannot be estimated names the field, the value and the
     ['a number that is none', () => ({ ...river(), horizonS: Number.NaN }), 'horizonS', /number in s/],
     ['a date without its offset', () => ({ ...river(), startAt: '2031-05-12T06:40:00' }), 'startAt', /UTC offset.*2031-05-12T06:40:00/],
     ['a day that does not exist', () => ({ ...river(), startAt: '2031-02-30T06:40:00Z' }), 'startAt', /2031-02-30/],
+    ['an end before the start', () => ({ ...river(), horizonS: -3_600 }), 'horizonS', /above 0 s.*got -3600/],
+    ['a receptor far off the water', () => { const d = lake(); d.receptors![0]!.position = [-110, -44.05]; return d; }, 'receptors.0.position', /-110.*outside Square lake.*move/],
     ['a release after the end', () => { const d = river(); d.releases[0]!.timing = { kind: 'instantaneous', atS: 90_000 }; return d; }, 'releases.0.timing', /90000 s.*lengthen/],
     ['a table of rates out of order', () => { const d = river(); d.releases[0]!.timing = { kind: 'table', rows: [{ atS: 60, rate: 1 }, { atS: 0, rate: 2 }] }; return d; }, 'releases.0.timing.rows.1.atS', /ascend/],
     ['a release on land', () => { const d = lake(); d.releases[0]!.position = [-116.5, -44.05]; return d; }, 'releases.0.position', /-116\.5.*on land.*move/],

@@ -1,5 +1,6 @@
 import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { apiPaths } from '../../shared/api-paths';
+import { PersonEntity } from '../../server/db/entities/person.entity';
 import { readEvents } from '../helpers/stream-client';
 import { type Fetch, type TestApp, startTestApp } from '../helpers/test-app';
 
@@ -42,6 +43,36 @@ describe('the stream of changes', () => {
     expect(administrator.events.map(({ topic }) => topic)).toEqual(['outbox', 'person', 'register']);
     planner.leave();
     administrator.leave();
+  });
+
+  it('follows a change of roles', async () => {
+    const { id, email } = await app.addPerson({ roles: ['planner'] });
+    const agent = await app.signedIn(email);
+    const cookie = (await agent.get(apiPaths.session).expect(200)).headers['set-cookie']?.[0]?.split(';')[0] ?? '';
+    const stream = await open((path, init = {}) => app.fetchVisitor(path, { ...init, headers: { cookie } }));
+    await app.deps.db.write((tx) => tx.update(PersonEntity, { id }, { roles: ['administrator'] }));
+    app.deps.changes.announce({ topic: 'person', id });
+    await vi.waitFor(() => {
+      app.deps.changes.announce({ topic: 'outbox', id: 'm1' });
+      expect(stream.events.map(({ topic }) => topic)).toContain('outbox');
+    });
+    app.deps.changes.announce({ topic: 'incident', id: 'i1', incidentId: 'i1' });
+    app.deps.changes.announce({ topic: 'register', id: 'w1' });
+    await vi.waitFor(() => expect(stream.events.map(({ topic }) => topic)).toContain('register'));
+    expect(stream.events.map(({ topic }) => topic)).not.toContain('incident');
+    stream.leave();
+  });
+
+  it('says every 20 s that it is still there', async () => {
+    vi.useFakeTimers({ toFake: ['setInterval', 'clearInterval'] });
+    try {
+      const stream = await open(await app.fetchAs('planner'));
+      vi.advanceTimersByTime(20_000);
+      await vi.waitFor(() => expect(stream.text()).toContain(': still here'));
+      stream.leave();
+    } finally {
+      vi.useRealTimers();
+    }
   });
 
   it('ends when the person signs out', async () => {

@@ -152,6 +152,9 @@ describe('a revision', () => {
     onLand.releases[0]!.position = [-116.9, -44.05];
     const { body } = await save(onLand).expect(422);
     expect(body.errors).toMatchObject([{ path: 'document.releases.0.position', message: expect.stringMatching(/-116\.9.*on land.*move/) }]);
+    const farReceptor = buildLakeDocument();
+    farReceptor.receptors![0]!.position = [-110, -44.05];
+    expect((await save(farReceptor).expect(422)).body).toMatchObject({ code: 'cannot-be-estimated', errors: [{ path: 'document.receptors.0.position', message: expect.stringMatching(/-110.*outside Square lake.*move/) }] });
     expect((await get()).revisions).toEqual([]);
     expect(await app.deps.db.read.count(JobEntity)).toBe(jobs);
   });

@@ -1,9 +1,12 @@
 import type { z } from 'zod';
+import type { EstimateDocument } from '../../../shared/schemas/estimate';
 import type { Revision, RevisionCreated, Scenario, ScenarioSummary, draftSaveSchema, revisionCreateSchema, scenarioCreateSchema } from '../../../shared/schemas/incidents';
 import type { RevisionRow, ScenarioRow } from '../../db/entities/incident.entities';
 import type { Deps } from '../../deps';
 import { AppError } from '../../http/problems';
 import type { Actor } from '../../http/routes';
+import { checkDoor } from '../../solver/door';
+import { SolverInputError } from '../../solver/errors';
 import { IncidentService } from '../incidents/incident.service';
 import { RunService } from '../runs/run.service';
 import { documentHash } from './canonical-json';
@@ -85,6 +88,7 @@ export class ScenarioService {
 
   /** Saves a numbered revision for good and queues its run. */
   async saveRevision(actor: Actor, id: string, input: z.output<typeof revisionCreateSchema>): Promise<RevisionCreated> {
+    assertEstimable(input.document);
     const { scenario, revision, run } = await this.deps.db.write(async (tx) => {
       const scenario = await this.getEditable(id);
       if (scenario.draftVersion !== input.draftVersion) throw staleDraft(scenario, input.draftVersion);
@@ -127,6 +131,16 @@ export class ScenarioService {
 
   private announce(actor: Actor, scenario: ScenarioRow): void {
     this.deps.changes.announce({ topic: 'scenario', id: scenario.id, incidentId: scenario.incidentId, by: actor.name });
+  }
+}
+
+/** A revision is for good, so it is held to the solver's door before it is stored. */
+function assertEstimable(document: EstimateDocument): void {
+  try {
+    checkDoor(document);
+  } catch (error) {
+    if (!(error instanceof SolverInputError)) throw error;
+    throw new AppError('cannot-be-estimated', error.message, { errors: error.errors.map(({ path, message }) => ({ path: `document.${path}`, message })) });
   }
 }
 
