@@ -4,7 +4,7 @@ import type { EstimateDocument, OpenWater, RiverWater } from '../../shared/schem
 import { SolverInputError } from './errors';
 import { lengthText, sig } from './format';
 import { isInPlaneArea, nearestShore, planeArea } from './open/area-mask';
-import { RECEPTOR_SNAP_M, RELEASE_SNAP_M } from './open/open-solver';
+import { RECEPTOR_SNAP_M } from './open/open-solver';
 import { reachStates } from './river/reach-state';
 import { releaseProfile } from './release-profile';
 
@@ -24,15 +24,15 @@ function openErrors(doc: EstimateDocument, water: OpenWater): FieldError[] {
   const [originLon, originLat] = doc.releases[0]!.position;
   const plane = { originLon, originLat };
   const area = planeArea(water.area, originLon, originLat);
-  const offWater = (position: [number, number], path: string, slackM: number, what: string): void => {
-    const [x, y] = toPlane(plane, position);
-    if (isInPlaneArea(area, x, y)) return;
-    const shore = nearestShore(area, x, y);
-    if (shore.distanceM > slackM) errors.push({ path, message: `${what} at ${positionText(position)} lies ${lengthText(shore.distanceM)} outside ${water.name}: move it onto the water, or choose the water it belongs to` });
-  };
   if (area.areaM2 < 1) errors.push({ path: 'water.area.0', message: `The outline of ${water.name} encloses ${sig(area.areaM2, 2)} m²: draw it round the water` });
-  doc.releases.forEach((release, i) => offWater(release.position, `releases.${i}.position`, RELEASE_SNAP_M, 'The release'));
-  doc.receptors.forEach((receptor, i) => offWater(receptor.position, `receptors.${i}.position`, RECEPTOR_SNAP_M, `${receptor.name}`));
+  // The schema holds releases to the water itself; receptors at the shore may lie a little outside.
+  doc.receptors.forEach((receptor, i) => {
+    const [x, y] = toPlane(plane, receptor.position);
+    if (isInPlaneArea(area, x, y)) return;
+    const { distanceM: off } = nearestShore(area, x, y);
+    if (off > RECEPTOR_SNAP_M)
+      errors.push({ path: `receptors.${i}.position`, message: `${receptor.name} at ${positionText(receptor.position)} lies ${lengthText(off)} outside ${water.name}: move it onto the water, or choose the water it belongs to` });
+  });
   errors.push(...seriesErrors(doc, water), ...shoreErrors(doc, water));
   return errors;
 }

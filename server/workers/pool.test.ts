@@ -24,8 +24,8 @@ describe('the worker pool', () => {
   }, 30_000);
 
   it('names the field of a document that cannot be solved', async () => {
-    const onLand = { ...coast, releases: [{ ...coast.releases[0]!, position: [0.5, 0.5] as [number, number] }] };
-    await expect(solveInWorker(onLand)).rejects.toMatchObject({ constructor: SolverInputError, errors: [{ path: 'releases.0.position' }] });
+    const onLand = { ...coast, receptors: [{ ...coast.receptors[0]!, position: [0.5, 0.5] as [number, number] }] };
+    await expect(solveInWorker(onLand)).rejects.toMatchObject({ constructor: SolverInputError, errors: [{ path: 'receptors.0.position' }] });
   }, 30_000);
 
   it('rejects at once on abort, sends nothing more, and the lane goes on', async () => {

@@ -38,7 +38,7 @@ const runRules: readonly Rule<OpenFacts>[] = [
     title: 'Hardly any current',
     test(facts) {
       const { mean } = speedsOf(facts);
-      return mean < WEAK_CURRENT_MPS
+      return mean < WEAK_CURRENT_MPS * (1 - 1e-9)
         ? { detail: `The mean current over the estimate is ${sig(mean, 2)} m/s, below ${WEAK_CURRENT_MPS} m/s.`, remedy: 'Direction and arrival are not known at this speed: read the cloud as a circle round the release, and measure the current.' }
         : null;
     },

@@ -14,8 +14,7 @@ import type { OpenMotion, OpenSource } from './puffs';
 import { gridPuffs } from './grid-puffs';
 import { spreadOf } from './spread';
 
-/** A place moved no farther than this onto the water is taken as being at its edge, m. */
-export const RELEASE_SNAP_M = 50;
+/** A receptor no farther than this outside the water is taken as being at its edge, m. */
 export const RECEPTOR_SNAP_M = 300;
 
 /** Closed-form normal clouds in open water: lakes, harbours, estuaries and coasts with a current uniform in space. */
@@ -47,7 +46,8 @@ function prepareOpenWater(input: RunInput): PreparedField {
   const fromS = Math.min(0, ...input.releases.map((release) => release.profile.startS));
   const motion: OpenMotion = { current, spread: spreadOf(water.mixing, current, fromS, doc.horizonS, shore), loss: input.loss, mixingDepthM: water.mixingDepthM };
   const sources = input.releases.map((release): OpenSource => {
-    const at = ontoWater(area, ...toPlane(plane, release.release.position));
+    const [x, y] = toPlane(plane, release.release.position);
+    const at = { x, y };
     return { release, origins: shore ? [at, mirrored(at, shore)] : [at], startVarianceM2: release.release.initialRadiusM ** 2 / 4 };
   });
   const facts: OpenFacts = { input, water, motion, freeCurrent, shore, sources, area };

@@ -63,7 +63,7 @@ export function sampleSite(response: SiteResponse, features: readonly Feature[],
   let stretches = pairs(startTimes(features, horizonS, effort)).map(([a, b]) => [a, (a + b) / 2, b] as const);
   const done: (readonly [number, number, number])[] = [];
   while (stretches.length > 0) {
-    for (const [a, mid, b] of stretches) [at(a), at(mid), at(b)];
+    for (const stretch of stretches) stretch.forEach(at);
     const peak = Math.max(...[...known.values()].map((units) => response.total(units, weights)));
     const next: (readonly [number, number, number])[] = [];
     for (const stretch of stretches) {

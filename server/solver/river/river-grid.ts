@@ -3,7 +3,7 @@ import type { LossClock } from '../loss';
 import { peakTimeAtStation } from '../physics/line';
 import type { Weights } from '../release-profile';
 import type { DistanceTime, GriddedField } from '../types';
-import { AcrossNodes } from './across';
+import type { AcrossNodes } from './across';
 import { placeOn, type RiverPath } from './path';
 import { bottomKm, topKm, type ReachState } from './reach-state';
 import { addAcross } from './river-response';
