@@ -22,10 +22,13 @@ const shown = (value: unknown): string => {
 const valueAt = (input: unknown, path: readonly PropertyKey[]): unknown =>
   path.reduce<unknown>((at, key) => (at !== null && typeof at === 'object' ? (at as Record<PropertyKey, unknown>)[key] : undefined), input);
 
+/** Values of these are never said back: answers end up in logs and screenshots. */
+const secretKey = /password|token/i;
+
 /** Issues of a failed parse as field errors that name the field, the value and the remedy. */
 export function fieldErrors(error: z.ZodError, input: unknown): FieldError[] {
   return error.issues.slice(0, 50).map((issue) => {
-    const value = shown(valueAt(input, issue.path));
+    const value = issue.path.some((key) => secretKey.test(String(key))) ? '' : shown(valueAt(input, issue.path));
     return { path: issue.path.map(String).join('.'), message: value === '' || (issue.code === 'custom' && issue.message.includes(value)) ? issue.message : `${issue.message} (got ${value})` };
   });
 }
