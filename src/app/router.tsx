@@ -1,6 +1,5 @@
-import { createElement, type ComponentType } from 'react';
+import type { ComponentType } from 'react';
 import { createBrowserRouter, redirect, type LoaderFunctionArgs, type RouteObject } from 'react-router-dom';
-import { registerNames, type RegisterName } from '../../shared/schemas/registers';
 import { registerNames, type RegisterName } from '../../shared/schemas/registers';
 import { Loading } from '../components/progress-text';
 import { queryClient } from '../lib/query-client';
@@ -43,11 +42,6 @@ async function requirePerson({ request }: LoaderFunctionArgs) {
   if (pathname === '/' && homeOf(person.roles) !== '/') return redirect(homeOf(person.roles));
   return null;
 }
-
-const registerPages = (register: RegisterName): RouteObject[] => [
-  { path: register, lazy: async () => ({ element: createElement((await import('../features/registers/routes/register-list-page')).RegisterListPage, { register }) }) },
-  { path: `${register}/:itemId`, lazy: async () => ({ element: createElement((await import('../features/registers/routes/register-item-page')).RegisterItemPage, { register }) }) },
-];
 
 const places: RouteObject[] = [
   { index: true, ...page(() => import('../features/incidents/routes/watch-page'), 'WatchPage') },
