@@ -22,6 +22,7 @@ export class CanvasOverlay extends L.Layer {
   private host: HTMLDivElement | null = null;
   private northWest: L.LatLng | null = null;
   private drawnZoom = 0;
+  private marks: PixelBox[] = [];
   private view: (MapView & { marks: PixelBox[] }) | null = null;
 
   constructor(
@@ -49,7 +50,17 @@ export class CanvasOverlay extends L.Layer {
   }
 
   override getEvents(): { [name: string]: L.LeafletEventHandlerFn } {
-    return { moveend: this.lay, viewreset: this.lay, resize: this.lay, [LABELS_PLACED]: this.redraw, zoom: this.stretch, zoomanim: (event) => this.stretchTo(event as L.ZoomAnimEvent) };
+    return { moveend: this.lay, viewreset: this.lay, resize: this.lay, [LABELS_PLACED]: this.giveWay, zoom: this.stretch, zoomanim: (event) => this.stretchTo(event as L.ZoomAnimEvent) };
+  }
+
+  /** Measuring makes the browser lay out the page, so it is done when marks or view change and not at every frame. */
+  private measureMarks(): void {
+    if (this.host) this.marks = markBoxes(this._map, this.host.getBoundingClientRect());
+  }
+
+  private giveWay(): void {
+    this.measureMarks();
+    this.redraw();
   }
 
   /** Draws something else in the same view. */
@@ -70,7 +81,7 @@ export class CanvasOverlay extends L.Layer {
     const shared = printed.get(this._map) ?? new Map();
     printed.set(this._map, shared);
     const place = `${this.view.zoom} ${this.view.offsetX} ${this.view.offsetY}`;
-    this.view.marks = markBoxes(this._map, this.host.getBoundingClientRect());
+    this.view.marks = [...this.marks];
     for (const [overlay, words] of shared) if (overlay !== this && words.place === place) this.view.marks.push(...words.boxes);
     shared.set(this, { place, boxes: this.draw(this.view, contexts) });
   }
@@ -99,7 +110,7 @@ export class CanvasOverlay extends L.Layer {
       seen: { left: margin.x, top: margin.y, right: margin.x + size.x, bottom: margin.y + size.y },
       marks: [],
     };
-    this.redraw();
+    this.giveWay();
   }
 
   private resize(size: L.Point): void {

@@ -1,6 +1,6 @@
 import type { LonLat } from '../../shared/schemas/basics';
 import type { EstimateWater, Reach } from '../../shared/schemas/estimate';
-import { metresPerWorldUnit, worldX, worldY } from './mercator';
+import { metresPerPixelAt, metresPerWorldUnit, worldX, worldY } from './mercator';
 
 /**
  * A reach's centreline in world units with a unit normal to the left at every vertex. Between vertices the normal
@@ -75,14 +75,14 @@ export function alongCourse(course: Course, chainageKm: number, out: CoursePoint
   return out;
 }
 
-/**
- * Width in which a river is drawn, px: its real width where that is more, otherwise a ribbon that grows as one zooms
- * in, so that a cloud is seen at district scale and its place across the river can be told closer by.
- */
-export function ribbonPx(widthM: number, metresPerPixel: number, zoom: number): number {
-  const least = zoom <= 10 ? 5 : Math.min(24, 5 + (zoom - 10) * 3.2);
-  return Math.max(widthM / metresPerPixel, least);
-}
+/** Least width in which a river is drawn, px: it grows as one zooms in, so that the place across the river can be told closer by. */
+const leastRibbonPx = (zoom: number): number => (zoom <= 10 ? 5 : Math.min(24, 5 + (zoom - 10) * 3.2));
+
+/** Width in which a river is drawn, px: its real width, or where that is less a ribbon in which a cloud is seen at district scale. */
+export const ribbonPx = (widthM: number, metresPerPixel: number, zoom: number): number => Math.max(widthM / metresPerPixel, leastRibbonPx(zoom));
+
+/** Least width in which a river is drawn, m on the ground: clicks within it are meant for the river. */
+export const leastRibbonM = (lat: number, zoom: number): number => leastRibbonPx(zoom) * metresPerPixelAt(lat, zoom);
 
 /** Width of a reach at the flow of the estimate, m: the named flow, or the row nearest to a discharge set for the reach. */
 export function reachWidthM(reach: Reach, water: Extract<EstimateWater, { kind: 'river' }>): number {

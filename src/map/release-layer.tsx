@@ -17,8 +17,9 @@ type Props = {
   onMove?: (releaseId: string, position: LonLat, ended: boolean) => LonLat | null;
 };
 
-const STEP_PX = 4;
-const BIG_STEP_PX = 32;
+/** More than a caller rounds chainages by at the closest zoom, so that a step never snaps back. */
+const STEP_PX = 8;
+const BIG_STEP_PX = 48;
 const steps: Record<string, [number, number]> = { ArrowLeft: [-1, 0], ArrowRight: [1, 0], ArrowUp: [0, -1], ArrowDown: [0, 1] };
 /** Releases as plain rings with their time; dragged by hand or moved by arrow keys (Shift for long steps). */
 export function ReleaseLayer({ releases, selectedId = null, onSelect, onMove }: Props) {

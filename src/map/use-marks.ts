@@ -23,7 +23,7 @@ export type Mark = {
 
 export type MarkEvents = {
   onPress?: (id: string) => void;
-  /** While dragged and at its end; answers where the mark is to stand, null to put it back. */
+  /** While dragged and at its end; answers where the mark is to stand. Null leaves it in hand while dragged and puts it back at the end. */
   onDrag?: (id: string, position: LonLat, ended: boolean) => LonLat | null;
   onKey?: (id: string, event: KeyboardEvent) => void;
 };
@@ -74,7 +74,9 @@ function place(map: L.Map, mark: Mark, latest: { current: MarkEvents }): Standin
   const moved = (ended: boolean) => {
     const at = marker.getLatLng();
     const answer = latest.current.onDrag?.(mark.id, [at.lng, at.lat], ended);
-    if (ended) {
+    if (!ended) {
+      if (answer) marker.setLatLng(latLngOf(answer));
+    } else {
       held.isDragged = false;
       marker.setLatLng(latLngOf(answer ?? held.mark.position));
       tidyLabels(map);
