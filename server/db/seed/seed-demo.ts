@@ -3,11 +3,13 @@ import type { Role } from '../../../shared/permissions';
 import { registerNames } from '../../../shared/schemas/registers';
 import type { Deps } from '../../deps';
 import { IncidentService } from '../../features/incidents/incident.service';
-import { seedDemoPeople } from '../../features/people/demo-people';
+import { demoSignIns, seedDemoPeople } from '../../features/people/demo-people';
 import { RegisterService } from '../../features/registers/register.service';
 import { ScenarioService } from '../../features/scenarios/scenario.service';
 import type { Actor } from '../../http/routes';
+import { IncidentEntity } from '../entities/incident.entities';
 import { PersonEntity } from '../entities/person.entity';
+import { RegisterItemEntity } from '../entities/register.entities';
 import { districtRegisters } from './district';
 import { districtIncidents, type SeedIncident } from './district/scenarios';
 
@@ -15,20 +17,25 @@ import { districtIncidents, type SeedIncident } from './district/scenarios';
 const WRITTEN_ON = '2026-12-01';
 const DAY_MS = 86_400_000;
 
-/** Fills an installation that has nobody in it with the invented district, its people and its incidents. Otherwise does nothing. */
+/**
+ * Fills an installation that has nobody in it with the invented district, its people and its incidents, and takes up again
+ * where an earlier start was cut off. An installation of other people is left alone.
+ */
 export async function seedDemo(deps: Deps): Promise<void> {
-  if (await deps.db.read.existsBy(PersonEntity, {})) return;
+  const demoIds = new Set(demoSignIns.map(({ id }) => id));
+  const people = await deps.db.read.find(PersonEntity);
+  if (people.length > 0 && !people.some(({ id }) => demoIds.has(id))) return;
   await seedDemoPeople(deps);
-  await seedRegisters(deps, await seedActor(deps, 'engineer'));
+  if (!(await deps.db.read.existsBy(RegisterItemEntity, {}))) await seedRegisters(deps, await seedActor(deps, 'engineer'));
+  if (await deps.db.read.existsBy(IncidentEntity, {})) return;
   const planner = await seedActor(deps, 'planner');
   for (const incident of districtIncidents) await seedIncident(deps, planner, incident);
 }
 
 /** One of the demonstration people, in whose name the district is set up. */
 async function seedActor(deps: Deps, role: Role): Promise<Actor> {
-  const people = await deps.db.read.find(PersonEntity, { order: { name: 'ASC' } });
-  const person = people.find(({ roles }) => roles.includes(role));
-  if (!person) throw new Error(`No demonstration person is ${role}`);
+  const demo = demoSignIns.find((candidate) => candidate.role === role)!;
+  const person = await deps.db.read.findOneByOrFail(PersonEntity, { id: demo.id });
   return { id: person.id, name: person.name, email: person.email, roles: person.roles };
 }
 
@@ -36,10 +43,12 @@ async function seedRegisters(deps: Deps, actor: Actor): Promise<void> {
   const registers = new RegisterService(deps);
   const shiftDays = Math.floor(deps.now().getTime() / DAY_MS) - dayNumber(WRITTEN_ON);
   const inOrder = registerNames.toSorted((a, b) => rank(a) - rank(b));
-  for (const register of inOrder) {
-    const entries = districtRegisters[register].map((entry) => ({ ...entry, lastCheckedOn: entry.lastCheckedOn && shifted(entry.lastCheckedOn, shiftDays) }));
-    await registers.importAll(actor, register, entries);
-  }
+  await deps.db.write(async () => {
+    for (const register of inOrder) {
+      const entries = districtRegisters[register].map((entry) => ({ ...entry, lastCheckedOn: entry.lastCheckedOn && shifted(entry.lastCheckedOn, shiftDays) }));
+      await registers.importAll(actor, register, entries);
+    }
+  });
 }
 
 /** Waters and substances first: the others refer to them. */

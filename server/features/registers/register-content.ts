@@ -5,12 +5,15 @@ export type RegisterContent = Pick<RegisterItemRow, 'code' | 'name' | 'ownerName
 
 export const contentOf = ({ code, name, ownerName, lastCheckedOn, isArchived, data }: RegisterItemRow): RegisterContent => ({ code, name, ownerName, lastCheckedOn, isArchived, data });
 
+/** Stands in addresses for an entry that is yet to be written. */
+const RESERVED = 'new';
+
 /** An id that people can read: "INT-1" becomes int-1. Free of those taken. */
 export function slugOf(code: string, taken: ReadonlySet<string>): string {
   const base = slugBase(code);
   for (let n = 1; ; n++) {
     const id = n === 1 ? base : `${base}-${n}`;
-    if (!taken.has(id)) return id;
+    if (id !== RESERVED && !taken.has(id)) return id;
   }
 }
 

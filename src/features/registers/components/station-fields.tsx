@@ -1,0 +1,25 @@
+import { Section } from '../../../components/page';
+import { choicesOf, kindWords } from '../model/register-words';
+import { FieldGrid, LongTextField, SelectField } from './bound-fields';
+import { PlaceFields } from './place-fields';
+
+const kinds = choicesOf(kindWords, ['gauge', 'sampling-point', 'tide-gauge', 'current-meter', 'weather']);
+
+export function StationFields() {
+  return (
+    <>
+      <Section title="What it is">
+        <FieldGrid>
+          <SelectField name="data.kind" label="Kind" choices={kinds} />
+          <LongTextField name="data.access" label="Access" hint="How a crew gets there, keys, light, traffic, floods" isOptional />
+        </FieldGrid>
+      </Section>
+      <PlaceFields note="bank looking downstream" />
+      <Section title="Notes">
+        <FieldGrid>
+          <LongTextField name="data.note" label="Note" isOptional />
+        </FieldGrid>
+      </Section>
+    </>
+  );
+}

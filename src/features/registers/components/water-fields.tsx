@@ -1,0 +1,31 @@
+import { useFormContext } from 'react-hook-form';
+import { Section } from '../../../components/page';
+import { emptyOpenWater, emptyRiver } from '../model/empty-entry';
+import { choicesOf, kindWords } from '../model/register-words';
+import { FieldGrid, SelectField, useValue } from './bound-fields';
+import { OpenWaterFields } from './open-water-fields';
+import { RiverFields } from './river-fields';
+
+const openKinds = ['lake', 'harbour', 'estuary', 'coast'];
+
+export function WaterFields({ isNew }: { isNew: boolean }) {
+  const { setValue } = useFormContext();
+  const kind = useValue<string>('data.kind');
+  const choose = (next: string) => {
+    if (next === kind) return;
+    if (next === 'river' || kind === 'river') setValue('data', next === 'river' ? emptyRiver() : emptyOpenWater(next), { shouldDirty: true });
+    else setValue('data.kind', next, { shouldDirty: true });
+  };
+  // A river has reaches, an open water an outline: an entry in use keeps to what it is.
+  const kinds = isNew ? ['river', ...openKinds] : kind === 'river' ? ['river'] : openKinds;
+  return (
+    <>
+      <Section title="What it is">
+        <FieldGrid>
+          <SelectField name="data.kind" label="Kind" choices={choicesOf(kindWords, kinds)} onChosen={(next) => choose(next ?? 'river')} />
+        </FieldGrid>
+      </Section>
+      {kind === 'river' ? <RiverFields /> : <OpenWaterFields />}
+    </>
+  );
+}
