@@ -3,6 +3,7 @@ import { instantMs, instantOf, isoWithOffset } from '../../shared/civil';
 import { formatDayYear, formatOffset, formatTimeOfDay } from '../../shared/format';
 import { classNames } from '../lib/class-names';
 import { parseDay, parseTimeOfDay } from '../lib/parse-instant';
+import { serverNowMs } from '../lib/server-clock';
 import { Button } from './button';
 import { FieldError } from './field';
 import { inputClass } from './inputs';
@@ -29,7 +30,7 @@ export function InstantInput({ value, offset, onChange, hasNow = false }: Instan
   const [known, setKnown] = useState({ value, offset });
   const [isLeft, setIsLeft] = useState(false);
   // Tells "today" and the year of a day typed without one.
-  const [shownAtMs] = useState(() => Date.now());
+  const [shownAtMs] = useState(serverNowMs);
 
   const show = (instant: number) => {
     setDay(dayText(instant, offset));
@@ -58,7 +59,7 @@ export function InstantInput({ value, offset, onChange, hasNow = false }: Instan
     send(isoWithOffset(ms + way * stepMs, offset));
   };
   const setNow = () => {
-    const minute = Math.floor(Date.now() / 60_000) * 60_000;
+    const minute = Math.floor(serverNowMs() / 60_000) * 60_000;
     show(minute);
     send(isoWithOffset(minute, offset));
   };

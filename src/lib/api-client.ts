@@ -1,4 +1,5 @@
 import { problemSchema, type Problem, type ProblemCode } from '../../shared/problem';
+import { noteServerDate } from './server-clock';
 
 /** Every failed request ends as one of these; `problem` is safe to show. Status 0: the server did not answer. */
 export class ApiError extends Error {
@@ -53,6 +54,7 @@ async function send(method: string, path: string, body: unknown, { signal }: Opt
     if (error instanceof DOMException && error.name === 'AbortError') throw error;
     throw noAnswer();
   });
+  noteServerDate(response.headers.get('date'), Date.now());
   if (!response.ok) throw await errorOf(response);
   return response;
 }

@@ -1,11 +1,12 @@
 import { useEffect, useState } from 'react';
+import { serverNowMs } from './server-clock';
 
-/** The present time in ms, renewed every `periodMs`. `skewMs` corrects this device's clock by the server's. */
-export function useNow(periodMs = 1_000, skewMs = 0): number {
-  const [now, setNow] = useState(() => Date.now());
+/** The present time by the server's clock, ms, renewed every `periodMs`. */
+export function useNow(periodMs = 1_000): number {
+  const [now, setNow] = useState(serverNowMs);
   useEffect(() => {
-    const timer = setInterval(() => setNow(Date.now()), periodMs);
+    const timer = setInterval(() => setNow(serverNowMs()), periodMs);
     return () => clearInterval(timer);
   }, [periodMs]);
-  return now + skewMs;
+  return now;
 }

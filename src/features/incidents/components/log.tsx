@@ -13,6 +13,7 @@ import { Loading } from '../../../components/progress-text';
 import { RuledList, RuledRow } from '../../../components/ruled-list';
 import { TimeText } from '../../../components/time-text';
 import { errorText } from '../../../lib/form-errors';
+import { serverNowMs } from '../../../lib/server-clock';
 import { logQuery, useAddLogEntry } from '../api';
 
 /** The incident's log, the newest entry first. Entries are added, never changed. */
@@ -100,7 +101,7 @@ function LogForm({ incident }: { incident: Incident }) {
     );
   };
   const openEarlier = () => {
-    setOccurredAt(isoWithOffset(Math.floor(Date.now() / 60_000) * 60_000, incident.utcOffset));
+    setOccurredAt(isoWithOffset(Math.floor(serverNowMs() / 60_000) * 60_000, incident.utcOffset));
     setIsEarlier(true);
   };
   return (

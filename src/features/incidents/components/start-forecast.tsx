@@ -9,6 +9,7 @@ import { Field } from '../../../components/field';
 import { ChoiceInput, TextInput } from '../../../components/inputs';
 import { Notice } from '../../../components/notice';
 import { errorText } from '../../../lib/form-errors';
+import { serverNowMs } from '../../../lib/server-clock';
 import { useDefaultOffset } from '../../../lib/session';
 import { createIncident, createScenario } from '../api';
 import { markingChoices } from '../marking-choices';
@@ -30,7 +31,7 @@ export function StartForecast({ kind = 'primary' }: { kind?: ButtonKind }) {
 
 function StartForecastForm({ onCancel }: { onCancel: () => void }) {
   const offset = useDefaultOffset();
-  const [name, setName] = useState(() => `Forecast ${formatDay(Date.now(), offset).slice(4)} ${formatTimeOfDay(Date.now(), offset)}`);
+  const [name, setName] = useState(() => `Forecast ${formatDay(serverNowMs(), offset).slice(4)} ${formatTimeOfDay(serverNowMs(), offset)}`);
   const [marking, setMarking] = useState<Marking>('PLANNING');
   const { start, isBusy, error } = useStart();
   const isNameless = name.trim() === '';

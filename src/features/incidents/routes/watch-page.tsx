@@ -1,6 +1,4 @@
-import { useQuery, useQueryClient } from '@tanstack/react-query';
-import { useState } from 'react';
-import { instantMs } from '../../../../shared/civil';
+import { useQuery } from '@tanstack/react-query';
 import { formatDayYear, formatOffset, formatTimeOfDay } from '../../../../shared/format';
 import type { Watch } from '../../../../shared/schemas/incidents';
 import { EmptyState } from '../../../components/empty-state';
@@ -21,8 +19,7 @@ import { byUrgency } from '../order';
 /** What runs now: open incidents with their next arrivals, forecasts being solved, what waits for this person. */
 export function WatchPage() {
   const { data, error } = useQuery(watchQuery);
-  const skewMs = useServerSkew(data);
-  const nowMs = useNow(1_000, skewMs);
+  const nowMs = useNow(1_000);
   const offset = useDefaultOffset();
   const canOpen = useCan('incident:create');
   const canSketch = useCan('scenario:write');
@@ -79,12 +76,4 @@ function WatchBody({ watch, nowMs, canStart }: { watch: Watch; nowMs: number; ca
       </div>
     </div>
   );
-}
-
-/** How far this device's clock stands from the server's, from the newest answer. */
-function useServerSkew(watch: Watch | undefined): number {
-  const receivedAt = useQueryClient().getQueryState(watchQuery.queryKey)?.dataUpdatedAt ?? 0;
-  const [known, setKnown] = useState({ serverTime: '', skewMs: 0 });
-  if (watch && receivedAt > 0 && watch.serverTime !== known.serverTime) setKnown({ serverTime: watch.serverTime, skewMs: instantMs(watch.serverTime) - receivedAt });
-  return known.skewMs;
 }
