@@ -16,14 +16,14 @@ export function ChartHead({ scenario, offset, shownRevision, state, actions }: P
   return (
     <header className="flex flex-wrap items-center gap-x-4 gap-y-1 border-b border-rule bg-paper px-3 py-1.5 sm:px-4">
       <MarkingWord marking={scenario.marking} />
-      <h1 className="min-w-0 flex-1 basis-52 truncate">
-        <Link to={`/incidents/${scenario.incidentId}`} className="text-ink2">
+      <h1 className="min-w-0 flex-1 basis-40 truncate">
+        <Link to={`/incidents/${scenario.incidentId}`} className="text-ink2 max-sm:hidden">
           {scenario.incidentNumber} {scenario.incidentName}
         </Link>
-        <span className="text-ink2"> / </span>
+        <span className="text-ink2 max-sm:hidden"> / </span>
         <span className="font-semibold">{scenario.name}</span>
       </h1>
-      <div className="flex flex-wrap items-center gap-x-3 gap-y-1">
+      <div className="flex items-center gap-x-3 gap-y-1 max-sm:w-full max-sm:justify-between max-sm:gap-x-1 sm:flex-wrap">
         {latest > 0 && (
           <span className="print:hidden">
             <Menu
@@ -44,7 +44,7 @@ export function ChartHead({ scenario, offset, shownRevision, state, actions }: P
           </span>
         )}
         {state}
-        <span className="flex flex-wrap items-center gap-1 print:hidden">{actions}</span>
+        <span className="flex items-center gap-1 print:hidden max-sm:gap-0">{actions}</span>
       </div>
     </header>
   );

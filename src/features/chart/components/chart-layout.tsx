@@ -5,7 +5,8 @@ import { classNames } from '../../../lib/class-names';
 import { useChart } from '../hooks/chart-context';
 import { usePlayer } from '../hooks/use-player';
 import type { Forecast } from '../model/forecast';
-import { byArrival, flagsOf } from '../model/rail-lanes';
+import { arrivalSpan } from '../model/arrival-words';
+import { byArrival } from '../model/rail-lanes';
 import { MapStage } from './map-stage';
 import { PageEdge, usePageWidth } from './page-width';
 import { PrintedResults } from './printed-results';
@@ -28,14 +29,12 @@ type Props = {
 };
 
 const noTimes: number[] = [];
-/** Room for a plate before its flag, as a share of the rail. */
-const PLATE_SHARE = 0.07;
 
 /** Page, map, rail and drawer; on a phone the page is a sheet over the map. */
 export function ChartLayout({ head, forecast, document, isBehind, missing, note, horizonS }: Props) {
   const { draft, offset } = useChart();
   const { width, set } = usePageWidth();
-  const [sheet, setSheet] = useState<SheetHeight>('half');
+  const [sheet, setSheet] = useState<SheetHeight>(missing === null ? 'low' : 'half');
   const [selectedId, setSelectedId] = useState<string | null>(null);
   const [tab, setTab] = useState<DrawerTab | null>(null);
   const shownHorizonS = document?.horizonS ?? horizonS;
@@ -46,7 +45,6 @@ export function ChartLayout({ head, forecast, document, isBehind, missing, note,
   // Once a forecast is there, its own receptors are judged; before that, those of the draft stand in the list.
   const receptors = useMemo(() => (document && forecast ? document.receptors : draft.receptors.filter((receptor) => !draft.leftOut.includes(receptor.id))), [document, forecast, draft.receptors, draft.leftOut]);
   const rows = useMemo(() => byArrival(receptors, forecast?.answers ?? []), [receptors, forecast?.answers]);
-  const flags = useMemo(() => flagsOf(rows, shownHorizonS, shownHorizonS * PLATE_SHARE), [rows, shownHorizonS]);
   const select = (id: string | null) => {
     setSelectedId(id);
     if (id === null) return;
@@ -55,7 +53,8 @@ export function ChartLayout({ head, forecast, document, isBehind, missing, note,
   };
   const shown = forecast ? forecast.frames.filter(Boolean).length : 0;
   const solvedShare = forecast && forecast.frameTimesS.length > 0 && shown < forecast.frameTimesS.length ? shown / forecast.frameTimesS.length : null;
-  const summary = missing && !forecast ? missing : rows[0] ? `${rows.length} receptors by arrival` : 'Release';
+  const first = rows[0]?.answer ? arrivalSpan(clock, rows[0].answer) : null;
+  const summary = missing && !forecast ? missing : first ? `${rows[0]!.receptor.code} ${first}` : `${rows.length} receptors`;
 
   return (
     <div className="flex h-full flex-col print:block print:h-auto">
@@ -75,7 +74,7 @@ export function ChartLayout({ head, forecast, document, isBehind, missing, note,
         <MapStage forecast={forecast} document={document} isBehind={isBehind} timeS={player.timeS} clock={clock} measure={measure} rows={rows} selectedId={selectedId} onSelect={select} missing={missing} />
         <div className={classNames('[grid-area:rail]', (isBehind || missing !== null) && forecast && 'opacity-60')}>
           {!Number.isNaN(clock.startMs) && (
-            <TimeRail player={player} startMs={clock.startMs} horizonS={shownHorizonS} offset={offset} place={draft.releases[0]?.position ?? null} flags={flags} selectedId={selectedId} onSelect={select} solvedShare={solvedShare} note={note} />
+            <TimeRail player={player} startMs={clock.startMs} horizonS={shownHorizonS} offset={offset} place={draft.releases[0]?.position ?? null} rows={rows} selectedId={selectedId} onSelect={select} solvedShare={solvedShare} note={note} />
           )}
         </div>
         {forecast && document && (

@@ -16,7 +16,7 @@ const LEFT = 64;
 const RIGHT = 16;
 const TOP = 22;
 const BOTTOM = 40;
-const HEIGHT = 260;
+const HEIGHT = 210;
 /** Decades shown on the logarithmic scale. */
 const DECADES = 1e4;
 

@@ -12,7 +12,7 @@ const LEFT = 74;
 const RIGHT = 60;
 const TOP = 10;
 const BOTTOM = 40;
-const HEIGHT = 320;
+const HEIGHT = 280;
 
 type Props = {
   field: DistanceTime;

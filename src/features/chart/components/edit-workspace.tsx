@@ -14,6 +14,7 @@ import { buildDocument } from '../model/build-document';
 import { readDraft, type Draft } from '../model/draft';
 import type { Registers } from '../model/draft-actions';
 import { readKeptDraft } from '../model/draft-store';
+import { isMissing, sayError } from '../model/field-words';
 import { automaticHorizonS } from '../model/horizon';
 import { ChartHead } from './chart-head';
 import { ChartLayout } from './chart-layout';
@@ -66,12 +67,14 @@ export function EditWorkspace({ scenario, registers, nowIso, from }: Props) {
   }, [isSaveWanted, isDirty, document, held.version, mutate]);
   usePageKeys({ undo, redo, save });
 
-  const errors = useMemo(() => [...built.errors, ...(live.failure?.errors ?? [])], [built.errors, live.failure]);
+  // While the first forecast is still being put together, what has not been given yet is asked for, not refused.
+  const isComposing = live.forecast === null;
+  const errors = useMemo(() => [...built.errors.filter((error) => !(isComposing && isMissing(error))), ...(live.failure?.errors ?? [])], [built.errors, live.failure, isComposing]);
   const work = useMemo<ChartWork>(
     () => ({ draft, change, registers, offset, errors, isReadOnly: !scenario.abilities.edit, selectedReleaseId, selectRelease, placing, setPlacing }),
     [draft, change, registers, offset, errors, scenario.abilities.edit, selectedReleaseId, placing],
   );
-  const missing = built.errors[0]?.message ?? live.failure?.text ?? null;
+  const missing = (built.errors[0] && sayError(built.errors[0])) ?? live.failure?.text ?? null;
   const keepCopy = async () => {
     setCopying({ isBusy: true, error: null });
     try {
@@ -102,9 +105,11 @@ export function EditWorkspace({ scenario, registers, nowIso, from }: Props) {
               <>
                 <Button kind="quiet" icon="undo" aria-label="Undo" disabled={!handle.canUndo} onClick={undo} />
                 <Button kind="quiet" icon="redo" aria-label="Redo" disabled={!handle.canRedo} onClick={redo} />
-                <Button kind="quiet" icon="print" aria-label="Print" onClick={() => window.print()} />
-                <Button kind="primary" disabled={!canSave} isBusy={isSaveWanted} onClick={save}>
-                  Save scenario
+                <Button kind="quiet" icon="print" aria-label="Print" className="max-sm:hidden" onClick={() => window.print()} />
+                <Button kind="primary" aria-label="Save scenario" className="max-sm:px-3" disabled={!canSave} isBusy={isSaveWanted} onClick={save}>
+                  <span>
+                    Save<span className="max-sm:hidden"> scenario</span>
+                  </span>
                 </Button>
               </>
             }

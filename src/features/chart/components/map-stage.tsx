@@ -8,7 +8,6 @@ import type { LonLat } from '../../../../shared/schemas/basics';
 import type { EstimateDocument, EstimateWater } from '../../../../shared/schemas/estimate';
 import { Button } from '../../../components/button';
 import { useTheme } from '../../../lib/theme';
-import { ConcentrationGauge } from '../../../map/concentration-gauge';
 import { DistrictMap } from '../../../map/district-map';
 import { EnvelopeLayer } from '../../../map/envelope-layer';
 import { FrameLayer } from '../../../map/frame-layer';
@@ -23,6 +22,7 @@ import { placeRelease } from '../model/draft-actions';
 import { frameIndexAt, type Forecast } from '../model/forecast';
 import type { Place } from '../model/place';
 import { boundsOf } from '../model/bounds';
+import { MapLegend } from './map-legend';
 import { ReadOut } from './read-out';
 import type { Rows } from './receptors-panel';
 
@@ -81,7 +81,7 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
   const answers = useMemo(() => rows.flatMap((row) => row.answer ?? []), [rows]);
 
   return (
-    <div className="relative h-full min-h-0 [grid-area:stage] print:h-[105mm]">
+    <div className="relative h-full min-h-0 overflow-hidden [grid-area:stage] print:h-[105mm]">
       <DistrictMap theme={theme} label="Map of the district" onClick={click} fitTo={fitTo}>
         <ScaleReport onScale={setMetresPerPixel} />
         <RiverLayer reaches={reaches} />
@@ -101,19 +101,11 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
           <Button kind="quiet" icon="close" aria-label="Close" onClick={() => setRefused(null)} />
         </div>
       )}
-      {forecast && forecast.levels.length > 0 && (
-        <div className="absolute bottom-14 left-3 z-[1000] rounded-sm bg-sheet/90 p-2 shadow-float max-md:hidden print:block">
-          <ConcentrationGauge levels={forecast.levels} measure={measure} theme={theme} />
-          <label className="flex items-center gap-2 text-note print:hidden">
-            <input type="checkbox" className="accent-kingfisher" checked={showsEnvelope} onChange={(event) => setShowsEnvelope(event.target.checked)} />
-            Outline of all it reaches
-          </label>
-        </div>
-      )}
+      {forecast && forecast.levels.length > 0 && <MapLegend levels={forecast.levels} measure={measure} theme={theme} showsEnvelope={showsEnvelope} onEnvelope={setShowsEnvelope} />}
       {probe && frame && water && <ReadOut position={probe} frame={frame} envelope={forecast?.envelope ?? null} water={water} ribbonM={THIN_RIBBON_PX * metresPerPixel} timeS={frame.head.timeS} clock={clock} measure={measure} onClose={() => setProbe(null)} />}
-      {(missing || isBehind) && forecast && (
+      {(missing ? forecast !== null || draft.releases.length > 0 : isBehind) && (
         <p className="pointer-events-none absolute inset-x-0 bottom-0 z-[999] bg-sheet/85 px-4 py-1.5 text-center font-semibold print:hidden">
-          {missing ? <><s className="text-ink2">Forecast of the last complete figures.</s> {missing}</> : 'Solving the change'}
+          {!missing ? 'Solving the change' : forecast ? <><s className="font-normal text-ink2">Forecast of the last complete figures.</s> {missing}</> : `Next: ${missing.charAt(0).toLowerCase()}${missing.slice(1)}`}
         </p>
       )}
     </div>

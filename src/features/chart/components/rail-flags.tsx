@@ -26,13 +26,13 @@ export function RailFlags({ flags, xOf, top, lanePx, selectedId, onSelect }: Pro
         })}
       </svg>
       {flags.map((flag) => (
-        <RailPlate key={flag.id} flag={flag} x={xOf(flag.earlyS)} y={top + flag.lane * lanePx} height={lanePx} isSelected={flag.id === selectedId} onSelect={onSelect} />
+        <RailPlate key={flag.id} flag={flag} x={flag.isPlateAfter ? xOf(Math.max(flag.endS, flag.lateS)) : xOf(flag.earlyS)} y={top + flag.lane * lanePx} height={lanePx} isSelected={flag.id === selectedId} onSelect={onSelect} />
       ))}
     </div>
   );
 }
 
-/** The plate stands before the bar, or behind its start where there is no room on the left. */
+/** The plate stands before the bar, or after it where there is no room on the left. */
 function RailPlate({ flag, x, y, height, isSelected, onSelect }: { flag: Flag; x: number; y: number; height: number; isSelected: boolean; onSelect: (id: string) => void }) {
   const width = 12 + flag.code.length * 7;
   return (
@@ -41,7 +41,7 @@ function RailPlate({ flag, x, y, height, isSelected, onSelect }: { flag: Flag; x
       aria-label={`${flag.code}: show its curve`}
       aria-pressed={isSelected}
       className={classNames('pointer-events-auto absolute flex items-center justify-end px-1 text-[12px] leading-none font-semibold whitespace-nowrap', isSelected ? 'text-kingfisher underline' : 'text-ink')}
-      style={{ left: x - width < 0 ? x + 6 : x - width, top: y, height, width }}
+      style={{ left: flag.isPlateAfter ? x + 4 : x - width, top: y, height, width }}
       onClick={() => onSelect(flag.id)}
     >
       {flag.code}

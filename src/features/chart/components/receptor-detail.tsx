@@ -12,7 +12,7 @@ export function ReceptorDetail({ receptor, answer, clock, measure }: Props) {
   const edge = writeTime(clock, answer.leadingEdgeS, 'early');
   return (
     <div className="flex flex-col gap-3">
-      {answer.reason && <p>{answer.reason}</p>}
+      {answer.reason && !answer.answers.some((one) => one.reason === answer.reason) && <p>{answer.reason}</p>}
       {answer.answers.map((one) => (
         <ActionDetail key={one.index} one={one} receptor={receptor} clock={clock} measure={measure} />
       ))}

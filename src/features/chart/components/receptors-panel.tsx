@@ -43,7 +43,7 @@ function ReceptorRow({ receptor, answer, number, clock, measure, isSelected, onS
           <strong className="font-semibold">{receptor.code}</strong> {receptor.name}
         </span>
         {span && <span className="text-lead font-semibold">{span}</span>}
-        <span className="text-note text-ink2">{answer ? `${answer.verdict}, peak ${sayRange(answer.peak, measure)}` : 'not solved yet'}</span>
+        <span className="text-note text-ink2">{answer ? `${answer.verdict}, ${answer.peak.likely === 0 ? '' : 'peak '}${sayRange(answer.peak, measure)}` : 'not solved yet'}</span>
       </button>
     </li>
   );

@@ -90,7 +90,7 @@ function FirstPlace() {
               if (event.key === 'Enter') go();
             }}
           />
-          <Button onClick={go}>Place it</Button>
+          <Button className="whitespace-nowrap" onClick={go}>Place it</Button>
         </div>
       </Field>
     </>

@@ -50,7 +50,7 @@ export function ResultDrawer(props: Props) {
         {tab && <Button kind="quiet" icon="close" className="ml-auto" aria-label="Close the drawer" onClick={() => onTab(null)} />}
       </div>
       {tab && (
-        <div className="h-[min(25rem,42dvh)] overflow-auto border-t border-rule p-4" tabIndex={-1}>
+        <div className="h-[clamp(13rem,28dvh,26rem)] overflow-auto border-t border-rule p-4" tabIndex={-1}>
           <DrawerLeaf {...props} tab={tab} />
         </div>
       )}

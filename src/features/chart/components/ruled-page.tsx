@@ -1,7 +1,9 @@
+import { useState } from 'react';
 import type { Measure } from '../../../../shared/format';
 import { EstimateCaution } from '../../../components/estimate-caution';
 import { FieldError } from '../../../components/field';
 import { useChart } from '../hooks/chart-context';
+import { buildDocument } from '../model/build-document';
 import type { Clock } from '../model/arrival-words';
 import type { Forecast } from '../model/forecast';
 import { ChecksPanel, checksSummary } from './checks-panel';
@@ -19,14 +21,13 @@ export function RuledPage({ forecast, rows, clock, measure, isBehind, selectedId
   const has = (start: string) => errors.some((error) => error.path === start || error.path.startsWith(`${start}.`));
   const hasCoefficientError = ['water.mixing', 'water.mixingDepthM', 'water.depthM'].some(has);
   const isFirst = draft.releases.length === 0;
+  // Who opens a finished scenario wants its answers; who starts one wants the fields.
+  const [isNew] = useState(() => !buildDocument(draft).document);
   const checks = forecast?.result?.checks ?? null;
   return (
     <>
-      <Section title="Release" summary={isFirst ? '' : draft.releases.map((release) => releaseWords(draft, release)).join('; ')} isOpenFirst hasError={has('releases') || has('substance') || has('startAt')}>
+      <Section title="Release" summary={isFirst ? '' : draft.releases.map((release) => releaseWords(draft, release)).join('; ')} isOpenFirst={isNew} hasError={has('releases') || has('substance') || has('startAt')}>
         <ReleasePanel />
-      </Section>
-      <Section title="Receptors by arrival" summary={rows.length > 0 ? `${rows.length} on the water` : ''} isOpenFirst hasError={has('receptors')}>
-        <ReceptorsPanel rows={rows} clock={clock} measure={measure} selectedId={selectedId} onSelect={onSelect} isBehind={isBehind} />
       </Section>
       <Section title="Water and flow" summary={waterSummary(draft)} hasError={(has('water') && !hasCoefficientError) || has('horizonS')}>
         <WaterPanel />
@@ -34,8 +35,11 @@ export function RuledPage({ forecast, rows, clock, measure, isBehind, selectedId
       <Section title="Coefficients" summary={coefficientSummary(draft)} hasError={hasCoefficientError}>
         <CoefficientsPanel />
       </Section>
-      <Section title="Checks" summary={checksSummary(checks)} isOpenFirst={false}>
+      <Section title="Checks" summary={checksSummary(checks)}>
         <ChecksPanel checks={checks} />
+      </Section>
+      <Section title="Receptors by arrival" summary={rows.length > 0 ? `${rows.length} on the water` : ''} isOpenFirst hasError={has('receptors')}>
+        <ReceptorsPanel rows={rows} clock={clock} measure={measure} selectedId={selectedId} onSelect={onSelect} isBehind={isBehind} />
       </Section>
       <OtherErrors />
       <EstimateCaution className="px-4 py-3" />

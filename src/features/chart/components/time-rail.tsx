@@ -3,16 +3,18 @@ import { formatClock, formatDay, formatElapsed, formatTimeOfDay } from '../../..
 import type { LonLat } from '../../../../shared/schemas/basics';
 import type { Player } from '../hooks/use-player';
 import { useWidth } from '../hooks/use-width';
-import type { Flag } from '../model/rail-lanes';
+import { flagsOf } from '../model/rail-lanes';
 import { nightSpans } from '../model/sun';
 import { clockTicks } from '../model/time-ticks';
 import { RailControls } from './rail-controls';
 import { RailFlags } from './rail-flags';
+import type { Rows } from './receptors-panel';
 
 const SIDE_PX = 14;
 const LANE_PX = 18;
 const SCALE_PX = 38;
 const NARROWEST_TICK_PX = 74;
+const PLATE_PX = 56;
 
 type Props = {
   player: Player;
@@ -20,7 +22,7 @@ type Props = {
   horizonS: number;
   offset: string;
   place: LonLat | null;
-  flags: Flag[];
+  rows: Rows;
   selectedId: string | null;
   onSelect: (receptorId: string) => void;
   /** How far the forecast is solved, as a share; null when all is there. */
@@ -29,11 +31,12 @@ type Props = {
 };
 
 /** Time under the map: night shaded, clock and elapsed time, a flag for each arrival, play and step. */
-export function TimeRail({ player, startMs, horizonS, offset, place, flags, selectedId, onSelect, solvedShare, note }: Props) {
+export function TimeRail({ player, startMs, horizonS, offset, place, rows, selectedId, onSelect, solvedShare, note }: Props) {
   const [ref, width] = useWidth(900);
   const track = Math.max(10, width - 2 * SIDE_PX);
   const xOf = (s: number) => SIDE_PX + (Math.min(horizonS, Math.max(0, s)) / horizonS) * track;
   const nights = useMemo(() => (place ? nightSpans(startMs, horizonS, place[0], place[1]) : []), [startMs, horizonS, place]);
+  const flags = useMemo(() => flagsOf(rows, horizonS, (PLATE_PX / track) * horizonS), [rows, horizonS, track]);
   const ticks = clockTicks(startMs, horizonS, offset, Math.max(2, Math.floor(track / NARROWEST_TICK_PX)));
   const lanes = Math.min(6, Math.max(1, ...flags.map((flag) => flag.lane + 1)));
   const laneTop = 6;

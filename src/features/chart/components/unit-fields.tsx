@@ -28,7 +28,7 @@ function UnitSelect({ label, scales, unit, onUnit }: { label: string; scales: re
 export function UnitField({ label, scales, value, onChange, error, hint, disabled = false, isOptional = false }: Shared & { value: number | null; onChange: (si: number | null) => void; isOptional?: boolean }) {
   const { scale, setUnit } = useScale(value, scales);
   return (
-    <Field label={label} unit={scale.unit} error={error} hint={hint} isOptional={isOptional}>
+    <Field label={label} unit={scale.unit} error={error && value === null ? `Give a number in ${scale.unit}` : error} hint={hint} isOptional={isOptional}>
       <div className="flex gap-2">
         <div className="min-w-0 flex-1">
           <NumberInput disabled={disabled} value={toUnit(value, scale)} onChange={(typed) => onChange(fromUnit(typed, scale))} min={0} />
@@ -39,12 +39,18 @@ export function UnitField({ label, scales, value, onChange, error, hint, disable
   );
 }
 
+/** The order of the three is told by the range itself, in the typed unit. */
+function rangeError(error: string | undefined, value: DraftRange, unit: string): string | undefined {
+  if (error === undefined || /^(Low|High) \(/.test(error)) return undefined;
+  return value.likely === null ? `Give the likely figure in ${unit}` : error;
+}
+
 /** Low, likely and high, kept in SI. */
 export function UnitRangeField({ label, scales, value, onChange, error, hint }: Shared & { value: DraftRange; onChange: (si: DraftRange) => void }) {
   const { scale, setUnit } = useScale(value.likely, scales);
   const map = (range: DraftRange, by: typeof toUnit): DraftRange => ({ low: by(range.low, scale), likely: by(range.likely, scale), high: by(range.high, scale) });
   return (
-    <Field label={label} isGroup error={error} hint={hint}>
+    <Field label={label} isGroup error={rangeError(error, value, scale.unit)} hint={hint}>
       <div className="flex items-start gap-2">
         <div className="min-w-0 flex-1">
           <RangeInput value={map(value, toUnit)} onChange={(range) => onChange(map(range, fromUnit))} unit={scale.unit} />

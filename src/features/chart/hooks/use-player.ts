@@ -8,7 +8,9 @@ export function usePlayer(horizonS: number, frameTimesS: readonly number[]) {
   const [timeS, setTimeS] = useState(0);
   const [isPlaying, setPlaying] = useState(false);
   const [hoursPerSecond, setSpeed] = useState<number>(1);
-  const shownS = Math.min(timeS, horizonS);
+  // Nothing is drawn before the first frame, so the hand starts there.
+  const firstS = frameTimesS[0] ?? 0;
+  const shownS = Math.min(Math.max(timeS, firstS), horizonS);
 
   useEffect(() => {
     if (!isPlaying) return;
@@ -31,7 +33,8 @@ export function usePlayer(horizonS: number, frameTimesS: readonly number[]) {
   const step = useCallback(
     (direction: 1 | -1) => {
       setPlaying(false);
-      setTimeS((at) => {
+      setTimeS((stored) => {
+        const at = Math.max(stored, frameTimesS[0] ?? 0);
         const next = direction === 1 ? frameTimesS.find((time) => time > at + 0.5) : [...frameTimesS].reverse().find((time) => time < at - 0.5);
         return next ?? (direction === 1 ? horizonS : 0);
       });

@@ -51,6 +51,7 @@ export const sayConcentration = (value: number | null, measure: Measure): string
 /** "12 to 49 mg/l, likely 25 mg/l" */
 export function sayRange({ low, likely, high }: { low: number | null; likely: number | null; high: number | null }, measure: Measure): string {
   if (likely === null) return 'no estimate';
+  if (likely === 0 && (high ?? 0) === 0) return 'not reached in this estimate';
   if (low === null && high === null) return sayConcentration(likely, measure);
   return `${sayConcentration(low ?? likely, measure)} to ${sayConcentration(high ?? likely, measure)}, likely ${sayConcentration(likely, measure)}`;
 }

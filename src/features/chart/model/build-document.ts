@@ -1,7 +1,7 @@
 import type { FieldError } from '../../../../shared/problem';
 import { estimateDocumentSchema, type EstimateDocument } from '../../../../shared/schemas/estimate';
 import type { Draft, DraftRelease } from './draft';
-import { automaticHorizonS } from './horizon';
+import { automaticFrameCount, automaticHorizonS } from './horizon';
 
 export type Built = { document: EstimateDocument; errors: FieldError[] } | { document: null; errors: FieldError[] };
 
@@ -33,9 +33,11 @@ export function buildDocument(draft: Draft): Built {
   if (missing.length > 0) return { document: null, errors: missing };
   const { leftOut, currentName: _named, ...rest } = draft;
   const kept = draft.receptors.flatMap((receptor, i) => (leftOut.includes(receptor.id) ? [] : [i]));
+  const horizonS = draft.horizonS ?? automaticHorizonS(draft);
   const parsed = estimateDocumentSchema.safeParse({
     ...rest,
-    horizonS: draft.horizonS ?? automaticHorizonS(draft),
+    horizonS,
+    frameCount: draft.frameCount ?? automaticFrameCount(horizonS),
     releases: draft.releases.map((release) => ({ ...release, spilledVolumeM3: spilledVolumeM3(release) })),
     receptors: kept.map((i) => draft.receptors[i]),
   });

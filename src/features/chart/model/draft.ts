@@ -29,7 +29,8 @@ export type Draft = {
   startAt: string;
   /** Null: chosen by `automaticHorizonS`. */
   horizonS: number | null;
-  frameCount: number;
+  /** Null: chosen by `automaticFrameCount`. */
+  frameCount: number | null;
   substance: EstimateSubstance | null;
   water: DraftWater | null;
   releases: DraftRelease[];
@@ -45,7 +46,7 @@ export const emptyDraft = (startAt: string): Draft => ({
   title: '',
   startAt,
   horizonS: null,
-  frameCount: 48,
+  frameCount: null,
   substance: null,
   water: null,
   releases: [],

@@ -32,12 +32,14 @@ function riverTravelS(draft: Draft, river: DraftRiver, release: DraftRelease): n
   for (let reach = byId.get(release.channel?.reachId ?? ''); reach && !met.has(reach.id); ) {
     met.add(reach.id);
     const speed = rowOf(reach, river)?.velocityMps ?? 0.3;
+    // River flow alone takes days through tidal water: a receptor there does not set the length, unless the release is there too.
+    const isReckoned = !reach.tidal || reach.id === release.channel?.reachId;
     for (const receptor of draft.receptors) {
       const at = receptor.channel;
-      if (at?.reachId === reach.id && at.chainageKm <= from && !draft.leftOut.includes(receptor.id)) lastReceptor = Math.max(lastReceptor, elapsed + ((from - at.chainageKm) * 1_000) / speed);
+      if (at?.reachId === reach.id && isReckoned && at.chainageKm <= from && !draft.leftOut.includes(receptor.id)) lastReceptor = Math.max(lastReceptor, elapsed + ((from - at.chainageKm) * 1_000) / speed);
     }
     const bottom = reach.centreline[reach.centreline.length - 1]![2];
-    elapsed += (Math.max(0, from - bottom) * 1_000) / speed;
+    if (isReckoned) elapsed += (Math.max(0, from - bottom) * 1_000) / speed;
     const next: Reach | undefined = byId.get(reach.downstreamReachId ?? '');
     from = next ? joinChainage(reach, next) : 0;
     reach = next;
@@ -64,6 +66,9 @@ function openTravelS(draft: Draft, water: DraftOpenWater, release: DraftRelease)
   const distances = draft.receptors.filter((receptor) => !draft.leftOut.includes(receptor.id)).map((receptor) => distanceM(release.position, receptor.position));
   return Math.max(0, ...distances) / speed;
 }
+
+/** One frame each half hour where that makes a sensible number of them. */
+export const automaticFrameCount = (horizonS: number): number => Math.min(96, Math.max(24, Math.round(horizonS / 1_800)));
 
 /** Estimate length when none is typed: until the last receptor has been passed, in whole 6 h, between 6 h and 10 days. */
 export function automaticHorizonS(draft: Draft): number {

@@ -26,9 +26,9 @@ export function byArrival(receptors: readonly EstimateReceptor[], answers: reado
     .map(({ receptor, answer }, i) => ({ receptor, answer, number: i + 1 }));
 }
 
-export type Flag = { id: string; number: number; code: string; earlyS: number; likelyS: number; lateS: number; endS: number; endOpen: boolean; lane: number };
+export type Flag = { id: string; number: number; code: string; earlyS: number; likelyS: number; lateS: number; endS: number; endOpen: boolean; lane: number; isPlateAfter: boolean };
 
-/** Flags on as few lanes as keep them apart; `gapS` is room for the plate beside each. */
+/** Flags on as few lanes as keep them apart. A plate takes `gapS` before its flag, or after it where the rail begins too close. */
 export function flagsOf(rows: ReturnType<typeof byArrival>, horizonS: number, gapS: number): Flag[] {
   const laneEnds: number[] = [];
   return rows.flatMap(({ receptor, answer, number }) => {
@@ -37,9 +37,10 @@ export function flagsOf(rows: ReturnType<typeof byArrival>, horizonS: number, ga
     if (!deciding || earlyS === null) return [];
     const likelyS = deciding.arrivalS.likely ?? earlyS;
     const endS = Math.min(horizonS, latestEndS(deciding) ?? horizonS);
-    const free = laneEnds.findIndex((end) => end + gapS <= earlyS);
+    const isPlateAfter = earlyS < gapS;
+    const free = laneEnds.findIndex((end) => end + (isPlateAfter ? 0 : gapS) <= earlyS);
     const lane = free === -1 ? laneEnds.length : free;
-    laneEnds[lane] = Math.max(endS, earlyS + gapS);
-    return [{ id: receptor.id, number, code: receptor.code || receptor.name, earlyS, likelyS, lateS: deciding.arrivalS.late ?? likelyS, endS, endOpen: deciding.endOpen, lane }];
+    laneEnds[lane] = endS + (isPlateAfter ? gapS : 0);
+    return [{ id: receptor.id, number, code: receptor.code || receptor.name, earlyS, likelyS, lateS: deciding.arrivalS.late ?? likelyS, endS, endOpen: deciding.endOpen, lane, isPlateAfter }];
   });
 }

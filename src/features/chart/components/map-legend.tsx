@@ -1,0 +1,30 @@
+import { useState } from 'react';
+import type { Measure } from '../../../../shared/format';
+import type { Level } from '../../../../shared/schemas/estimate-result';
+import { Icon } from '../../../components/icon';
+import { ConcentrationGauge } from '../../../map/concentration-gauge';
+import type { MapTheme } from '../../../map/palette';
+
+type Props = { levels: readonly Level[]; measure: Measure; theme: MapTheme; showsEnvelope: boolean; onEnvelope: (shows: boolean) => void };
+
+/** The staff gauge over the map; folds away where it covers something. */
+export function MapLegend({ levels, measure, theme, showsEnvelope, onEnvelope }: Props) {
+  const [isOpen, setOpen] = useState(() => window.matchMedia('(min-width: 48rem)').matches);
+  return (
+    <section aria-label="Values on the map" className="absolute bottom-14 left-3 z-[1000] max-h-[calc(100%-4.5rem)] overflow-y-auto rounded-sm bg-sheet shadow-float max-md:top-3 max-md:bottom-auto print:shadow-none">
+      <button type="button" aria-expanded={isOpen} onClick={() => setOpen(!isOpen)} className="flex min-h-9 w-full items-center gap-2 px-3 font-semibold pointer-coarse:min-h-11 print:hidden">
+        <Icon name={isOpen ? 'down' : 'right'} className="size-3.5 text-ink2" />
+        Values
+      </button>
+      {isOpen && (
+        <div className="px-2 pb-2">
+          <ConcentrationGauge levels={levels} measure={measure} theme={theme} />
+          <label className="flex min-h-8 items-center gap-2 text-note print:hidden">
+            <input type="checkbox" className="accent-kingfisher" checked={showsEnvelope} onChange={(event) => onEnvelope(event.target.checked)} />
+            Outline of all it reaches
+          </label>
+        </div>
+      )}
+    </section>
+  );
+}
