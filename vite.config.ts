@@ -15,8 +15,8 @@ export default defineConfig({
       output: {
         codeSplitting: {
           groups: [
-            { name: 'map', test: /node_modules[\\/](leaflet|react-leaflet|@react-leaflet)[\\/]/ },
-            { name: 'react', test: /node_modules[\\/](react|react-dom|scheduler|react-router|react-router-dom|@tanstack)[\\/]/ },
+            { name: 'map', priority: 1, test: /node_modules[\\/](leaflet|react-leaflet|@react-leaflet)[\\/]/ },
+            { name: 'react', priority: 2, test: /node_modules[\\/](react|react-dom|scheduler|react-router|react-router-dom|@tanstack)[\\/]/ },
           ],
         },
       },
