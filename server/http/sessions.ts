@@ -49,10 +49,10 @@ export class SessionStore extends session.Store {
     done?.();
   }
 
-  /** Every request puts the end off; a step too small to matter is not written. */
+  /** Every request puts the end off; a step too small to matter is not written. A session that has ended stays ended. */
   override touch(sid: string, data: SessionData, done?: () => void): void {
     const expiresAt = this.expiryOf(data);
-    this.db.prepare('update sessions set expires_at = ? where sid = ? and expires_at < ?').run(expiresAt, sid, expiresAt - idleMsOf(data) / 60);
+    this.db.prepare('update sessions set expires_at = ? where sid = ? and expires_at < ? and expires_at > ?').run(expiresAt, sid, expiresAt - idleMsOf(data) / 60, this.now());
     done?.();
   }
 

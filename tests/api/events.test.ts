@@ -90,6 +90,23 @@ describe('the stream of changes', () => {
     await ended;
   });
 
+  it('ends with a session that was idle too long, and its end does not bring the session back', async () => {
+    let later = 0;
+    const clocked = await startTestApp({ now: () => new Date(Date.now() + later) });
+    vi.useFakeTimers({ toFake: ['setInterval', 'clearInterval'] });
+    try {
+      const fetchAs = await clocked.fetchAs('planner');
+      const { ended } = await open(fetchAs);
+      later = clocked.deps.config.idleMs + 1_000;
+      vi.advanceTimersByTime(20_000);
+      await ended;
+      expect((await fetchAs(apiPaths.watch)).status).toBe(401);
+    } finally {
+      vi.useRealTimers();
+      await clocked.close();
+    }
+  });
+
   it('is closed to visitors', async () => {
     expect((await app.fetchVisitor(apiPaths.events)).status).toBe(401);
   });

@@ -34,13 +34,16 @@ function openStream(deps: Deps, actor: Actor, req: Request, res: Response): void
   res.flushHeaders();
   res.write('retry: 3000\n: connected\n\n');
 
+  const send = (text: string): void => {
+    if (!res.writableEnded) res.write(text);
+  };
   const unsubscribe = deps.changes.subscribe((event) => {
-    if (event.topic === 'person' && event.id === actor.id) void recheck();
-    if (allows(roles, actionOf[event.topic])) res.write(`data: ${JSON.stringify(event)}\n\n`);
+    if (event.topic === 'person' && event.id === actor.id) recheck();
+    if (allows(roles, actionOf[event.topic])) send(`data: ${JSON.stringify(event)}\n\n`);
   });
   const heartbeat = setInterval(() => {
-    res.write(': still here\n\n');
-    void recheck();
+    send(': still here\n\n');
+    recheck();
   }, HEARTBEAT_MS);
   deps.sessions.on('ended', recheck);
   res.once('close', () => {
@@ -50,11 +53,12 @@ function openStream(deps: Deps, actor: Actor, req: Request, res: Response): void
   });
 
   /** Roles may have changed and the session may have ended since the stream was opened. */
-  async function recheck(): Promise<void> {
+  function recheck(): void {
     if (!isSessionLive(deps, req.sessionID)) return void res.end();
-    const present = await findActor(deps.db, actor.id);
-    if (!present) return void res.end();
-    roles = present.roles;
+    findActor(deps.db, actor.id).then(
+      (present) => (present ? (roles = present.roles) : res.end()),
+      () => res.end(),
+    );
   }
 }
 
