@@ -35,13 +35,12 @@ export class Database {
     return run;
   }
 
-  private async transact<T>(work: (tx: EntityManager) => Promise<T>): Promise<T> {
-    const unit: Partial<Unit> = {};
-    try {
-      return await this.writer.transaction((tx) => this.current.run(Object.assign(unit, { tx, isOpen: true }), () => work(tx)));
-    } finally {
-      unit.isOpen = false;
-    }
+  private transact<T>(work: (tx: EntityManager) => Promise<T>): Promise<T> {
+    return this.writer.transaction((tx) => {
+      const unit: Unit = { tx, isOpen: true };
+      // Closed before the commit: what comes later must not join a transaction that is being ended.
+      return this.current.run(unit, () => work(tx).finally(() => (unit.isOpen = false)));
+    });
   }
 
   /** Manager for reading: the open transaction inside `write`, committed rows elsewhere. */

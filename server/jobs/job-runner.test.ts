@@ -29,6 +29,8 @@ afterEach(async () => {
 const enqueue = (kind: string, subjectId: string, runAfter?: Date) => db.write((tx) => runner.enqueue(tx, kind, subjectId, runAfter));
 const jobs = () => db.read.find(JobEntity, { order: { subjectId: 'ASC' } });
 const stateOf = async (subjectId: string) => (await db.read.findOneByOrFail(JobEntity, { subjectId })).state;
+/** Long, because a loaded machine is slow. */
+const eventually = (check: () => unknown) => vi.waitFor(check, { timeout: 30_000 });
 const held = () => {
   let release: () => void = () => undefined;
   const until = new Promise<void>((resolve) => (release = resolve));
@@ -44,7 +46,7 @@ describe('jobs', () => {
       await pause(2);
     }
     await runner.start();
-    await vi.waitFor(async () => expect((await jobs()).map(({ state }) => state)).toEqual(['done', 'done', 'done']));
+    await eventually(async () => expect((await jobs()).map(({ state }) => state)).toEqual(['done', 'done', 'done']));
     expect(seen).toEqual(['a', 'b', 'c']);
   });
 
@@ -54,7 +56,7 @@ describe('jobs', () => {
     await enqueue('note', 'later', new Date(Date.now() + 3_600_000));
     await enqueue('note', 'now');
     await runner.start();
-    await vi.waitFor(async () => expect(await stateOf('now')).toBe('done'));
+    await eventually(async () => expect(await stateOf('now')).toBe('done'));
     expect(seen).toEqual(['now']);
     expect(await stateOf('later')).toBe('queued');
   });
@@ -68,11 +70,11 @@ describe('jobs', () => {
     await enqueue('run', 'run-2');
     await enqueue('mail', 'mail-1');
     await runner.start();
-    await vi.waitFor(async () => expect(await stateOf('mail-1')).toBe('done'));
+    await eventually(async () => expect(await stateOf('mail-1')).toBe('done'));
     expect(running).toEqual(['run-1']);
     expect(await stateOf('run-2')).toBe('queued');
     release();
-    await vi.waitFor(async () => expect(await stateOf('run-2')).toBe('done'));
+    await eventually(async () => expect(await stateOf('run-2')).toBe('done'));
   });
 
   it('are taken up at once when queued and woken, without waiting for the next look', async () => {
@@ -81,7 +83,25 @@ describe('jobs', () => {
     await pause(50);
     await enqueue('note', 'fresh');
     runner.wake();
-    await vi.waitFor(async () => expect(await stateOf('fresh')).toBe('done'), { timeout: 500 });
+    await vi.waitFor(async () => expect(await stateOf('fresh')).toBe('done'), { timeout: 1_500 });
+  });
+
+  it('keep their lease as long as their handler reports', async () => {
+    const { until, release } = held();
+    let renewed = '';
+    const leaseOf = async () => (await jobs())[0]?.leaseUntil ?? '';
+    runner.register('note', async (_job, { renewLease }) => {
+      const before = await leaseOf();
+      await pause(5);
+      await renewLease();
+      renewed = (await leaseOf()) > before ? 'later' : 'not later';
+      await until;
+    });
+    await enqueue('note', 'a');
+    await runner.start();
+    await eventually(() => expect(renewed).toBe('later'));
+    release();
+    await eventually(async () => expect((await jobs())[0]).toMatchObject({ state: 'done', leaseUntil: null }));
   });
 
   it('whose handler throws are failed and given up, with the reason kept', async () => {
@@ -89,8 +109,8 @@ describe('jobs', () => {
     runner.register('note', { handle: () => Promise.reject(new Error('no paper')), onGivenUp: async (job, reason) => void given.push(`${job.subjectId} ${reason}`) });
     await enqueue('note', 'a');
     await runner.start();
-    await vi.waitFor(async () => expect((await jobs())[0]).toMatchObject({ state: 'failed', lastError: 'no paper' }));
-    await vi.waitFor(() => expect(given).toEqual(['a failed']));
+    await eventually(async () => expect((await jobs())[0]).toMatchObject({ state: 'failed', lastError: 'no paper' }));
+    await eventually(() => expect(given).toEqual(['a failed']));
   });
 });
 
@@ -103,22 +123,22 @@ describe('a restart', () => {
     runner.register('note', { handle: async (job) => void seen.push(job.subjectId), onGivenUp: async (job, reason) => void given.push(`${job.subjectId} ${reason}`) });
     await db.write((tx) => tx.insert(JobEntity, [left(1), left(2)]));
     await runner.start();
-    await vi.waitFor(async () => expect((await jobs()).map(({ state }) => state)).toEqual(['done', 'failed']));
+    await eventually(async () => expect((await jobs()).map(({ state }) => state)).toEqual(['done', 'failed']));
     expect(seen).toEqual(['left-1']);
-    await vi.waitFor(() => expect(given).toEqual(['left-2 interrupted']));
+    await eventually(() => expect(given).toEqual(['left-2 interrupted']));
   });
 
   it('after an orderly stop finds the job waiting, with no attempt lost', async () => {
     runner.register('note', (_job, { signal }) => new Promise((_resolve, reject) => signal.addEventListener('abort', () => reject(new Error('stopped')))));
     await enqueue('note', 'a');
     await runner.start();
-    await vi.waitFor(async () => expect(await stateOf('a')).toBe('running'));
+    await eventually(async () => expect(await stateOf('a')).toBe('running'));
     await runner.stop();
     expect((await jobs())[0]).toMatchObject({ state: 'queued', attempts: 0, leaseUntil: null });
 
     runner = newRunner();
     runner.register('note', async () => undefined);
     await runner.start();
-    await vi.waitFor(async () => expect(await stateOf('a')).toBe('done'));
+    await eventually(async () => expect(await stateOf('a')).toBe('done'));
   });
 });

@@ -2,6 +2,7 @@ import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { apiPaths } from '../../shared/api-paths';
 import { PersonEntity } from '../../server/db/entities/person.entity';
 import { readEvents } from '../helpers/stream-client';
+import { eventually } from '../helpers/eventually';
 import { type Fetch, type TestApp, startTestApp } from '../helpers/test-app';
 
 let app: TestApp;
@@ -15,7 +16,7 @@ const open = async (fetchAs: Fetch) => {
   const leaving = new AbortController();
   const response = await fetchAs(apiPaths.events, { signal: leaving.signal });
   const stream = readEvents(response);
-  await vi.waitFor(() => expect(stream.text()).toContain(': connected'));
+  await eventually(() => expect(stream.text()).toContain(': connected'));
   return { response, ...stream, leave: () => leaving.abort() };
 };
 
@@ -26,7 +27,7 @@ describe('the stream of changes', () => {
     expect(response.headers.get('cache-control')).toBe('no-cache, no-transform');
     const planner = await app.agentFor('planner');
     const { body } = await planner.post(apiPaths.incidents).send({ name: 'Test', marking: 'REAL' }).expect(201);
-    await vi.waitFor(() => expect(events).toMatchObject([{ topic: 'incident', id: body.id }]));
+    await eventually(() => expect(events).toMatchObject([{ topic: 'incident', id: body.id }]));
     leave();
   });
 
@@ -38,7 +39,7 @@ describe('the stream of changes', () => {
     app.deps.changes.announce({ topic: 'outbox', id: 'm1' });
     app.deps.changes.announce({ topic: 'person', id: 'p1' });
     app.deps.changes.announce({ topic: 'register', id: 'w1' });
-    await vi.waitFor(() => expect([planner.events.length, administrator.events.length]).toEqual([3, 3]));
+    await eventually(() => expect([planner.events.length, administrator.events.length]).toEqual([3, 3]));
     expect(planner.events.map(({ topic }) => topic)).toEqual(['incident', 'run', 'register']);
     expect(administrator.events.map(({ topic }) => topic)).toEqual(['outbox', 'person', 'register']);
     planner.leave();
@@ -52,13 +53,13 @@ describe('the stream of changes', () => {
     const stream = await open((path, init = {}) => app.fetchVisitor(path, { ...init, headers: { cookie } }));
     await app.deps.db.write((tx) => tx.update(PersonEntity, { id }, { roles: ['administrator'] }));
     app.deps.changes.announce({ topic: 'person', id });
-    await vi.waitFor(() => {
+    await eventually(() => {
       app.deps.changes.announce({ topic: 'outbox', id: 'm1' });
       expect(stream.events.map(({ topic }) => topic)).toContain('outbox');
     });
     app.deps.changes.announce({ topic: 'incident', id: 'i1', incidentId: 'i1' });
     app.deps.changes.announce({ topic: 'register', id: 'w1' });
-    await vi.waitFor(() => expect(stream.events.map(({ topic }) => topic)).toContain('register'));
+    await eventually(() => expect(stream.events.map(({ topic }) => topic)).toContain('register'));
     expect(stream.events.map(({ topic }) => topic)).not.toContain('incident');
     stream.leave();
   });
@@ -68,7 +69,7 @@ describe('the stream of changes', () => {
     try {
       const stream = await open(await app.fetchAs('planner'));
       vi.advanceTimersByTime(20_000);
-      await vi.waitFor(() => expect(stream.text()).toContain(': still here'));
+      await eventually(() => expect(stream.text()).toContain(': still here'));
       stream.leave();
     } finally {
       vi.useRealTimers();

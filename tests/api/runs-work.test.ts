@@ -1,7 +1,7 @@
 import { type ChildProcess, spawn } from 'node:child_process';
 import { once } from 'node:events';
 import { join } from 'node:path';
-import { afterAll, afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
+import { afterAll, afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { MessageReader, type StreamHead } from '../../shared/frames';
 import type { ChangeEvent } from '../../shared/schemas/incidents';
 import type { Deps } from '../../server/deps';
@@ -12,6 +12,7 @@ import { RunService } from '../../server/features/runs/run.service';
 import { SolverInputError } from '../../server/solver/errors';
 import { closePool } from '../../server/workers/pool';
 import { buildRiverDocument } from '../helpers/build-document';
+import { eventually } from '../helpers/eventually';
 import { openDeps, saveRevision, somePlanner, testFolder } from '../helpers/test-deps';
 
 type Solve = NonNullable<Parameters<typeof registerRunJobs>[1]>;
@@ -58,7 +59,7 @@ describe('a run', () => {
   it('is solved in a worker and ends with its result, its frames and an audit entry', async () => {
     const { runId } = await saveRevision(deps, buildRiverDocument());
     await start();
-    await vi.waitFor(async () => expect(await stateOf(runId)).toBe('done'), { timeout: 20_000 });
+    await eventually(async () => expect(await stateOf(runId)).toBe('done'));
     const run = await runs.get(somePlanner, runId);
     expect(run.result?.receptors[0]?.receptorId).toBe('int-1');
     expect(run).toMatchObject({ progress: null, failure: null, engineVersion: run.result?.engineVersion, abilities: { cancel: false } });
@@ -68,17 +69,17 @@ describe('a run', () => {
     expect(types).toContain('envelope');
     expect(types.at(-1)).toBe('result');
     expect(types).not.toContain('receptor');
-  }, 30_000);
+  }, 60_000);
 
   it('gives the same bytes for the same revision, engine version and seed', async () => {
     const { runId, scenarioId } = await saveRevision(deps, buildRiverDocument());
     const again = await runs.create(somePlanner, scenarioId, 1);
     await start();
-    for (const id of [runId, again.id]) await vi.waitFor(async () => expect(await stateOf(id)).toBe('done'), { timeout: 20_000 });
+    for (const id of [runId, again.id]) await eventually(async () => expect(await stateOf(id)).toBe('done'));
     const bytes = [await bytesOf(runId), await bytesOf(again.id)];
     expect(bytes[0]!.length).toBeGreaterThan(1_000);
     expect(bytes[0]!.equals(bytes[1]!)).toBe(true);
-  }, 40_000);
+  }, 60_000);
 
   it('stores and announces its first frame while the rest is being solved', async () => {
     const { runId } = await saveRevision(deps, buildRiverDocument());
@@ -88,7 +89,7 @@ describe('a run', () => {
     const leaving = new AbortController();
     const seen: StreamHead[] = [];
     const reading = headsOf(runId, leaving.signal, seen);
-    await vi.waitFor(() => expect(seen).toMatchObject([{ type: 'frame', index: 0 }]));
+    await eventually(() => expect(seen).toMatchObject([{ type: 'frame', index: 0 }]));
     expect(await stateOf(runId)).toBe('running');
     expect(events).toContainEqual(expect.objectContaining({ topic: 'run', id: runId, state: 'running' }));
     leaving.abort();
@@ -99,10 +100,10 @@ describe('a run', () => {
     const { runId } = await saveRevision(deps, buildRiverDocument());
     let isAborted = false;
     await start((document, options) => hanging(document, options).finally(() => (isAborted = true)));
-    await vi.waitFor(async () => expect(await stateOf(runId)).toBe('running'));
+    await eventually(async () => expect(await stateOf(runId)).toBe('running'));
     const reading = headsOf(runId);
     await runs.cancel(somePlanner, runId);
-    await vi.waitFor(() => expect(isAborted).toBe(true));
+    await eventually(() => expect(isAborted).toBe(true));
     expect((await reading).at(-1)).toMatchObject({ type: 'failed', code: 'cancelled' });
     expect(await stateOf(runId)).toBe('cancelled');
     expect(await runs.repository.messagesAfter(runId, -1, 10)).toEqual([]);
@@ -114,7 +115,7 @@ describe('a run', () => {
     let isBegun = false;
     await start(async () => ((isBegun = true), Promise.reject(new Error('begun'))));
     const later = await saveRevision(deps, buildRiverDocument());
-    await vi.waitFor(async () => expect(await stateOf(later.runId)).toBe('failed'));
+    await eventually(async () => expect(await stateOf(later.runId)).toBe('failed'));
     expect(isBegun).toBe(true);
     expect(await stateOf(runId)).toBe('cancelled');
   });
@@ -122,7 +123,7 @@ describe('a run', () => {
   it('that the solver refuses fails with the fields to mend', async () => {
     const { runId } = await saveRevision(deps, buildRiverDocument());
     await start(() => Promise.reject(new SolverInputError([{ path: 'water.reaches.0', message: 'too steep' }])));
-    await vi.waitFor(async () => expect(await stateOf(runId)).toBe('failed'));
+    await eventually(async () => expect(await stateOf(runId)).toBe('failed'));
     expect((await runs.getHead(runId)).failure).toMatchObject({ code: 'cannot-be-estimated', errors: [{ path: 'water.reaches.0', message: 'too steep' }] });
     expect((await headsOf(runId)).at(-1)).toMatchObject({ type: 'failed', code: 'cannot-be-estimated' });
   });
@@ -130,7 +131,7 @@ describe('a run', () => {
   it('that meets a bug fails without telling its inside', async () => {
     const { runId } = await saveRevision(deps, buildRiverDocument());
     await start(() => Promise.reject(new Error('Cannot read properties of undefined (secret)')));
-    await vi.waitFor(async () => expect(await stateOf(runId)).toBe('failed'));
+    await eventually(async () => expect(await stateOf(runId)).toBe('failed'));
     const { failure } = await runs.getHead(runId);
     expect(failure).toMatchObject({ code: 'internal', errors: [] });
     expect(failure?.detail).toContain(runId);
@@ -158,7 +159,7 @@ describe('a restart of the server', () => {
     await crash();
     expect(await stateOf(runId)).toBe('running');
     await start();
-    await vi.waitFor(async () => expect(await stateOf(runId)).toBe('done'), { timeout: 20_000 });
+    await eventually(async () => expect(await stateOf(runId)).toBe('done'));
     expect((await headsOf(runId)).filter(({ type }) => type === 'start')).toHaveLength(1);
   }, 60_000);
 
@@ -167,20 +168,20 @@ describe('a restart of the server', () => {
     await crash();
     await crash();
     await start();
-    await vi.waitFor(async () => expect(await stateOf(runId)).toBe('failed'));
+    await eventually(async () => expect(await stateOf(runId)).toBe('failed'));
     expect((await runs.getHead(runId)).failure?.code).toBe('interrupted');
   }, 60_000);
 
   it('in good order puts the run back and solves it after the next start', async () => {
     const { runId } = await saveRevision(deps, buildRiverDocument());
     await start(hanging);
-    await vi.waitFor(async () => expect(await stateOf(runId)).toBe('running'));
+    await eventually(async () => expect(await stateOf(runId)).toBe('running'));
     await closeDeps(deps);
 
     deps = await openDeps(place.folder);
     runs = new RunService(deps);
     expect(await stateOf(runId)).toBe('queued');
     await start();
-    await vi.waitFor(async () => expect(await stateOf(runId)).toBe('done'), { timeout: 20_000 });
-  }, 40_000);
+    await eventually(async () => expect(await stateOf(runId)).toBe('done'));
+  }, 60_000);
 });

@@ -1,4 +1,4 @@
-import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { apiPaths } from '../../shared/api-paths';
 import { MessageReader, type StreamHead } from '../../shared/frames';
 import type { Run, RunSummary } from '../../shared/schemas/incidents';
@@ -6,6 +6,7 @@ import { AuditEntity } from '../../server/db/entities/record.entities';
 import { registerRunJobs } from '../../server/features/runs/run.job';
 import { closePool } from '../../server/workers/pool';
 import { buildRiverDocument } from '../helpers/build-document';
+import { eventually } from '../helpers/eventually';
 import { type Agent, type TestApp, startTestApp } from '../helpers/test-app';
 
 let app: TestApp;
@@ -66,8 +67,8 @@ describe('a solved run', () => {
   beforeAll(async () => {
     registerRunJobs(app.deps);
     await app.deps.jobs.start();
-    await vi.waitFor(async () => expect((await get(runId)).state).toBe('done'), { timeout: 20_000 });
-  }, 30_000);
+    await eventually(async () => expect((await get(runId)).state).toBe('done'));
+  }, 60_000);
 
   it('holds its result and shows up in the lists', async () => {
     expect((await get(runId)).result?.receptors).toHaveLength(1);
@@ -93,11 +94,11 @@ describe('a solved run', () => {
   it('gives the incident its next arrivals, when they are still to come', async () => {
     const document = { ...buildRiverDocument(), startAt: new Date(app.deps.now().getTime()).toISOString() };
     const { body } = await planner.post(apiPaths.scenarioRevisions(scenarioId)).send({ document, draftVersion: 0 }).expect(201);
-    await vi.waitFor(async () => expect((await get(body.runId)).state).toBe('done'), { timeout: 20_000 });
+    await eventually(async () => expect((await get(body.runId)).state).toBe('done'));
     const { body: incident } = await planner.get(apiPaths.incident(incidentId)).expect(200);
     expect(incident.nextArrivals).toMatchObject([{ scenarioId, runId: body.runId, receptorCode: 'INT-1', verdict: 'may exceed' }]);
     const [arrival] = incident.nextArrivals;
     expect(arrival.earliestAt).toMatch(/-08:00$/);
     expect(Date.parse(arrival.closeByAt)).toBeLessThan(Date.parse(arrival.earliestAt));
-  }, 30_000);
+  }, 60_000);
 });
