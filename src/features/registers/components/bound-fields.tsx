@@ -55,24 +55,13 @@ export function TextField({ name, label, unit, hint, isOptional, className, type
   );
 }
 
-export function LongTextField({ name, label, hint, isOptional, className = 'sm:col-span-2 lg:col-span-3' }: Bound) {
+export function LongTextField({ name, label, hint, isOptional, showsEmpty = false, className = 'sm:col-span-2 lg:col-span-3' }: Bound & { showsEmpty?: boolean }) {
   const { attach, value: stored, set, leave } = useBound(name);
   const error = useMessage(name);
-  if (!useIsWriting()) return stored ? <Reading label={label} className={`max-w-[75ch] ${className}`}>{String(stored)}</Reading> : null;
+  if (!useIsWriting()) return stored || showsEmpty ? <Reading label={label} className={`max-w-[75ch] ${className}`}>{String(stored ?? '')}</Reading> : null;
   return (
     <Field label={label} hint={hint} error={error} isOptional={isOptional ?? false} className={className}>
       <TextArea name={name} ref={attach} value={String(stored ?? '')} rows={2} onBlur={leave} onChange={set} />
-    </Field>
-  );
-}
-
-export function DayField({ name, label, hint }: Bound) {
-  const { attach, value: stored, set, leave } = useBound(name);
-  const error = useMessage(name);
-  if (!useIsWriting()) return <Reading label={label}>{(stored as string | null) ?? 'never'}</Reading>;
-  return (
-    <Field label={label} hint={hint} error={error} isOptional>
-      <TextInput name={name} ref={attach} type="date" onBlur={leave} value={(stored as string | null) ?? ''} onChange={(event) => set(event.target.value === '' ? null : event.target.value)} />
     </Field>
   );
 }

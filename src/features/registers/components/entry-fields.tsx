@@ -1,5 +1,6 @@
 import type { RegisterName } from '../../../../shared/schemas/registers';
-import { DayField, FieldGrid, TextField } from './bound-fields';
+import { FieldGrid, TextField } from './bound-fields';
+import { DayField } from './day-field';
 import { useIsWriting } from './entry-mode';
 import { ReceptorFields } from './receptor-fields';
 import { SourceFields } from './source-fields';

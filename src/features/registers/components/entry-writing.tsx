@@ -5,12 +5,13 @@ import { FormProvider, useForm, type FieldValues, type Resolver } from 'react-ho
 import { registerWriteSchema, type RegisterItem, type RegisterName } from '../../../../shared/schemas/registers';
 import { Button } from '../../../components/button';
 import { Notice } from '../../../components/notice';
+import { Section } from '../../../components/page';
 import { ApiError } from '../../../lib/api-client';
 import { placeErrors } from '../../../lib/form-errors';
 import { registerItemQuery, useSaveEntry, type EntryBody } from '../api';
 import type { EntryValues } from '../model/empty-entry';
 import { pathsOf } from '../model/form-errors';
-import { TextField } from './bound-fields';
+import { FieldGrid, TextField } from './bound-fields';
 import { ConflictPanel } from './conflict-panel';
 import { EntryFields } from './entry-fields';
 import { EntryModeContext } from './entry-mode';
@@ -55,8 +56,12 @@ export function EntryWriting({ register, start, current, initial, onSaved, onLea
           {refusal && <Notice tone="bad" className="mt-6" title="This could not be saved">{refusal}</Notice>}
           <ErrorSummary />
           <EntryFields register={register} isNew={start === null} />
-          <div className="sticky bottom-0 z-10 mt-8 flex flex-wrap items-end gap-3 border-t border-ink bg-paper py-4">
-            <TextField name="reason" label="Why" hint="Kept in the history" isOptional className="min-w-56 flex-1" />
+          <Section title="Why" note="kept in the history">
+            <FieldGrid>
+              <TextField name="reason" label={start ? 'Why it changes' : 'Why it is added'} isOptional className="sm:col-span-2 lg:col-span-3" />
+            </FieldGrid>
+          </Section>
+          <div className="sticky bottom-0 z-10 mt-8 flex flex-wrap items-center gap-3 border-t border-ink bg-paper py-3">
             <Button type="submit" kind="primary" isBusy={save.isPending} disabled={hasConflict}>{start ? 'Save changes' : 'Save entry'}</Button>
             <Button onClick={onLeave}>Leave without saving</Button>
           </div>

@@ -22,7 +22,6 @@ export function HistoryPanel({ register, id, shownVersion }: { register: Registe
             key={entry.version}
             lead={<TimeText iso={entry.at} offset={offset} />}
             leadWidth="wide"
-            isSelected={entry.version === shownVersion}
             trail={entry.version === shownVersion ? <span className="text-ink2">shown above</span> : <Link to={`?version=${entry.version}`}>Read version {entry.version}</Link>}
           >
             <p className="font-semibold">

@@ -1,4 +1,4 @@
-import { useMemo } from 'react';
+import { useMemo, type ReactNode } from 'react';
 import { useFormContext } from 'react-hook-form';
 import type { LonLat } from '../../../../shared/schemas/basics';
 import { Section } from '../../../components/page';
@@ -8,6 +8,7 @@ import { CheckField, FieldGrid, LongTextField, NumberField, SelectField, useValu
 import { CurrentFields } from './current-fields';
 import { EntryMap } from './entry-map';
 import { RowsTextField } from './rows-text-field';
+import { NotesSection } from './notes-section';
 
 const mixings = [
   { value: 'okubo', label: 'Growing with the age of the cloud, after Okubo 1971' },
@@ -22,7 +23,7 @@ const noReaches: never[] = [];
 const ringWords = (rings: LonLat[][]): string =>
   rings.length === 0 ? 'not drawn' : `${rings[0]!.length} positions${rings.length > 1 ? `, ${rings.length - 1} ${rings.length === 2 ? 'island' : 'islands'}` : ''}`;
 
-export function OpenWaterFields() {
+export function OpenWaterFields({ kindField }: { kindField: ReactNode }) {
   const rings = useValue<LonLat[][] | undefined>('data.area');
   const drawable = useMemo(() => (rings ?? []).filter(isDrawable), [rings]);
   return (
@@ -30,6 +31,7 @@ export function OpenWaterFields() {
       <Section title="Outline and depth">
         <div className="grid gap-x-8 gap-y-4 pt-4 lg:grid-cols-2">
           <FieldGrid className="content-start pt-0! lg:grid-cols-2!">
+            {kindField}
             <NumberField name="data.depthM" label="Mean depth" unit="m" range="Above 0, at most 12,000." />
             <NumberField name="data.mixingDepthM" label="Mixing depth" unit="m" hint="Over which a substance is taken as mixed." range="Above 0, at most the mean depth." />
             <RowsTextField<LonLat[][]>
@@ -47,11 +49,7 @@ export function OpenWaterFields() {
       <Section title="Mixing">
         <MixingFields />
       </Section>
-      <Section title="Notes">
-        <FieldGrid>
-          <LongTextField name="data.note" label="Note" isOptional />
-        </FieldGrid>
-      </Section>
+      <NotesSection />
     </>
   );
 }

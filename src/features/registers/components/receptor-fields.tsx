@@ -4,12 +4,13 @@ import { Section } from '../../../components/page';
 import { registerChoicesQuery } from '../api';
 import { choicesOf, kindWords } from '../model/register-words';
 import { readFigures, writeFigures } from '../model/text-rows';
-import { FieldGrid, LongTextField, NumberField, SelectField } from './bound-fields';
+import { FieldGrid, NumberField, SelectField } from './bound-fields';
 import { ContactFields } from './contact-fields';
 import { PlaceFields } from './place-fields';
 import { RowsEditor } from './rows-editor';
 import { RowsTextField } from './rows-text-field';
 import { unitChoices } from './substance-fields';
+import { NotesSection } from './notes-section';
 
 export const useSubstanceChoices = () => {
   const { data = [] } = useQuery(registerChoicesQuery('substances'));
@@ -37,20 +38,16 @@ export function ReceptorFields() {
           empty="No action values. Edit the entry to add them: without one, a forecast shows concentrations here but no arrival."
           newRow={() => ({ substanceId: '', value: null, unit: 'ug/l', basis: '', averagingMinutes: 0, source: '' })}
           columns={[
-            { key: 'substanceId', label: 'Substance', kind: 'choice', choices: substances, width: 'min-w-52' },
+            { key: 'substanceId', label: 'Substance', kind: 'choice', choices: substances, width: 'min-w-52', isWide: true },
             { key: 'value', label: 'Value', kind: 'number', width: 'min-w-28' },
             { key: 'unit', label: 'Unit', kind: 'choice', choices: unitChoices, width: 'min-w-36' },
             { key: 'basis', label: 'Basis', kind: 'text', width: 'min-w-28' },
-            { key: 'averagingMinutes', label: 'Averaged over', unit: 'min', kind: 'number', width: 'min-w-28' },
-            { key: 'source', label: 'Source', kind: 'text', width: 'min-w-56' },
+            { key: 'averagingMinutes', label: 'Averaged over', unit: 'min', kind: 'number', width: 'min-w-28', zeroWords: 'momentary' },
+            { key: 'source', label: 'Source', kind: 'text', width: 'min-w-56', isWide: true },
           ]}
         />
       </Section>
-      <Section title="Notes">
-        <FieldGrid>
-          <LongTextField name="data.note" label="Note" isOptional />
-        </FieldGrid>
-      </Section>
+      <NotesSection />
     </>
   );
 }

@@ -1,4 +1,4 @@
-import { useMemo, useState } from 'react';
+import { useMemo, useState, type ReactNode } from 'react';
 import { useFieldArray, useFormContext } from 'react-hook-form';
 import type { Reach } from '../../../../shared/schemas/estimate';
 import { Button } from '../../../components/button';
@@ -8,20 +8,21 @@ import { emptyFlow, emptyReach } from '../model/empty-entry';
 import { errorsUnder, ownMessageAt } from '../model/form-errors';
 import { boundsOf, isDrawable } from '../model/place';
 import { readNames, writeNames } from '../model/text-rows';
-import { FieldGrid, LongTextField, TextField, useValue } from './bound-fields';
+import { FieldGrid, TextField, useValue } from './bound-fields';
 import { EntryMap } from './entry-map';
 import { useIsWriting } from './entry-mode';
 import { ReachFields } from './reach-fields';
 import { ReachTable } from './reach-table';
 import { RowsTextField } from './rows-text-field';
+import { NotesSection } from './notes-section';
 
-/** Marks a reach with a row for each flow that is named for the river. */
+/** A reach with a row for each flow that is named for the river. */
 const withFlows = (reach: Record<string, unknown>, flowNames: readonly string[]): Record<string, unknown> => {
   const rows = (reach.hydraulics as { flowName: string }[] | undefined) ?? [];
   return { ...reach, hydraulics: [...rows, ...flowNames.filter((name) => !rows.some((row) => row.flowName === name)).map(emptyFlow)] };
 };
 
-export function RiverFields() {
+export function RiverFields({ kindField }: { kindField: ReactNode }) {
   const { control, formState } = useFormContext();
   const isWriting = useIsWriting();
   const { fields, append, remove } = useFieldArray({ control, name: 'data.reaches', keyName: 'rowKey' });
@@ -45,7 +46,8 @@ export function RiverFields() {
     <>
       <Section title="River">
         <FieldGrid>
-          <TextField name="data.chainageOrigin" label="Chainage counts from" hint="Where km 0 is and which way it rises" className="sm:col-span-2" isOptional />
+          {kindField}
+          <TextField name="data.chainageOrigin" label="Chainage counts from" hint="Where km 0 is and which way it rises" className="lg:col-span-2" isOptional />
           <RowsTextField name="data.flowNames" label="Named flows" hint="The usual one first, with a comma between them. Every reach needs a row for each." isLine read={readNames} write={writeNames} summary={writeNames} />
         </FieldGrid>
         <div className="pt-4">
@@ -67,11 +69,7 @@ export function RiverFields() {
           } : undefined}
         />
       )}
-      <Section title="Notes">
-        <FieldGrid>
-          <LongTextField name="data.note" label="Note" isOptional />
-        </FieldGrid>
-      </Section>
+      <NotesSection />
     </>
   );
 }

@@ -17,6 +17,10 @@ export type RowColumn = {
   choices?: readonly Choice[];
   /** Width of the column while writing. */
   width?: string;
+  /** On a phone it takes the whole line. */
+  isWide?: boolean;
+  /** Said for 0 while reading. */
+  zeroWords?: string;
 };
 
 type Row = Record<string, unknown>;
@@ -44,7 +48,7 @@ const headWords = ({ label, unit }: RowColumn) => (unit ? `${label}, ${unit}` : 
 
 function textOf(value: unknown, column: RowColumn): string {
   if (value === null || value === undefined || value === '') return '';
-  if (column.kind === 'number') return formatEntered(Number(value));
+  if (column.kind === 'number') return value === 0 && column.zeroWords ? column.zeroWords : formatEntered(Number(value));
   return column.choices?.find((choice) => choice.value === value)?.label ?? String(value);
 }
 
@@ -102,7 +106,7 @@ function WritingRows({ name, caption, columns, newRow, addLabel, rowWord, most, 
           {fields.map((field, i) => (
             <tr key={field.rowKey} className="border-b border-rule align-top max-sm:grid max-sm:grid-cols-2 max-sm:gap-x-3 max-sm:gap-y-2 max-sm:py-3">
               {columns.map((column) => (
-                <td key={column.key} className={`py-2 pr-3 max-sm:p-0 ${column.kind === 'text' ? 'max-sm:col-span-2' : ''}`}>
+                <td key={column.key} className={`py-2 pr-3 max-sm:p-0 ${column.isWide ? 'max-sm:col-span-2' : ''}`}>
                   <Cell name={`${name}.${i}.${column.key}`} column={column} rowLabel={`${rowWord} ${i + 1}`} />
                 </td>
               ))}

@@ -5,6 +5,7 @@ import { ContactFields } from './contact-fields';
 import { PlaceFields } from './place-fields';
 import { useSubstanceChoices } from './receptor-fields';
 import { RowsEditor } from './rows-editor';
+import { NotesSection } from './notes-section';
 
 const kinds = choicesOf(kindWords, ['site', 'tank', 'bridge', 'outfall', 'berth', 'pipeline', 'store', 'other']);
 
@@ -16,7 +17,7 @@ export function SourceFields() {
         <FieldGrid>
           <SelectField name="data.kind" label="Kind" choices={kinds} />
           <TextField name="data.operator" label="Operator" isOptional />
-          <LongTextField name="data.drainPath" label="Way to the water" hint="Drains, ditches, interceptors, valves" isOptional />
+          <LongTextField name="data.drainPath" label="Way to the water" hint="Drains, ditches, interceptors, valves" isOptional showsEmpty />
         </FieldGrid>
       </Section>
       <ContactFields />
@@ -27,17 +28,13 @@ export function SourceFields() {
           empty="No holdings. Edit the entry to add each substance with the largest quantity that can credibly run out."
           newRow={() => ({ substanceId: '', largestCredible: null, strengthNote: '' })}
           columns={[
-            { key: 'substanceId', label: 'Substance', kind: 'choice', choices: substances, width: 'min-w-52' },
+            { key: 'substanceId', label: 'Substance', kind: 'choice', choices: substances, width: 'min-w-52', isWide: true },
             { key: 'largestCredible', label: 'Largest credible', unit: 'kg, or organisms where counted', kind: 'number', width: 'min-w-40' },
-            { key: 'strengthNote', label: 'Strength', kind: 'text', width: 'min-w-56' },
+            { key: 'strengthNote', label: 'Strength', kind: 'text', width: 'min-w-56', isWide: true },
           ]}
         />
       </Section>
-      <Section title="Notes">
-        <FieldGrid>
-          <LongTextField name="data.note" label="Note" isOptional />
-        </FieldGrid>
-      </Section>
+      <NotesSection />
     </>
   );
 }

@@ -11,6 +11,7 @@ import { FieldGrid, LongTextField, NumberField, Reading, SelectField, TextField,
 import { useIsWriting } from './entry-mode';
 import { RowsEditor } from './rows-editor';
 import { RowsTextField } from './rows-text-field';
+import { NotesSection } from './notes-section';
 
 export const unitChoices = [
   { value: 'ug/l', label: 'µg/l' },
@@ -60,7 +61,7 @@ export function SubstanceFields() {
       </Section>
       <Section title="Hazards to people">
         <FieldGrid>
-          <LongTextField name="data.hazards" label="Hazards" hint="What crews must know before they go near: by skin, by vapour, with what it reacts" isOptional />
+          <LongTextField name="data.hazards" label="Hazards" hint="What crews must know before they go near: by skin, by vapour, with what it reacts" isOptional showsEmpty />
         </FieldGrid>
       </Section>
       <Section title="Published values" note="each with its source">
@@ -69,20 +70,16 @@ export function SubstanceFields() {
           empty="No published values. Edit the entry to add the ones you are asked about, each with its source."
           newRow={() => ({ use: 'drinking', value: null, unit, basis: '', averaging: '', source: '' })}
           columns={[
-            { key: 'use', label: 'For', kind: 'choice', choices: choicesOf(useWords, Object.keys(useWords)), width: 'min-w-36' },
+            { key: 'use', label: 'For', kind: 'choice', choices: choicesOf(useWords, Object.keys(useWords)), width: 'min-w-36', isWide: true },
             { key: 'value', label: 'Value', kind: 'number', width: 'min-w-28' },
             { key: 'unit', label: 'Unit', kind: 'choice', choices: unitChoices, width: 'min-w-36' },
             { key: 'basis', label: 'Basis', kind: 'text', width: 'min-w-28' },
             { key: 'averaging', label: 'Averaging', kind: 'text', width: 'min-w-28' },
-            { key: 'source', label: 'Source', kind: 'text', width: 'min-w-56' },
+            { key: 'source', label: 'Source', kind: 'text', width: 'min-w-56', isWide: true },
           ]}
         />
       </Section>
-      <Section title="Notes">
-        <FieldGrid>
-          <LongTextField name="data.note" label="Note" isOptional />
-        </FieldGrid>
-      </Section>
+      <NotesSection />
     </>
   );
 }

@@ -1,8 +1,7 @@
 import { useFormContext } from 'react-hook-form';
-import { Section } from '../../../components/page';
 import { emptyOpenWater, emptyRiver } from '../model/empty-entry';
 import { choicesOf, kindWords } from '../model/register-words';
-import { FieldGrid, SelectField, useValue } from './bound-fields';
+import { SelectField, useValue } from './bound-fields';
 import { OpenWaterFields } from './open-water-fields';
 import { RiverFields } from './river-fields';
 
@@ -18,14 +17,6 @@ export function WaterFields({ isNew }: { isNew: boolean }) {
   };
   // A river has reaches, an open water an outline: an entry in use keeps to what it is.
   const kinds = isNew ? ['river', ...openKinds] : kind === 'river' ? ['river'] : openKinds;
-  return (
-    <>
-      <Section title="What it is">
-        <FieldGrid>
-          <SelectField name="data.kind" label="Kind" choices={choicesOf(kindWords, kinds)} onChosen={(next) => choose(next ?? 'river')} />
-        </FieldGrid>
-      </Section>
-      {kind === 'river' ? <RiverFields /> : <OpenWaterFields />}
-    </>
-  );
+  const kindField = <SelectField name="data.kind" label="Kind" choices={choicesOf(kindWords, kinds)} onChosen={(next) => choose(next ?? 'river')} />;
+  return kind === 'river' ? <RiverFields kindField={kindField} /> : <OpenWaterFields kindField={kindField} />;
 }

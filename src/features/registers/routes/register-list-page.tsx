@@ -90,7 +90,7 @@ function Entries({ register, list, wish, change, canAdd }: EntriesProps) {
 
 function EntryRow({ item, waters }: { item: RegisterItem; waters: readonly WaterItem[] }) {
   return (
-    <RuledRow to={`/${item.register}/${item.id}`} openLabel={`${item.code} ${item.name}`} lead={<span className="font-semibold text-ink">{item.code}</span>} trail={<CheckedText item={item} />}>
+    <RuledRow to={`/${item.register}/${item.id}`} openLabel={`${item.code} ${item.name}`} lead={<span className="font-semibold text-ink">{item.code}</span>} trail={<span className="sm:w-60 sm:text-right"><CheckedText item={item} /></span>}>
       <div className="grid gap-x-6 lg:grid-cols-[minmax(12rem,1fr)_minmax(0,2fr)]">
         <span>
           <span className="font-semibold">{item.name}</span>
