@@ -14,8 +14,8 @@ const tests = '\\.test\\.tsx?$';
 export const importRules: IForbiddenRuleType[] = [
   { name: 'no-cycles', severity: 'error', from: {}, to: { circular: true, viaOnly: { dependencyTypesNot: ['type-only'] } } },
   only('shared', 'shared imports zod and itself', '^shared/', '^shared/|^node_modules/zod/', tests),
-  only('solver', 'the solver imports shared and itself', '^server/solver/', '^server/solver/|^shared/', tests),
-  only('workers', 'workers import the solver, shared and the pool library', '^server/workers/', '^server/(workers|solver)/|^shared/|^node_modules/piscina/|^(node:)?(worker_threads|url|path)$', tests),
+  only('solver', 'the solver imports shared and itself', '^server/solver/', '^server/solver/|^shared/', `${tests}|^server/solver/kernels/build\\.mjs$`),
+  only('workers', 'workers import the solver, shared and the pool library', '^server/workers/', '^server/(workers|solver)/|^shared/|^node_modules/piscina/|^(node:)?(worker_threads|url|path|fs)$', tests),
   { name: 'http-knows-no-features', severity: 'error', from: { path: '^server/(http|mail|pdf)/', pathNot: tests }, to: { path: '^server/(features|solver)/' } },
   { name: 'db-and-jobs-know-no-features', severity: 'error', from: { path: '^server/(db|jobs)/', pathNot: `${tests}|^server/db/seed/` }, to: { path: '^server/(features|http|solver)/' } },
   { name: 'typeorm-stays-in-repositories', severity: 'error', from: { path: '^server/', pathNot: `^server/(db|jobs|mail)/|\\.repository\\.ts$|${tests}` }, to: { path: '^node_modules/typeorm/', dependencyTypesNot: ['type-only'] } },

@@ -1,0 +1,24 @@
+import { compileKernel, type CompiledKernel } from './host';
+import { PuffSum32, PuffSum64 } from './puffs';
+
+/** The modules that `build.mjs` makes, by name. */
+export const KERNEL_NAMES = ['puffs'] as const;
+export type KernelName = (typeof KERNEL_NAMES)[number];
+export type KernelBytes = Readonly<Record<KernelName, Uint8Array>>;
+
+/** Makers of kernel objects. Each object owns one private memory, made once and reused for every call. */
+export type Kernels = ReturnType<typeof createKernels>;
+
+/** Compiles the modules, each at its first use. The bytes are passed in: the solver reads no files. */
+export function createKernels(bytes: KernelBytes) {
+  const compiled = new Map<KernelName, CompiledKernel>();
+  const kernel = (name: KernelName): CompiledKernel => {
+    const known = compiled.get(name) ?? compileKernel(bytes[name]);
+    compiled.set(name, known);
+    return known;
+  };
+  return {
+    puffSum64: (nx: number, ny: number, maxPuffs: number) => new PuffSum64(kernel('puffs'), nx, ny, maxPuffs),
+    puffSum32: (nx: number, ny: number, maxPuffs: number, kappa?: number) => new PuffSum32(kernel('puffs'), nx, ny, maxPuffs, kappa),
+  };
+}

@@ -1,0 +1,5 @@
+import type { MakeCase } from '../harness';
+import { puffCases } from './puffs';
+
+/** Every case by name, in the order they are run. */
+export const cases: Record<string, MakeCase> = { ...puffCases };
