@@ -49,9 +49,17 @@ const places: RouteObject[] = [
   { path: 'incidents/:incidentId', ...page(() => import('../features/incidents/routes/incident-page'), 'IncidentPage') },
   { path: 'scenarios/:scenarioId', handle: { isFullBleed: true }, ...page(() => import('../features/chart/routes/chart-page'), 'ChartPage') },
   ...registerNames.flatMap(registerPlaces),
+  { path: 'office/people', ...page(() => import('../features/office/routes/people-page'), 'PeoplePage') },
+  { path: 'office/outbox', ...page(() => import('../features/office/routes/outbox-page'), 'OutboxPage') },
+  { path: 'office/audit', ...page(() => import('../features/office/routes/audit-page'), 'AuditPage') },
+  { path: 'account', ...page(() => import('../features/account/routes/account-page'), 'AccountPage') },
 ];
 
-const visitorPages: RouteObject[] = [];
+const visitorPages: RouteObject[] = [
+  { path: 'sign-in', ...page(() => import('../features/account/routes/sign-in-page'), 'SignInPage') },
+  { path: 'forgotten-password', ...page(() => import('../features/account/routes/forgotten-password-page'), 'ForgottenPasswordPage') },
+  { path: 'set-password/:token', ...page(() => import('../features/account/routes/set-password-page'), 'SetPasswordPage') },
+];
 
 export const router = createBrowserRouter([
   {
