@@ -48,6 +48,7 @@ export function ArrivalTable({ rows, clock, measure, selectedId, onSelect }: { r
         {
           key: 'receptor',
           header: 'Receptor',
+          className: 'min-w-52',
           cell: (row) => (
             <span className="inline-flex items-center gap-2">
               <ReceptorPlate kind={row.receptor.kind} number={row.number} state={plateStateOf(row.answer ?? undefined)} size={24} />
@@ -59,12 +60,12 @@ export function ArrivalTable({ rows, clock, measure, selectedId, onSelect }: { r
         { key: 'earliest', header: 'Earliest arrival', cell: (row) => <strong className="font-semibold"><At at={words(row)?.earliest ?? null} /></strong>, sortValue: (row) => (row.answer && decidingAnswer(row.answer) ? earliestS(decidingAnswer(row.answer)!) : null) },
         { key: 'likely', header: 'Likely', cell: (row) => <At at={words(row)?.likely ?? null} /> },
         { key: 'latest', header: 'Latest', cell: (row) => <At at={words(row)?.latest ?? null} /> },
-        { key: 'peak', header: 'Peak', cell: (row) => (row.answer ? sayRange(row.answer.peak, measure) : '–'), sortValue: (row) => row.answer?.peak.likely ?? null },
+        { key: 'peak', header: 'Peak', className: 'min-w-36', cell: (row) => (row.answer ? sayRange(row.answer.peak, measure) : '–'), sortValue: (row) => row.answer?.peak.likely ?? null },
         { key: 'peakAt', header: 'Peak at', cell: (row) => <At at={writeTime(clock, row.answer?.peakS ?? null, 'early')} /> },
         { key: 'end', header: 'End', cell: (row) => (words(row)?.endOpen ? 'beyond the estimate' : <At at={words(row)?.end ?? null} />) },
-        { key: 'above', header: 'Time above', cell: (row) => words(row)?.timeAbove ?? '–' },
+        { key: 'above', header: 'Time above', className: 'min-w-24', cell: (row) => words(row)?.timeAbove ?? '–' },
         { key: 'dose', header: 'Dose', cell: (row) => sayDose(row.answer?.dose.high ?? row.answer?.dose.likely ?? null, measure) },
-        { key: 'action', header: 'Action value', cell: value },
+        { key: 'action', header: 'Action value', className: 'min-w-44', cell: value },
       ]}
     />
   );

@@ -12,7 +12,7 @@ import { PageEdge, usePageWidth } from './page-width';
 import { PrintedResults } from './printed-results';
 import { ResultDrawer, type DrawerTab } from './result-drawer';
 import { RuledPage } from './ruled-page';
-import { sheetClass, SheetHandle, type SheetHeight } from './sheet-handle';
+import { sheetClass, SheetHandle, stageClass, type SheetHeight } from './sheet-handle';
 import { TimeRail } from './time-rail';
 
 type Props = {
@@ -57,7 +57,7 @@ export function ChartLayout({ head, forecast, document, isBehind, missing, note,
   const summary = missing && !forecast ? missing : first ? `${rows[0]!.receptor.code} ${first}` : `${rows.length} receptors`;
 
   return (
-    <div className="flex h-full flex-col print:block print:h-auto">
+    <div className="isolate flex h-full flex-col print:block print:h-auto">
       {head}
       <div className="relative grid min-h-0 flex-1 grid-cols-[auto_minmax(0,1fr)] grid-rows-[minmax(0,1fr)_auto_auto] [grid-template-areas:'page_stage''page_rail''page_drawer'] max-md:grid-cols-1 max-md:[grid-template-areas:'stage''rail''drawer'] print:block">
         <aside
@@ -71,7 +71,7 @@ export function ChartLayout({ head, forecast, document, isBehind, missing, note,
           </div>
           <PageEdge width={width} onWidth={set} />
         </aside>
-        <MapStage forecast={forecast} document={document} isBehind={isBehind} timeS={player.timeS} clock={clock} measure={measure} rows={rows} selectedId={selectedId} onSelect={select} missing={missing} />
+        <MapStage forecast={forecast} document={document} isBehind={isBehind} timeS={player.timeS} clock={clock} measure={measure} rows={rows} selectedId={selectedId} onSelect={select} missing={missing} className={stageClass[sheet]} />
         <div className={classNames('[grid-area:rail]', (isBehind || missing !== null) && forecast && 'opacity-60')}>
           {!Number.isNaN(clock.startMs) && (
             <TimeRail player={player} startMs={clock.startMs} horizonS={shownHorizonS} offset={offset} place={draft.releases[0]?.position ?? null} rows={rows} selectedId={selectedId} onSelect={select} solvedShare={solvedShare} note={note} />

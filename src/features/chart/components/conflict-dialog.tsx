@@ -6,15 +6,15 @@ import type { DraftState } from '../api';
 import type { Draft } from '../model/draft';
 import { draftDifferences } from '../model/draft-differences';
 
-type Props = { theirs: DraftState; theirDraft: Draft; myDraft: Draft; offset: string; isBusy: boolean; error: string | null; onTake: () => void; onCopy: () => void };
+type Props = { theirs: DraftState; theirDraft: Draft; myDraft: Draft; offset: string; isBusy: boolean; error: string | null; onTake: () => void; onCopy: () => void; onPutOff: () => void };
 
 /** Two people have written: both drafts stay, one here, one as a copy if wanted. */
-export function ConflictDialog({ theirs, theirDraft, myDraft, offset, isBusy, error, onTake, onCopy }: Props) {
+export function ConflictDialog({ theirs, theirDraft, myDraft, offset, isBusy, error, onTake, onCopy, onPutOff }: Props) {
   const differences = draftDifferences(myDraft, theirDraft);
   return (
     <Dialog
       isOpen
-      onClose={() => undefined}
+      onClose={onPutOff}
       title={`${theirs.draftSavedBy} has changed this scenario`}
       says={`Their draft was kept ${formatClockOffset(instantMs(theirs.draftSavedAt), offset)}. Yours is not lost: it is kept in this browser until you choose.`}
       actions={

@@ -45,6 +45,7 @@ export function EditWorkspace({ scenario, registers, nowIso, from }: Props) {
   const saved = useSavedRevision(scenario, built.document);
   const [selectedReleaseId, selectRelease] = useState<string | null>(null);
   const [placing, setPlacing] = useState<ChartWork['placing']>(null);
+  const [isPutOff, setPutOff] = useState(false);
   const [copying, setCopying] = useState<{ isBusy: boolean; error: string | null }>({ isBusy: false, error: null });
 
   // Somebody else's draft, while nothing here is unsent, is taken over.
@@ -103,6 +104,7 @@ export function EditWorkspace({ scenario, registers, nowIso, from }: Props) {
             state={<SavedState state={state} offset={offset} />}
             actions={
               <>
+                {state.phase === 'conflict' && <Button onClick={() => setPutOff(false)}>Compare and choose</Button>}
                 <Button kind="quiet" icon="undo" aria-label="Undo" disabled={!handle.canUndo} onClick={undo} />
                 <Button kind="quiet" icon="redo" aria-label="Redo" disabled={!handle.canRedo} onClick={redo} />
                 <Button kind="quiet" icon="print" aria-label="Print" className="max-sm:hidden" onClick={() => window.print()} />
@@ -122,8 +124,8 @@ export function EditWorkspace({ scenario, registers, nowIso, from }: Props) {
         note={saveRevision.error ? errorText(saveRevision.error) : noteOf(built.document !== null, saved)}
         horizonS={draft.horizonS ?? automaticHorizonS(draft)}
       />
-      {state.phase === 'conflict' && (
-        <ConflictDialog theirs={state.theirs} theirDraft={readDraft(state.theirs.draft, nowIso)} myDraft={draft} offset={offset} isBusy={copying.isBusy} error={copying.error} onTake={takeTheirs} onCopy={() => void keepCopy()} />
+      {state.phase === 'conflict' && !isPutOff && (
+        <ConflictDialog theirs={state.theirs} theirDraft={readDraft(state.theirs.draft, nowIso)} myDraft={draft} offset={offset} isBusy={copying.isBusy} error={copying.error} onTake={takeTheirs} onCopy={() => void keepCopy()} onPutOff={() => setPutOff(true)} />
       )}
     </ChartContext.Provider>
   );

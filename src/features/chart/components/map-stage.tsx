@@ -7,6 +7,7 @@ import type { Measure } from '../../../../shared/format';
 import type { LonLat } from '../../../../shared/schemas/basics';
 import type { EstimateDocument, EstimateWater } from '../../../../shared/schemas/estimate';
 import { Button } from '../../../components/button';
+import { classNames } from '../../../lib/class-names';
 import { useTheme } from '../../../lib/theme';
 import { DistrictMap } from '../../../map/district-map';
 import { EnvelopeLayer } from '../../../map/envelope-layer';
@@ -37,10 +38,11 @@ type Props = {
   selectedId: string | null;
   onSelect: (id: string | null) => void;
   missing: string | null;
+  className: string;
 };
 
 /** The map: river and receptors from the draft, the cloud from the forecast, releases to place and drag. */
-export function MapStage({ forecast, document, isBehind, timeS, clock, measure, rows, selectedId, onSelect, missing }: Props) {
+export function MapStage({ forecast, document, isBehind, timeS, clock, measure, rows, selectedId, onSelect, missing, className }: Props) {
   const { draft, change, registers, isReadOnly, placing, setPlacing, selectRelease, selectedReleaseId } = useChart();
   const { theme } = useTheme();
   const [probe, setProbe] = useState<LonLat | null>(null);
@@ -81,9 +83,10 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
   const answers = useMemo(() => rows.flatMap((row) => row.answer ?? []), [rows]);
 
   return (
-    <div className="relative h-full min-h-0 overflow-hidden [grid-area:stage] print:h-[105mm]">
+    <div className={classNames('relative h-full min-h-0 overflow-hidden [grid-area:stage] print:h-[105mm]', className)}>
       <DistrictMap theme={theme} label="Map of the district" onClick={click} fitTo={fitTo}>
         <ScaleReport onScale={setMetresPerPixel} />
+        <KeepInView position={receptors.find((receptor) => receptor.id === selectedId)?.position ?? null} />
         <RiverLayer reaches={reaches} />
         {water && forecast && <CloudLayers forecast={forecast} frame={frame} water={water} theme={theme} measure={measure} showsEnvelope={showsEnvelope} />}
         <ReceptorLayer receptors={receptors} answers={answers} numbers={numbers} selectedId={selectedId} onSelect={onSelect} />
@@ -134,6 +137,16 @@ function CloudLayers({ forecast, frame, water, theme, measure, showsEnvelope }: 
 function ScaleReport({ onScale }: { onScale: (metresPerPixel: number) => void }) {
   const map = useMapEvents({ zoomend: () => onScale(scaleOf(map)) });
   useEffect(() => onScale(scaleOf(map)), [map, onScale]);
+  return null;
+}
+
+/** Keeps the middle of the map in the middle when the drawer opens, and the chosen receptor in sight. */
+function KeepInView({ position }: { position: LonLat | null }) {
+  const map = useMapEvents({ resize: ({ oldSize, newSize }) => map.panBy(oldSize.subtract(newSize).divideBy(2), { animate: false }) });
+  const [lon, lat] = position ?? [null, null];
+  useEffect(() => {
+    if (lon !== null && lat !== null) map.panInside([lat, lon], { padding: [60, 60], animate: false });
+  }, [map, lon, lat]);
   return null;
 }
 

@@ -2,6 +2,8 @@ import { Button } from '../../../components/button';
 
 export const sheetHeights = ['low', 'half', 'full'] as const;
 export type SheetHeight = (typeof sheetHeights)[number];
+/** The map keeps to what the sheet leaves free, so that its middle is in sight. */
+export const stageClass: Record<SheetHeight, string> = { low: 'max-md:h-[calc(100%-3rem)]', half: 'max-md:h-1/2', full: 'max-md:h-1/2' };
 export const sheetClass: Record<SheetHeight, string> = { low: 'max-md:h-12', half: 'max-md:h-1/2', full: 'max-md:h-full' };
 
 /** On a phone the page lies over the map at three heights. */

@@ -80,7 +80,7 @@ export function TimeRail({ player, startMs, horizonS, offset, place, rows, selec
           {solvedShare !== null && <rect x={xOf(horizonS * solvedShare)} y={0} width={xOf(horizonS) - xOf(horizonS * solvedShare)} height={axisY} className="fill-rule opacity-50" />}
           <line x1={SIDE_PX} x2={SIDE_PX + track} y1={axisY} y2={axisY} className="stroke-ink" />
           {ticks.map((tick) => (
-            <RailTick key={tick.atS} x={xOf(tick.atS)} axisY={axisY} day={tick.isMidnight || tick === ticks[0] ? formatDay(startMs + tick.atS * 1_000, offset) : ''} time={formatTimeOfDay(startMs + tick.atS * 1_000, offset)} elapsed={formatElapsed(tick.atS)} />
+            <RailTick key={tick.atS} x={xOf(tick.atS)} anchor={xOf(tick.atS) > width - 34 ? 'end' : xOf(tick.atS) < 34 ? 'start' : 'middle'} axisY={axisY} day={tick.isMidnight || tick === ticks[0] ? formatDay(startMs + tick.atS * 1_000, offset) : ''} time={formatTimeOfDay(startMs + tick.atS * 1_000, offset)} elapsed={formatElapsed(tick.atS)} />
           ))}
           <g transform={`translate(${xOf(player.timeS)} 0)`}>
             <line y1={0} y2={axisY} className="stroke-kingfisher" strokeWidth={2} />
@@ -93,14 +93,14 @@ export function TimeRail({ player, startMs, horizonS, offset, place, rows, selec
   );
 }
 
-function RailTick({ x, axisY, day, time, elapsed }: { x: number; axisY: number; day: string; time: string; elapsed: string }) {
+function RailTick({ x, anchor, axisY, day, time, elapsed }: { x: number; anchor: 'start' | 'middle' | 'end'; axisY: number; day: string; time: string; elapsed: string }) {
   return (
     <g transform={`translate(${x} ${axisY})`}>
       <line y2={day ? 8 : 5} className="stroke-ink" />
-      <text y={19} textAnchor="middle" className={`fill-ink text-note ${day ? 'font-semibold' : ''}`}>
+      <text y={19} textAnchor={anchor} className={`fill-ink text-note ${day ? 'font-semibold' : ''}`}>
         {day ? day : time}
       </text>
-      <text y={32} textAnchor="middle" className="fill-ink2 text-note">
+      <text y={32} textAnchor={anchor} className="fill-ink2 text-note">
         {day && time !== '00:00' ? time : elapsed}
       </text>
     </g>

@@ -1,5 +1,6 @@
 import { formatClock, formatConcentration, formatDuration, formatElapsed, formatTimeOfDay, roundArrival, type Measure } from '../../../../shared/format';
 import type { ActionAnswer, ReceptorAnswer } from '../../../../shared/schemas/estimate-result';
+import { displayUnitOf } from '../../../../shared/units';
 import { decidingAnswer, latestEndS } from './rail-lanes';
 
 export type Clock = { startMs: number; offset: string };
@@ -48,12 +49,15 @@ export const sayConcentration = (value: number | null, measure: Measure): string
   return `${text} ${unit}`;
 };
 
-/** "12 to 49 mg/l, likely 25 mg/l" */
+/** "11 to 42 mg/l, likely 21 mg/l": one unit, that of the largest. */
 export function sayRange({ low, likely, high }: { low: number | null; likely: number | null; high: number | null }, measure: Measure): string {
   if (likely === null) return 'no estimate';
   if (likely === 0 && (high ?? 0) === 0) return 'not reached in this estimate';
   if (low === null && high === null) return sayConcentration(likely, measure);
-  return `${sayConcentration(low ?? likely, measure)} to ${sayConcentration(high ?? likely, measure)}, likely ${sayConcentration(likely, measure)}`;
+  const largest = formatConcentration(high ?? likely, measure);
+  const inUnit = (value: number) => formatConcentration(value, measure, { unit: displayUnitOf(high ?? likely, measure) }).text;
+  if (largest.text.startsWith('below')) return `${largest.text} ${largest.unit}`;
+  return `${inUnit(low ?? likely)} to ${inUnit(high ?? likely)} ${largest.unit}, likely ${inUnit(likely)} ${largest.unit}`;
 }
 
 /** Dose as concentration times hours: "86 mg/l·h". */

@@ -113,7 +113,7 @@ describe('what is missing or wrong', () => {
 
   it('refuses a release on land and offers the nearest place on a river', () => {
     const outcome = placeRelease(start('2031-05-12T06:40:00-08:00'), [-116.79, -44.4], registers);
-    expect('refused' in outcome && outcome.refused).toMatch(/on land, \d+\.\d km from River Ollemar/);
+    expect('refused' in outcome && outcome.refused).toMatch(/on land or outside the registered waters, \d+\.\d km from River Ollemar/);
     expect('refused' in outcome && outcome.nearest?.channel?.reachId).toBe('ol-upper');
   });
 

@@ -25,12 +25,12 @@ export function tableRows(series: Series, most: number): number[] {
   return [...new Set([...Array.from({ length: Math.ceil(n / step) }, (_, i) => i * step), peak, n - 1])].sort((a, b) => a - b);
 }
 
-/** Part of the time axis worth drawing: where anything rises above a thousandth of the peak or of the action value. */
+/** Part of the time axis worth drawing: where the curve is above a thousandth of its peak; all of it when there is next to nothing. */
 export function drawnSpan(series: Series, horizonS: number, actionValue: number | null): [number, number] {
   const upper = series.high ?? series.likely;
   const floor = Math.max(...upper, 0) * 1e-3;
   const from = upper.findIndex((value) => value > floor && floor > 0);
-  if (from === -1 || actionValue === null) return [0, horizonS];
+  if (from === -1 || actionValue === null || floor < actionValue * 1e-6) return [0, horizonS];
   const last = upper.length - 1 - [...upper].reverse().findIndex((value) => value > floor);
   const margin = Math.max(900, (series.timesS[last]! - series.timesS[from]!) * 0.08);
   return [Math.max(0, series.timesS[from]! - margin), Math.min(horizonS, series.timesS[last]! + margin)];

@@ -11,6 +11,9 @@ const REACH_OF_A_CLICK_M = 400;
 /** Within this share of the half width of the bankfull channel the release is taken as mid-channel. */
 const MID_SHARE = 1 / 3;
 
+/** A river place farther off is not offered: it can hardly be meant. */
+const FARTHEST_OFFER_KM = 10;
+
 export type Place = { water: WaterItem; position: LonLat; channel: ChannelPlace | null; words: string };
 export type PlaceAnswer = { place: Place } | { place: null; why: string; nearest: Place | null };
 
@@ -65,5 +68,10 @@ function notInWater(nearest: RiverHit | null, position: LonLat): PlaceAnswer {
   const where = `${position[1].toFixed(4)}, ${position[0].toFixed(4)}`;
   if (!nearest) return { place: null, nearest: null, why: `${where} is in no registered water: click in a water, or register this one first` };
   const offKm = (distanceM(position, nearest.place.position) / 1_000).toFixed(1);
-  return { place: null, nearest: nearest.place, why: `${where} is on land, ${offKm} km from ${nearest.place.water.name} at ${nearest.place.words}: click nearer, or use that place` };
+  const isNear = Number(offKm) <= FARTHEST_OFFER_KM;
+  return {
+    place: null,
+    nearest: isNear ? nearest.place : null,
+    why: `${where} is on land or outside the registered waters, ${offKm} km from ${nearest.place.water.name} at ${nearest.place.words}: click in a water${isNear ? ', or use that place' : ''}`,
+  };
 }
