@@ -1,4 +1,3 @@
-import type { LonLat } from '../../shared/schemas/basics';
 import type { EstimateWater, Reach } from '../../shared/schemas/estimate';
 import { metresPerPixelAt, metresPerWorldUnit, worldX, worldY } from './mercator';
 
@@ -90,16 +89,4 @@ export function reachWidthM(reach: Reach, water: Extract<EstimateWater, { kind: 
   const rows = reach.hydraulics;
   if (set !== undefined) return rows.reduce((best, row) => (Math.abs(row.dischargeM3s - set) < Math.abs(best.dischargeM3s - set) ? row : best)).widthM;
   return (rows.find((row) => row.flowName === water.flow.name) ?? rows[0]!).widthM;
-}
-
-/** Longitude and latitude limits of reaches or rings, for fitting the map. */
-export function boundsOf(positions: Iterable<readonly [number, number, ...number[]]>): [LonLat, LonLat] | null {
-  let [west, south, east, north] = [Infinity, Infinity, -Infinity, -Infinity];
-  for (const [lon, lat] of positions) {
-    west = Math.min(west, lon);
-    east = Math.max(east, lon);
-    south = Math.min(south, lat);
-    north = Math.max(north, lat);
-  }
-  return west <= east ? [[west, south], [east, north]] : null;
 }
