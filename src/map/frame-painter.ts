@@ -124,21 +124,25 @@ function strokeThin(context: CanvasRenderingContext2D, drawn: Drawn[], theme: Ma
 /** In rivers and strips narrower than these the heavy line of an action value would hide the bands it parts, px. */
 const NARROW_RIVER_PX = 60;
 const NARROW_STRIP_PX = 24;
+/** In a strip on open water this thin only a fine line leaves anything to see. */
+const THREAD_PX = 11;
 
 function strokeActions(context: CanvasRenderingContext2D, drawn: Drawn[], theme: MapTheme): void {
   context.lineJoin = 'round';
   context.lineCap = 'butt';
   for (const { level, lines, ribbon } of drawn) {
     if (!level.isActionValue || lines.ends.length === 0) continue;
-    const isNarrow = ribbon < NARROW_RIVER_PX || widthOf(lines) < NARROW_STRIP_PX;
+    const width = widthOf(lines);
+    const isThread = ribbon === Infinity && width < THREAD_PX;
+    const isNarrow = ribbon < NARROW_RIVER_PX || width < NARROW_STRIP_PX;
     context.beginPath();
     strokeLines(lines, context);
-    context.lineWidth = isNarrow ? 3 : 5;
+    context.lineWidth = isThread ? 2 : isNarrow ? 3 : 5;
     context.strokeStyle = mapInk[theme].paper;
-    context.globalAlpha = 0.75;
+    context.globalAlpha = isThread ? 0.4 : 0.75;
     context.stroke();
     context.globalAlpha = 1;
-    context.lineWidth = isNarrow ? 1.7 : 2.5;
+    context.lineWidth = isThread ? 1.1 : isNarrow ? 1.7 : 2.5;
     context.strokeStyle = mapInk[theme].ink;
     context.setLineDash(isNarrow ? [5, 3] : [8, 5]);
     context.stroke();
