@@ -39,7 +39,8 @@ export function EditWorkspace({ scenario, registers, nowIso, from }: Props) {
   const handle = useDraft(first.shown);
   const { draft, change, undo, redo } = handle;
   const { state, held, isDirty, adopt } = useDraftSave(scenario, draft, first.held, scenario.abilities.edit, isSaveWanted);
-  const built = useMemo(() => buildDocument(draft), [draft]);
+  const [inHand, setInHand] = useState<Draft | null>(null);
+  const built = useMemo(() => buildDocument(inHand ?? draft), [inHand, draft]);
   const live = useLiveEstimate(built.document);
   const saveRevision = useSaveRevision(scenario.id);
   const saved = useSavedRevision(scenario, built.document);
@@ -72,7 +73,7 @@ export function EditWorkspace({ scenario, registers, nowIso, from }: Props) {
   const isComposing = live.forecast === null;
   const errors = useMemo(() => [...built.errors.filter((error) => !(isComposing && isMissing(error))), ...(live.failure?.errors ?? [])], [built.errors, live.failure, isComposing]);
   const work = useMemo<ChartWork>(
-    () => ({ draft, change, registers, offset, errors, isReadOnly: !scenario.abilities.edit, selectedReleaseId, selectRelease, placing, setPlacing }),
+    () => ({ draft, change, registers, offset, errors, isReadOnly: !scenario.abilities.edit, selectedReleaseId, selectRelease, placing, setPlacing, setInHand }),
     [draft, change, registers, offset, errors, scenario.abilities.edit, selectedReleaseId, placing],
   );
   const missing = (built.errors[0] && sayError(built.errors[0])) ?? live.failure?.text ?? null;

@@ -21,7 +21,7 @@ import type { Clock } from '../model/arrival-words';
 import { formatTimeOfDay } from '../../../../shared/format';
 import { placeRelease } from '../model/draft-actions';
 import { frameIndexAt, type Forecast } from '../model/forecast';
-import type { Place } from '../model/place';
+import { NEAR_WATER_M, type Place } from '../model/place';
 import { boundsOf } from '../model/bounds';
 import { MapLegend } from './map-legend';
 import { ReadOut } from './read-out';
@@ -41,9 +41,13 @@ type Props = {
   className: string;
 };
 
+/** A click this near a drawn river means the river; a release in hand clings to it from farther off. */
+const CLICK_PX = 16;
+const DRAG_PX = 80;
+
 /** The map: river and receptors from the draft, the cloud from the forecast, releases to place and drag. */
 export function MapStage({ forecast, document, isBehind, timeS, clock, measure, rows, selectedId, onSelect, missing, className }: Props) {
-  const { draft, change, registers, isReadOnly, placing, setPlacing, selectRelease, selectedReleaseId } = useChart();
+  const { draft, change, registers, isReadOnly, placing, setPlacing, setInHand, selectRelease, selectedReleaseId } = useChart();
   const { theme } = useTheme();
   const [probe, setProbe] = useState<LonLat | null>(null);
   const [refused, setRefused] = useState<{ why: string; nearest: Place | null } | null>(null);
@@ -54,8 +58,9 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
   const frame = forecast && index !== null ? (forecast.frames[index] ?? null) : null;
   const isPlacing = !isReadOnly && (draft.releases.length === 0 || placing !== null);
 
-  const place = (position: LonLat, moveId: string | null): LonLat | null => {
-    const outcome = placeRelease(draft, position, registers, moveId);
+  const nearM = (px: number) => Math.max(NEAR_WATER_M, px * metresPerPixel);
+  const place = (position: LonLat, moveId: string | null, reachPx = CLICK_PX): LonLat | null => {
+    const outcome = placeRelease(draft, position, registers, moveId, nearM(reachPx));
     if (!('draft' in outcome)) {
       setRefused({ why: outcome.refused, nearest: outcome.nearest });
       return null;
@@ -65,6 +70,17 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
     setPlacing(null);
     setRefused(null);
     return outcome.draft.releases.find((release) => release.id === outcome.releaseId)?.position ?? null;
+  };
+  /** While in hand the ring follows the water and the forecast follows the ring; letting go changes the draft. */
+  const carry = (id: string, position: LonLat): LonLat | null => {
+    const outcome = placeRelease(draft, position, registers, id, nearM(DRAG_PX));
+    if (!('draft' in outcome)) return null;
+    setInHand(outcome.draft);
+    return outcome.draft.releases.find((release) => release.id === id)?.position ?? null;
+  };
+  const letGo = (id: string, position: LonLat): LonLat | null => {
+    setInHand(null);
+    return place(position, id, DRAG_PX);
   };
   const click = (position: LonLat) => {
     if (isPlacing) place(position, placing?.moveId ?? null);
@@ -90,7 +106,7 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
         <RiverLayer reaches={reaches} />
         {water && forecast && <CloudLayers forecast={forecast} frame={frame} water={water} theme={theme} measure={measure} showsEnvelope={showsEnvelope} />}
         <ReceptorLayer receptors={receptors} answers={answers} numbers={numbers} selectedId={selectedId} onSelect={onSelect} />
-        <ReleaseLayer releases={releases} selectedId={selectedReleaseId} onSelect={selectRelease} {...(isReadOnly ? {} : { onMove: (id: string, position: LonLat, ended: boolean) => dragTo(ended, draft, id, position, registers, place) })} />
+        <ReleaseLayer releases={releases} selectedId={selectedReleaseId} onSelect={selectRelease} {...(isReadOnly ? {} : { onMove: (id: string, position: LonLat, ended: boolean) => (ended ? letGo(id, position) : carry(id, position)) })} />
       </DistrictMap>
       {isPlacing && !refused && (
         <p role="status" className="pointer-events-none absolute top-3 left-1/2 z-[1001] w-max max-w-[70%] -translate-x-1/2 rounded-sm bg-sheet px-4 py-2 font-semibold shadow-float print:hidden">
@@ -107,7 +123,7 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
       {forecast && forecast.levels.length > 0 && <MapLegend levels={forecast.levels} measure={measure} theme={theme} showsEnvelope={showsEnvelope} onEnvelope={setShowsEnvelope} />}
       {probe && frame && water && <ReadOut position={probe} frame={frame} envelope={forecast?.envelope ?? null} water={water} ribbonM={THIN_RIBBON_PX * metresPerPixel} timeS={frame.head.timeS} clock={clock} measure={measure} onClose={() => setProbe(null)} />}
       {(missing ? forecast !== null || draft.releases.length > 0 : isBehind) && (
-        <p className="pointer-events-none absolute inset-x-0 bottom-0 z-[999] bg-sheet/85 px-4 py-1.5 text-center font-semibold print:hidden">
+        <p className={classNames('pointer-events-none absolute inset-x-0 bottom-0 z-[999] bg-sheet/85 px-4 py-1.5 text-center font-semibold print:hidden', !missing && 'transition-opacity delay-500 duration-150 starting:opacity-0')}>
           {!missing ? 'Solving the change' : forecast ? <><s className="font-normal text-ink2">Forecast of the last complete figures.</s> {missing}</> : `Next: ${missing.charAt(0).toLowerCase()}${missing.slice(1)}`}
         </p>
       )}
@@ -116,13 +132,6 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
 }
 
 const startOf = (timing: { kind: string; atS?: number | null; startS?: number | null; rows?: { atS: number | null }[] }): number => timing.atS ?? timing.startS ?? timing.rows?.[0]?.atS ?? 0;
-
-/** While in hand the ring follows the water without changing the draft; let go, the draft changes. */
-function dragTo(ended: boolean, draft: Parameters<typeof placeRelease>[0], id: string, position: LonLat, registers: Parameters<typeof placeRelease>[2], place: (position: LonLat, id: string) => LonLat | null): LonLat | null {
-  if (ended) return place(position, id);
-  const outcome = placeRelease(draft, position, registers, id);
-  return 'draft' in outcome ? (outcome.draft.releases.find((release) => release.id === id)?.position ?? null) : null;
-}
 
 function CloudLayers({ forecast, frame, water, theme, measure, showsEnvelope }: { forecast: Forecast; frame: Forecast['frames'][number] | null; water: EstimateWater; theme: 'day' | 'night'; measure: Measure; showsEnvelope: boolean }) {
   return (

@@ -28,7 +28,9 @@ export function PrintedResults({ forecast, document, rows, clock, measure }: Pro
           ))}
         </ul>
       </section>
-      <ArrivalTable rows={rows} clock={clock} measure={measure} selectedId={null} onSelect={() => undefined} />
+      <div className="text-[8pt] [&_td]:pr-2 [&_th]:pr-2 [&_td_*]:whitespace-normal">
+        <ArrivalTable rows={rows} clock={clock} measure={measure} selectedId={null} isPrinted />
+      </div>
       <section>
         <h2 className="text-lead font-semibold">Checks</h2>
         <ChecksPanel checks={forecast.result?.checks ?? null} />

@@ -25,7 +25,7 @@ export function StoredWorkspace({ scenario, registers, document, revisionNumber,
   const [selectedReleaseId, selectRelease] = useState<string | null>(null);
   const draft = useMemo(() => readDraft(document, document.startAt), [document]);
   const work = useMemo<ChartWork>(
-    () => ({ draft, change: nothing, registers, offset: scenario.utcOffset, errors: [], isReadOnly: true, selectedReleaseId, selectRelease, placing: null, setPlacing: nothing }),
+    () => ({ draft, change: nothing, registers, offset: scenario.utcOffset, errors: [], isReadOnly: true, selectedReleaseId, selectRelease, placing: null, setPlacing: nothing, setInHand: nothing }),
     [draft, registers, scenario.utcOffset, selectedReleaseId],
   );
   const saved = scenario.revisions.find((revision) => revision.number === revisionNumber);

@@ -52,41 +52,41 @@ export function TimeRail({ player, startMs, horizonS, offset, place, rows, selec
   return (
     <section aria-label="Time" className="border-t border-rule bg-sheet print:break-inside-avoid">
       <RailControls player={player} startMs={startMs} offset={offset} note={note} />
-      <div
-        ref={ref}
-        role="slider"
-        tabIndex={0}
-        aria-label="Time shown on the map"
-        aria-valuemin={0}
-        aria-valuemax={Math.round(horizonS / 60)}
-        aria-valuenow={Math.round(player.timeS / 60)}
-        aria-valuetext={spoken}
-        className="relative cursor-pointer touch-none select-none"
-        onKeyDown={(event) => railKey(event, player, horizonS)}
-        onPointerDown={(event) => {
-          if ((event.target as Element).closest('button')) return;
-          event.currentTarget.setPointerCapture(event.pointerId);
-          player.pause();
-          goToPointer(event);
-        }}
-        onPointerMove={(event) => {
-          if (event.currentTarget.hasPointerCapture(event.pointerId)) goToPointer(event);
-        }}
-      >
-        <svg width={width} height={height} aria-hidden="true" className="block">
-          {nights.map((night) => (
-            <rect key={night.fromS} x={xOf(night.fromS)} y={0} width={xOf(night.toS) - xOf(night.fromS)} height={axisY} className="fill-ink opacity-[0.09]" />
-          ))}
-          {solvedShare !== null && <rect x={xOf(horizonS * solvedShare)} y={0} width={xOf(horizonS) - xOf(horizonS * solvedShare)} height={axisY} className="fill-rule opacity-50" />}
-          <line x1={SIDE_PX} x2={SIDE_PX + track} y1={axisY} y2={axisY} className="stroke-ink" />
-          {ticks.map((tick) => (
-            <RailTick key={tick.atS} x={xOf(tick.atS)} anchor={xOf(tick.atS) > width - 34 ? 'end' : xOf(tick.atS) < 34 ? 'start' : 'middle'} axisY={axisY} day={tick.isMidnight || tick === ticks[0] ? formatDay(startMs + tick.atS * 1_000, offset) : ''} time={formatTimeOfDay(startMs + tick.atS * 1_000, offset)} elapsed={formatElapsed(tick.atS)} />
-          ))}
-          <g transform={`translate(${xOf(player.timeS)} 0)`}>
-            <line y1={0} y2={axisY} className="stroke-kingfisher" strokeWidth={2} />
-            <path d={`M-7 ${axisY + 9}L0 ${axisY}L7 ${axisY + 9}Z`} className="fill-kingfisher" />
-          </g>
-        </svg>
+      <div ref={ref} className="relative">
+        <div
+          role="slider"
+          tabIndex={0}
+          aria-label="Time shown on the map"
+          aria-valuemin={0}
+          aria-valuemax={Math.round(horizonS / 60)}
+          aria-valuenow={Math.round(player.timeS / 60)}
+          aria-valuetext={spoken}
+          className="relative cursor-pointer touch-none select-none"
+          onKeyDown={(event) => railKey(event, player, horizonS)}
+          onPointerDown={(event) => {
+            event.currentTarget.setPointerCapture(event.pointerId);
+            player.pause();
+            goToPointer(event);
+          }}
+          onPointerMove={(event) => {
+            if (event.currentTarget.hasPointerCapture(event.pointerId)) goToPointer(event);
+          }}
+        >
+          <svg width={width} height={height} aria-hidden="true" className="block">
+            {nights.map((night) => (
+              <rect key={night.fromS} x={xOf(night.fromS)} y={0} width={xOf(night.toS) - xOf(night.fromS)} height={axisY} className="fill-ink opacity-[0.09]" />
+            ))}
+            {solvedShare !== null && <rect x={xOf(horizonS * solvedShare)} y={0} width={xOf(horizonS) - xOf(horizonS * solvedShare)} height={axisY} className="fill-rule opacity-50" />}
+            <line x1={SIDE_PX} x2={SIDE_PX + track} y1={axisY} y2={axisY} className="stroke-ink" />
+            {ticks.map((tick) => (
+              <RailTick key={tick.atS} x={xOf(tick.atS)} anchor={xOf(tick.atS) > width - 34 ? 'end' : xOf(tick.atS) < 34 ? 'start' : 'middle'} axisY={axisY} day={tick.isMidnight || tick === ticks[0] ? formatDay(startMs + tick.atS * 1_000, offset) : ''} time={formatTimeOfDay(startMs + tick.atS * 1_000, offset)} elapsed={formatElapsed(tick.atS)} />
+            ))}
+            <g transform={`translate(${xOf(player.timeS)} 0)`}>
+              <line y1={0} y2={axisY} className="stroke-kingfisher" strokeWidth={2} />
+              <path d={`M-7 ${axisY + 9}L0 ${axisY}L7 ${axisY + 9}Z`} className="fill-kingfisher" />
+            </g>
+          </svg>
+        </div>
         <RailFlags flags={flags.filter((flag) => flag.lane < lanes)} xOf={xOf} top={laneTop} lanePx={LANE_PX} selectedId={selectedId} onSelect={onSelect} />
       </div>
     </section>

@@ -16,6 +16,8 @@ export type ChartWork = {
   isReadOnly: boolean;
   selectedReleaseId: string | null;
   selectRelease: (id: string | null) => void;
+  /** A release in hand: its draft is solved at once, but only letting go changes the draft. Null: nothing in hand. */
+  setInHand: (draft: Draft | null) => void;
   /** Waiting for a click on the map: a new release, or a new place for the one named. */
   placing: { moveId: string | null } | null;
   setPlacing: (placing: { moveId: string | null } | null) => void;

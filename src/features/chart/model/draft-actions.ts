@@ -43,8 +43,8 @@ const newRelease = (draft: Draft, place: Place): DraftRelease => ({
 export type PlaceOutcome = { draft: Draft; releaseId: string; words: string } | { refused: string; nearest: Place | null };
 
 /** Adds a release, or moves the one named, to a position on the map. */
-export function placeRelease(draft: Draft, position: LonLat, registers: Registers, moveId: string | null = null): PlaceOutcome {
-  const answer = placeAt(position, registers.waters);
+export function placeRelease(draft: Draft, position: LonLat, registers: Registers, moveId: string | null = null, nearM?: number): PlaceOutcome {
+  const answer = placeAt(position, registers.waters, nearM);
   return answer.place ? placeReleaseAt(draft, answer.place, registers, moveId) : { refused: answer.why, nearest: answer.nearest };
 }
 

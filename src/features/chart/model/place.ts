@@ -6,8 +6,8 @@ import type { RegisterItem } from '../../../../shared/schemas/registers';
 
 export type WaterItem = RegisterItem<'waters'>;
 
-/** How far off the water's edge a click still counts as meant for it, m. Half a street on a phone at district scale. */
-const REACH_OF_A_CLICK_M = 400;
+/** How far off a river's edge a typed or clicked place still counts as meant for it, m. Common practice, no source. */
+export const NEAR_WATER_M = 400;
 /** Within this share of the half width of the bankfull channel the release is taken as mid-channel. */
 const MID_SHARE = 1 / 3;
 
@@ -51,8 +51,8 @@ function areaSize(item: WaterItem): number {
   return Math.abs(ring.reduce((sum, [x, y], i) => { const next = ring[(i + 1) % ring.length]!; return sum + x * next[1] - next[0] * y; }, 0));
 }
 
-/** The water a position belongs to: the smallest area around it, else the nearest river within reach of a click. */
-export function placeAt(position: LonLat, waters: readonly WaterItem[]): PlaceAnswer {
+/** The water a position belongs to: the smallest area around it, else the nearest river within `nearM` of its edge. */
+export function placeAt(position: LonLat, waters: readonly WaterItem[], nearM = NEAR_WATER_M): PlaceAnswer {
   const usable = waters.filter((water) => !water.isArchived);
   const rivers = usable.flatMap((water) => inRiver(position, water) ?? []).sort((a, b) => a.offM - b.offM);
   const nearest = rivers[0];
@@ -60,7 +60,7 @@ export function placeAt(position: LonLat, waters: readonly WaterItem[]): PlaceAn
   // Where a tidal reach and a tidal water overlap, the water is meant: it knows the tide.
   if (nearest && nearest.offM === 0 && !(nearest.isTidal && area)) return { place: nearest.place };
   if (area) return { place: { water: area, position, channel: null, words: `in ${area.name}` } };
-  if (nearest && nearest.offM <= REACH_OF_A_CLICK_M) return { place: nearest.place };
+  if (nearest && nearest.offM <= nearM) return { place: nearest.place };
   return notInWater(nearest ?? null, position);
 }
 
