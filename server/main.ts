@@ -40,7 +40,7 @@ function announce(): void {
   deps.log(`Downreach serves http://${config.host === '0.0.0.0' ? 'localhost' : config.host}:${port}`);
   if (!config.isDemo) return;
   deps.log('Demo mode: the district, its people and its incidents are invented. Sign in as');
-  for (const person of demoSignIns) deps.log(`  ${person.role.padEnd(14)} ${person.email}  ${person.password}`);
+  for (const person of demoSignIns) deps.log(`  ${person.roles.join(', ').padEnd(18)} ${person.email.padEnd(36)} ${person.password}`);
   deps.log('Set DOWNREACH_DEMO=off for real work, then make the first administrator with: npm run administrator');
 }
 

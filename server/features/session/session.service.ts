@@ -10,7 +10,7 @@ import { OneTimeLinks } from '../people/one-time-links';
 import { assertPasswordIsGood, hashPassword, passwordFits } from '../people/password';
 import { PersonAccess } from '../people/person-access';
 
-const visitor = { id: null, name: 'visitor' };
+const visitor = { id: null, name: 'A visitor' };
 
 /** Signing in and out and everything about one's own password. Answers never tell whether an address is known. */
 export class SessionService {

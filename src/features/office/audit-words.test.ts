@@ -16,6 +16,10 @@ it('an action without words is still readable', () => {
   expect(auditWord('weather.take-over')).toBe('weather take over');
 });
 
+it('ids are left out and hashes shortened', () => {
+  expect(auditLines({ scenarioId: 's1', number: 3, documentHash: 'ab'.repeat(32), changed: [] })).toEqual(['number: 3', 'document hash: abababababab…']);
+});
+
 it('particulars are said line by line, changes with old and new', () => {
   expect(auditLines({ name: 'Ada', changed: { roles: { from: ['planner'], to: ['engineer', 'supervisor'] }, isActive: { from: true, to: false }, phone: { from: '', to: '112' } } })).toEqual([
     'name: Ada',

@@ -37,21 +37,24 @@ export const auditWords: Record<string, string> = {
 
 export const auditWord = (action: string): string => auditWords[action] ?? action.replace('.', ' ').replaceAll('-', ' ');
 
+/** A hash is told apart by its first figures. */
+const shortened = (text: string): string => (/^[0-9a-f]{64}$/.test(text) ? `${text.slice(0, 12)}…` : text);
+
 const said = (value: unknown): string => {
   if (value === null || value === '') return 'nothing';
   if (typeof value === 'boolean') return value ? 'yes' : 'no';
   if (Array.isArray(value)) return value.length === 0 ? 'nothing' : value.map(said).join(', ');
   if (typeof value === 'object') return Object.entries(value).map(([key, part]) => `${words(key)} ${said(part)}`).join(', ');
-  return String(value);
+  return shortened(String(value));
 };
-const words = (key: string): string => key.replace(/([a-z])([A-Z])/g, '$1 $2').toLowerCase();
+const words = (key: string): string => (key === 'email' ? 'e-mail' : key).replace(/([a-z])([A-Z])/g, '$1 $2').toLowerCase();
 const isChange = (value: unknown): value is { from: unknown; to: unknown } => typeof value === 'object' && value !== null && 'from' in value && 'to' in value;
 
-/** The particulars of an entry, a line each: "roles: planner, now engineer". */
+/** The particulars of an entry, a line each; ids are left to its link: "roles: planner, now engineer". */
 export function auditLines(detail: AuditEntry['detail']): string[] {
   return Object.entries(detail).flatMap(([key, value]) => {
     if (key === 'changed' && typeof value === 'object' && value !== null && !Array.isArray(value)) return auditLines(value as AuditEntry['detail']);
-    if (Array.isArray(value) && value.length === 0) return [];
+    if (key.endsWith('Id') || (Array.isArray(value) && value.length === 0)) return [];
     return [`${words(key)}: ${isChange(value) ? `${said(value.from)}, now ${said(value.to)}` : said(value)}`];
   });
 }

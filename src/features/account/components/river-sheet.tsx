@@ -4,7 +4,7 @@
  */
 export function RiverSheet() {
   return (
-    <svg viewBox="0 0 720 900" preserveAspectRatio="xMidYMid slice" className="size-full" aria-hidden="true">
+    <svg viewBox="0 0 720 900" preserveAspectRatio="xMaxYMid slice" className="size-full" aria-hidden="true">
       <g className="fill-none stroke-rule" strokeWidth="1">
         {reliefs.map((d) => (
           <path key={d} d={d} />
@@ -51,7 +51,7 @@ const reliefs = [
 ];
 /** From and to as hundredths of the course, width, colour: the cloud narrows towards its core. */
 const cloud: readonly (readonly [number, number, number, string])[] = [
-  [12, 62, 62, 'stroke-madder-1'],
+  [14, 62, 62, 'stroke-madder-1'],
   [19, 55, 48, 'stroke-madder-2'],
   [26, 49, 35, 'stroke-madder-3'],
   [32, 44, 22, 'stroke-madder-4'],

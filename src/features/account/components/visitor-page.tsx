@@ -15,8 +15,8 @@ export function VisitorPage({ title, above, children }: { title: string; above?:
           </div>
         </div>
       </div>
-      <div className="relative hidden overflow-hidden border-l border-rule bg-sheet lg:block print:hidden">
-        <div className="absolute inset-0">
+      <div className="hidden border-l border-rule bg-sheet lg:block print:hidden">
+        <div className="sticky top-0 h-[min(100dvh,64rem)]">
           <RiverSheet />
         </div>
       </div>

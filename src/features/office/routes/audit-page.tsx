@@ -61,7 +61,11 @@ function EntryRow({ entry }: { entry: AuditEntry }) {
   return (
     <RuledRow
       leadWidth="wide"
-      lead={<TimeText iso={entry.at} offset={offset} />}
+      lead={
+        <>
+          <TimeText iso={entry.at} offset={offset} say="day" /> <TimeText iso={entry.at} offset={offset} say="time" />
+        </>
+      }
       trail={
         isOpenToPerson && (
           <Link to={link.to} className="inline-flex min-h-10 items-center text-kingfisher underline underline-offset-2">

@@ -41,7 +41,7 @@ export function OutboxPage() {
         </p>
       </div>
       {data && !data.hasMailServer && (
-        <Notice tone="note" title="No mail server is set" className="mt-4">
+        <Notice tone="note" title="No mail server is set" className="my-4">
           Mails are kept here and go nowhere. Open one to read it or to pass its link on. Set SMTP_URL to send them.
         </Notice>
       )}
@@ -55,7 +55,7 @@ export function OutboxPage() {
       <div aria-busy={isPlaceholderData || undefined}>
         <RuledList label="Mails">
           {data?.mails.map((mail) => (
-            <RuledRow key={mail.id} lead={<TimeText iso={mail.createdAt} offset={offset} hasOffset={false} />} trail={<MailStateWord state={mail.state} />} onOpen={() => setOpenId(mail.id)} openLabel={`Read the mail to ${mail.to}: ${mail.subject}`}>
+            <RuledRow key={mail.id} lead={<TimeText iso={mail.createdAt} offset={offset} />} leadWidth="wide" trail={<MailStateWord state={mail.state} />} onOpen={() => setOpenId(mail.id)} openLabel={`Read the mail to ${mail.to}: ${mail.subject}`}>
               <p className="font-semibold">{mail.subject}</p>
               <p className="break-words text-ink2">to {mail.to}</p>
               {mail.lastError && <p className="break-words text-note text-ink2">{mail.lastError}</p>}

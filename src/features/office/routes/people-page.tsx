@@ -50,7 +50,7 @@ export function PeoplePage() {
         </p>
       </div>
       {invited && (
-        <Notice tone="good" title={`${invited.name} is invited`} className="mt-4">
+        <Notice tone="good" title={`${invited.name} is invited`} className="my-4">
           The link goes to {invited.email} and works for 72 hours. Where no mail server is set it waits in the outbox.
         </Notice>
       )}
