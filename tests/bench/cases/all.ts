@@ -1,5 +1,6 @@
 import type { MakeCase } from '../harness';
 import { puffCases } from './puffs';
+import { volumeCases } from './volume';
 
 /** Every case by name, in the order they are run. */
-export const cases: Record<string, MakeCase> = { ...puffCases };
+export const cases: Record<string, MakeCase> = { ...puffCases, ...volumeCases };
