@@ -3,15 +3,15 @@ import type { RegisterItem } from '../../../../shared/schemas/registers';
 import { Button } from '../../../components/button';
 import { Dialog } from '../../../components/dialog';
 import { Notice } from '../../../components/notice';
-import { errorText } from '../../../lib/form-errors';
 import { useMoveEntry } from '../api';
+import { refusalText } from '../model/form-errors';
 
 /** What can be done with an entry besides reading it. */
 export function EntryActions({ item, onEdit }: { item: RegisterItem; onEdit: () => void }) {
   const move = useMoveEntry(item.register, item.id);
   const [isAsking, setIsAsking] = useState(false);
   const go = (kind: 'archive' | 'restore' | 'checked') => move.mutate({ move: kind, version: item.version }, { onSuccess: () => setIsAsking(false) });
-  const failure = move.error ? <Notice tone="bad" title="This was not done">{errorText(move.error)}</Notice> : null;
+  const failure = move.error ? <Notice tone="bad" title="This was not done">{refusalText(move.error)}</Notice> : null;
   if (item.isArchived)
     return (
       <>

@@ -26,10 +26,29 @@ export function EntryMap({ label, reaches, area, mark, fitTo, onClick }: Props) 
       <DistrictMap theme={theme} label={label} fitTo={fitTo} {...(onClick ? { onClick } : {})}>
         {reaches.length > 0 && <RiverLayer reaches={reaches} />}
         <AreaOutline area={area} />
+        <WheelWhenFocused />
         <PlaceMark mark={mark} />
       </DistrictMap>
     </div>
   );
+}
+
+/** The wheel scrolls the page over a map that stands in it; it zooms once the map has been pressed or reached by keyboard. */
+function WheelWhenFocused() {
+  const map = useMap();
+  useEffect(() => {
+    const stage = map.getContainer();
+    const zoom = () => map.scrollWheelZoom.enable();
+    const scroll = () => map.scrollWheelZoom.disable();
+    scroll();
+    stage.addEventListener('focusin', zoom);
+    stage.addEventListener('focusout', scroll);
+    return () => {
+      stage.removeEventListener('focusin', zoom);
+      stage.removeEventListener('focusout', scroll);
+    };
+  }, [map]);
+  return null;
 }
 
 /** The outline as it is written, islands cut out. */

@@ -1,6 +1,6 @@
 import { zodResolver } from '@hookform/resolvers/zod';
 import { useQueryClient } from '@tanstack/react-query';
-import { useState } from 'react';
+import { useRef, useState, type RefObject } from 'react';
 import { FormProvider, useForm, type FieldValues, type Resolver } from 'react-hook-form';
 import { registerWriteSchema, type RegisterItem, type RegisterName } from '../../../../shared/schemas/registers';
 import { Button } from '../../../components/button';
@@ -15,7 +15,7 @@ import { FieldGrid, TextField } from './bound-fields';
 import { ConflictPanel } from './conflict-panel';
 import { EntryFields } from './entry-fields';
 import { EntryModeContext } from './entry-mode';
-import { ErrorSummary } from './error-summary';
+import { ErrorSummary, ToMend } from './error-summary';
 import { LeaveGuard } from './leave-guard';
 
 type Props = {
@@ -36,6 +36,7 @@ export function EntryWriting({ register, start, current, initial, onSaved, onLea
   const save = useSaveEntry(register, start?.id ?? null);
   const [base, setBase] = useState(start);
   const [refusal, setRefusal] = useState<string | null>(null);
+  const top = useRef<HTMLDivElement>(null);
   const hasConflict = base !== null && current !== null && current.version > base.version;
 
   const store = async (body: FieldValues) => {
@@ -52,6 +53,7 @@ export function EntryWriting({ register, start, current, initial, onSaved, onLea
     <EntryModeContext value="write">
       <FormProvider {...form}>
         <form noValidate onSubmit={(event) => void form.handleSubmit(store)(event)} aria-label={start ? `Edit ${start.name}` : 'New entry'}>
+          <div ref={top} tabIndex={-1} className="outline-none" />
           {hasConflict && <ConflictPanel key={current.version} base={base} theirs={current} onResolved={() => setBase(current)} />}
           {refusal && <Notice tone="bad" className="mt-6" title="This could not be saved">{refusal}</Notice>}
           <ErrorSummary />
@@ -64,10 +66,16 @@ export function EntryWriting({ register, start, current, initial, onSaved, onLea
           <div className="sticky bottom-0 z-10 mt-8 flex flex-wrap items-center gap-3 border-t border-ink bg-paper py-3">
             <Button type="submit" kind="primary" isBusy={save.isPending} disabled={hasConflict}>{start ? 'Save changes' : 'Save entry'}</Button>
             <Button onClick={onLeave}>Leave without saving</Button>
+            {hasConflict ? <Button kind="quiet" icon="attention" onClick={() => show(top)}>{`${current.updatedBy} saved version ${current.version}: see what changed`}</Button> : <ToMend onShow={() => show(top)} />}
           </div>
         </form>
         <LeaveGuard isOn={form.formState.isDirty && !save.isSuccess} />
       </FormProvider>
     </EntryModeContext>
   );
+}
+
+function show(top: RefObject<HTMLElement | null>): void {
+  top.current?.scrollIntoView({ block: 'center' });
+  top.current?.focus({ preventScroll: true });
 }

@@ -1,4 +1,5 @@
 import { useFormContext } from 'react-hook-form';
+import { Button } from '../../../components/button';
 import { Notice } from '../../../components/notice';
 import { errorsUnder } from '../model/form-errors';
 import { pathWords } from '../model/path-words';
@@ -32,4 +33,12 @@ export function ErrorSummary() {
       </ul>
     </Notice>
   );
+}
+
+/** Beside the button that saves: how much is left to mend, for those who do not see the top of the form. */
+export function ToMend({ onShow }: { onShow: () => void }) {
+  const { formState } = useFormContext();
+  const count = errorsUnder(formState.errors).length;
+  if (count === 0 || formState.submitCount === 0) return null;
+  return <Button kind="quiet" icon="attention" onClick={onShow}>{count === 1 ? 'One thing to mend: see which' : `${count} things to mend: see which`}</Button>;
 }

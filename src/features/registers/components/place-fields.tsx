@@ -1,4 +1,5 @@
 import { useQuery } from '@tanstack/react-query';
+import { useState } from 'react';
 import { useFormContext } from 'react-hook-form';
 import { formatPosition } from '../../../../shared/format';
 import type { LonLat } from '../../../../shared/schemas/basics';
@@ -26,6 +27,7 @@ export function PlaceFields({ note }: { note: string }) {
   const waterId = useValue<string>('data.waterId');
   const channel = useValue<Channel | null>('data.channel');
   const position = useValue<unknown>('data.position');
+  const [start] = useState({ waterId, position });
   const code = useValue<string>('code');
   const name = useValue<string>('name');
   const water = waters.find(({ id }) => id === waterId);
@@ -44,7 +46,9 @@ export function PlaceFields({ note }: { note: string }) {
     if (snap) change('data.channel', snap.channel);
     change('data.position', rounded(at));
   };
-  const fitTo = isPosition(position) ? around(position) : boundsOf(reaches.length > 0 ? reaches.flatMap(({ centreline }) => centreline) : area.flat());
+  // While writing, the view stays where it was: a map that jumps at each press cannot be pressed again.
+  const seen = isWriting ? start : { waterId, position };
+  const fitTo = isPosition(seen.position) && seen.waterId === waterId ? around(seen.position) : boundsOf(reaches.length > 0 ? reaches.flatMap(({ centreline }) => centreline) : area.flat());
 
   return (
     <Section title="Place" note={note}>

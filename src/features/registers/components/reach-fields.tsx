@@ -44,7 +44,7 @@ export function ReachFields({ name, others, onRemove }: { name: string; others: 
         <SelectField name={`${name}.downstreamReachId`} label="Flows into" emptyLabel="Out of the network" choices={others.map((reach) => ({ value: reach.id, label: reach.name || reach.id }))} />
         <SelectField name={`${name}.joinsOnBank`} label="Joins on" emptyLabel="Is the main stem itself" choices={banks} />
         <NumberField name={`${name}.slope`} label="Slope" unit="m/m" range="Above 0, at most 0.5." isOptional />
-        <NumberField name={`${name}.manningN`} label="Manning n" unit="s/m^⅓" range="Above 0, at most 1." isOptional />
+        <NumberField name={`${name}.manningN`} label="Manning n" unit="s/m^(1/3)" range="Above 0, at most 1." isOptional />
         <NumberField name={`${name}.dispersionM2s`} label="Dispersion along" unit="m²/s" hint="Empty: after Fischer 1979 from the figures below." isOptional emptyWords="by Fischer 1979" />
         <NumberField name={`${name}.transverseM2s`} label="Mixing across" unit="m²/s" hint="Empty: 0.6 × depth × shear velocity (Fischer et al. 1979)." isOptional emptyWords="by 0.6 × depth × shear velocity" />
         <CheckField name={`${name}.calibrated`} label="Calibrated by a dye test or records" readWords={['yes', 'no']} />
@@ -68,7 +68,7 @@ export function ReachFields({ name, others, onRemove }: { name: string; others: 
         />
       </div>
       <div className="pt-4">
-        <ReadOrWriteLine name={`${name}.centreline`} hint={`One "longitude, latitude, km" a line, downstream: the km falls. ${lineSummary(line)}.`} />
+        <ReadOrWriteLine name={`${name}.centreline`} hint={`One "longitude, latitude, km" a line, downstream: the km falls. Now ${lineSummary(line)}.`} />
       </div>
     </Section>
   );

@@ -1,4 +1,6 @@
 import type { FieldErrors, FieldValues } from 'react-hook-form';
+import { ApiError } from '../../../lib/api-client';
+import { errorText } from '../../../lib/form-errors';
 
 export type FoundError = { path: string; message: string };
 
@@ -28,3 +30,6 @@ export function pathsOf(values: unknown, path = ''): string[] {
   const children = typeof values === 'object' && values !== null ? Object.entries(values).flatMap(([key, value]) => pathsOf(value, path === '' ? key : `${path}.${key}`)) : [];
   return path === '' ? children.toSorted((a, b) => b.length - a.length) : [...children, path];
 }
+
+/** Why something was refused. What the server says of its own rules stands alone; a failure brings the request id. */
+export const refusalText = (error: unknown): string => (error instanceof ApiError && error.status >= 400 && error.status < 500 ? error.problem.detail : errorText(error));
