@@ -5,6 +5,7 @@ import { defineConfig } from 'vite';
 
 export default defineConfig({
   plugins: [react(), tailwindcss()],
+  publicDir: 'src/static',
   server: { watch: { ignored: ['**/data/**', '**/dist/**', '**/test-results/**'] } },
   build: {
     outDir: 'dist',

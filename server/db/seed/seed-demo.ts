@@ -1,4 +1,4 @@
-import { daysFromCivil, civilFromDays } from '../../../shared/civil';
+import { civilFromDays, daysFromCivil, isoWithOffset } from '../../../shared/civil';
 import type { Role } from '../../../shared/permissions';
 import { registerNames } from '../../../shared/schemas/registers';
 import type { Deps } from '../../deps';
@@ -54,14 +54,22 @@ async function seedRegisters(deps: Deps, actor: Actor): Promise<void> {
 /** Waters and substances first: the others refer to them. */
 const rank = (register: (typeof registerNames)[number]): number => (register === 'waters' || register === 'substances' ? 0 : 1);
 
-async function seedIncident(deps: Deps, actor: Actor, { scenarios, ...incident }: SeedIncident): Promise<void> {
+async function seedIncident(deps: Deps, actor: Actor, { scenarios, startedMinutesAgo, ...incident }: SeedIncident): Promise<void> {
   const { id } = await new IncidentService(deps).create(actor, incident);
   const service = new ScenarioService(deps);
-  for (const { name, note, document } of scenarios) {
-    const scenario = await service.create(actor, id, { name, draft: document, copyOfScenarioId: null });
-    await service.saveRevision(actor, scenario.id, { document, draftVersion: scenario.draftVersion, note });
+  for (const scenario of scenarios) {
+    const { name, note } = scenario;
+    const document = startedMinutesAgo === undefined ? scenario.document : { ...scenario.document, startAt: startedAgo(deps, startedMinutesAgo, incident.utcOffset) };
+    const made = await service.create(actor, id, { name, draft: document, copyOfScenarioId: null });
+    await service.saveRevision(actor, made.id, { document, draftVersion: made.draftVersion, note });
   }
 }
+
+/** An instant some minutes ago, on a full five minutes, so that the exercise runs while somebody looks at it. */
+const startedAgo = (deps: Deps, minutes: number, utcOffset: string): string => {
+  const ms = deps.now().getTime() - minutes * 60_000;
+  return isoWithOffset(ms - (ms % 300_000), utcOffset);
+};
 
 const dayNumber = (day: string): number => {
   const [year, month, date] = day.split('-').map(Number) as [number, number, number];

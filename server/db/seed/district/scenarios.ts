@@ -103,7 +103,8 @@ function containerAtSea(): EstimateDocumentInput {
 }
 
 export type SeedScenario = { key: string; name: string; note: string; document: EstimateDocument };
-export type SeedIncident = { name: string; marking: Marking; summary: string; utcOffset: string; scenarios: SeedScenario[] };
+/** `startedMinutesAgo` moves T0 of its scenarios to shortly before the seeding; without it they keep their written dates. */
+export type SeedIncident = { name: string; marking: Marking; summary: string; utcOffset: string; startedMinutesAgo?: number; scenarios: SeedScenario[] };
 
 const scenario = (key: string, name: string, note: string, input: EstimateDocumentInput): SeedScenario => ({ key, name, note, document: estimateDocumentSchema.parse(input) });
 
@@ -111,7 +112,8 @@ const scenario = (key: string, name: string, note: string, input: EstimateDocume
 export const districtIncidents: SeedIncident[] = [
   {
     name: 'Tanker at V2 bridge', marking: 'EXERCISE', utcOffset: '-08:00',
-    summary: 'Table-top exercise. Road tanker through the rail of the V2 bridge at 06:40, ammonia solution running into the Ollemar at the right bank.',
+    summary: 'Table-top exercise. Road tanker through the rail of the V2 bridge, ammonia solution running into the Ollemar at the right bank.',
+    startedMinutesAgo: 40,
     scenarios: [scenario('S01', 'As reported, 4 t in 10 minutes', 'First figures from the driver', tankerAtBridge())],
   },
   {
