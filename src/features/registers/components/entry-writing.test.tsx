@@ -1,6 +1,6 @@
-import { QueryClient, QueryClientProvider } from '@tanstack/react-query';
+import { QueryClient, QueryClientProvider, useQuery } from '@tanstack/react-query';
 import { act, fireEvent, render, screen, waitFor, within } from '@testing-library/react';
-import { useState, type ReactElement } from 'react';
+import type { ReactElement } from 'react';
 import { createMemoryRouter, RouterProvider } from 'react-router-dom';
 import { beforeEach, expect, it, vi } from 'vitest';
 import type { Problem } from '../../../../shared/problem';
@@ -38,7 +38,7 @@ function show(element: ReactElement) {
 }
 const type = (label: RegExp | string, value: string) => fireEvent.change(screen.getByLabelText(label), { target: { value } });
 const save = (name = 'Save changes') => fireEvent.click(screen.getByRole('button', { name }));
-const sentBody = () => JSON.parse(String(fetchMock.mock.calls.at(-1)![1]!.body)) as Record<string, unknown>;
+const sentBody = () => JSON.parse(String(fetchMock.mock.calls.findLast(([, init]) => init?.body)![1]!.body)) as Record<string, unknown>;
 
 it('names everything that is missing before anything is sent', async () => {
   show(<Writing item={null} />);
@@ -80,15 +80,14 @@ it('shows what another person saved meanwhile, takes their untouched parts and s
   const theirs = { ...phenol, version: 4, updatedBy: 'Ilse', ownerName: 'Laboratory', name: 'Phenol (theirs)' };
   fetchMock.mockImplementation(async () => json(200, { ...theirs, version: 5 }));
   const element = (current: RegisterItem) => <EntryWriting register="substances" start={phenol} current={current} initial={valuesOf(phenol)} onSaved={onSaved} onLeave={() => undefined} />;
-  let setCurrent: (item: RegisterItem) => void = () => undefined;
+  const { queryKey } = registerItemQuery('substances', 'phenol');
+  client.setQueryData(queryKey, phenol);
   function Follows() {
-    const [current, set] = useState<RegisterItem>(phenol);
-    setCurrent = set;
-    return element(current);
+    return element(useQuery(registerItemQuery('substances', 'phenol')).data ?? phenol);
   }
   show(<Follows />);
   type('Name', 'Phenol (mine)');
-  act(() => setCurrent(theirs));
+  act(() => void client.setQueryData(queryKey, theirs));
   await screen.findByText('Ilse saved version 4 while you were editing version 3');
   expect((screen.getByRole('button', { name: 'Save changes' }) as HTMLButtonElement).disabled).toBe(true);
   fireEvent.click(screen.getByRole('button', { name: 'Go on from version 4' }));

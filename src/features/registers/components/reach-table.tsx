@@ -27,5 +27,5 @@ export function ReachTable({ reaches, openIndex, onOpen, problemsOf }: Props) {
       },
     },
   ];
-  return <DataTable caption="Reaches" columns={columns} rows={reaches.map((reach, index) => ({ index, reach }))} rowKey={({ index }) => String(index)} selectedKey={String(openIndex)} onRow={({ index }) => onOpen(index)} />;
+  return <DataTable caption="Table of reaches" columns={columns} rows={reaches.map((reach, index) => ({ index, reach }))} rowKey={({ index }) => String(index)} selectedKey={String(openIndex)} onRow={({ index }) => onOpen(index)} />;
 }

@@ -56,7 +56,7 @@ function ReadingRows({ name, caption, columns, empty, trail, trailLabel }: Props
   const rows = useValue<Row[]>(name);
   if (rows.length === 0) return <p className="py-4 text-ink2">{empty}</p>;
   return (
-    <div className="overflow-x-auto" role="region" aria-label={caption} tabIndex={0}>
+    <div className="overflow-x-auto" role="region" aria-label={`Table: ${caption}`} tabIndex={0}>
       <table className="w-full border-collapse text-left">
         <caption className="sr-only">{caption}</caption>
         <thead>
