@@ -32,30 +32,43 @@ export function findRoot(f: (x: number) => number, a: number, b: number, fa: num
 const GOLDEN = (3 - Math.sqrt(5)) / 2;
 
 /**
- * Largest value of f inside [a, b], with its place, by golden sections; f has one hump there.
- * Source: Kiefer 1953, Proc. Amer. Math. Soc. 4: 502.
+ * Largest value of f inside [a, b], with its place, by parabolas through the best three points, guarded by golden
+ * sections; f has one hump there. Stops when the place is known to about `tolerance`.
+ * Source: Brent 1973, Algorithms for Minimization without Derivatives, chapter 5.
  */
 export function findMaximum(f: (x: number) => number, a: number, b: number, tolerance: number): { x: number; value: number } {
-  let low = a;
-  let high = b;
-  let x1 = low + GOLDEN * (high - low);
-  let x2 = high - GOLDEN * (high - low);
-  let f1 = f(x1);
-  let f2 = f(x2);
-  for (let i = 0; i < 100 && high - low > tolerance; i++) {
-    if (f1 >= f2) {
-      high = x2;
-      x2 = x1;
-      f2 = f1;
-      x1 = low + GOLDEN * (high - low);
-      f1 = f(x1);
+  let [low, high] = [a, b];
+  let best = low + GOLDEN * (high - low);
+  let second = best;
+  let third = best;
+  let fBest = f(best);
+  let fSecond = fBest;
+  let fThird = fBest;
+  let step = 0;
+  let before = 0;
+  for (let i = 0; i < 100; i++) {
+    const middle = (low + high) / 2;
+    if (Math.abs(best - middle) <= tolerance - (high - low) / 2) break;
+    const r = (best - second) * (fBest - fThird);
+    const q = (best - third) * (fBest - fSecond);
+    const over = 2 * (q - r);
+    const jump = over === 0 ? Infinity : ((best - third) * q - (best - second) * r) / -over;
+    const isUsable = Math.abs(before) > tolerance / 2 && Math.abs(jump) < Math.abs(before) / 2 && best + jump > low + tolerance / 4 && best + jump < high - tolerance / 4;
+    before = isUsable ? step : (best < middle ? high : low) - best;
+    step = isUsable ? jump : GOLDEN * before;
+    // Never nearer to a known point than half the tolerance: rounding would decide.
+    const x = best + (Math.abs(step) >= tolerance / 2 ? step : Math.sign(step || 1) * (tolerance / 2));
+    const fx = f(x);
+    if (fx >= fBest) {
+      if (x < best) high = best;
+      else low = best;
+      [third, fThird, second, fSecond, best, fBest] = [second, fSecond, best, fBest, x, fx];
     } else {
-      low = x1;
-      x1 = x2;
-      f1 = f2;
-      x2 = high - GOLDEN * (high - low);
-      f2 = f(x2);
+      if (x < best) low = x;
+      else high = x;
+      if (fx >= fSecond || second === best) [third, fThird, second, fSecond] = [second, fSecond, x, fx];
+      else if (fx >= fThird || third === best || third === second) [third, fThird] = [x, fx];
     }
   }
-  return f1 >= f2 ? { x: x1, value: f1 } : { x: x2, value: f2 };
+  return { x: best, value: fBest };
 }

@@ -7,8 +7,9 @@ export type Current = {
   velocity(tS: number, out: Float64Array): void;
   /** Integral of the velocity from T0 to t; t may be negative. */
   displacement(tS: number, out: Float64Array): void;
-  /** No speed is above this, m/s. */
+  /** No speed is above this, m/s, and no change of velocity faster than that, m/s2. */
   readonly maxSpeedMps: number;
+  readonly maxAccelerationMps2: number;
   /** True where neither speed nor direction changes. */
   readonly isConstant: boolean;
   /** Kinks, where the velocity is not smooth. */
@@ -17,11 +18,13 @@ export type Current = {
   readonly shortestPeriodS: number;
 };
 
-type Part = { velocity(tS: number, out: Float64Array): void; displacement(tS: number, out: Float64Array): void; maxMps: number };
+type Part = { velocity(tS: number, out: Float64Array): void; displacement(tS: number, out: Float64Array): void; maxMps: number; maxMps2: number };
 
 /** Adds the parts up. Residual and wind drift are constant, the tide is an ellipse, a series is linear between its rows. */
 export function currentOf(parts: readonly CurrentPart[]): Current {
-  const made = parts.map(partOf);
+  const steady = parts.filter((part) => part.kind === 'residual' || part.kind === 'wind');
+  const varying = parts.filter((part) => part.kind === 'tide' || part.kind === 'series');
+  const made = [constantPart(steady), ...varying.map((part) => (part.kind === 'tide' ? tidePart(part) : seriesPart(part.rows)))];
   const add = (which: 'velocity' | 'displacement') => (tS: number, out: Float64Array): void => {
     out[0] = 0;
     out[1] = 0;
@@ -31,28 +34,26 @@ export function currentOf(parts: readonly CurrentPart[]): Current {
     velocity: add('velocity'),
     displacement: add('displacement'),
     maxSpeedMps: made.reduce((sum, part) => sum + part.maxMps, 0),
-    isConstant: parts.every((part) => part.kind === 'residual' || part.kind === 'wind'),
+    maxAccelerationMps2: made.reduce((sum, part) => sum + part.maxMps2, 0),
+    isConstant: varying.length === 0,
     kinksS: parts.flatMap((part) => (part.kind === 'series' ? part.rows.map((row) => row.atS) : [])).sort((a, b) => a - b),
     shortestPeriodS: parts.reduce((least, part) => (part.kind === 'tide' ? Math.min(least, part.periodS) : least), Infinity),
   };
 }
 
-function partOf(part: CurrentPart): Part {
-  switch (part.kind) {
-    case 'residual':
-      return constantPart(part.speedMps, part.towardDeg);
-    case 'wind':
-      return constantPart(part.windSpeedMps * part.driftFraction, part.windFromDeg + 180 + part.turnDeg);
-    case 'tide':
-      return tidePart(part);
-    case 'series':
-      return seriesPart(part.rows);
-  }
-}
+type SteadyPart = Extract<CurrentPart, { kind: 'residual' | 'wind' }>;
 
-function constantPart(speedMps: number, towardDeg: number): Part {
-  const u = speedMps * Math.sin(towardDeg * RAD);
-  const v = speedMps * Math.cos(towardDeg * RAD);
+/** Speed and direction of a part that does not change; wind drives water down the wind, turned by its stated angle. */
+const steadyOf = (part: SteadyPart): [speedMps: number, towardDeg: number] =>
+  part.kind === 'residual' ? [part.speedMps, part.towardDeg] : [part.windSpeedMps * part.driftFraction, part.windFromDeg + 180 + part.turnDeg];
+
+function constantPart(parts: readonly SteadyPart[]): Part {
+  let u = 0;
+  let v = 0;
+  for (const [speedMps, towardDeg] of parts.map(steadyOf)) {
+    u += speedMps * Math.sin(towardDeg * RAD);
+    v += speedMps * Math.cos(towardDeg * RAD);
+  }
   return {
     velocity(_tS, out) {
       out[0]! += u;
@@ -62,7 +63,8 @@ function constantPart(speedMps: number, towardDeg: number): Part {
       out[0]! += u * tS;
       out[1]! += v * tS;
     },
-    maxMps: speedMps,
+    maxMps: Math.hypot(u, v),
+    maxMps2: 0,
   };
 }
 
@@ -72,6 +74,7 @@ function tidePart(part: Extract<CurrentPart, { kind: 'tide' }>): Part {
   const ex = Math.sin(part.floodTowardDeg * RAD);
   const ey = Math.cos(part.floodTowardDeg * RAD);
   const phase = w * part.maxFloodS;
+  const [sinPhase, cosPhase] = [Math.sin(phase), Math.cos(phase)];
   const addTurned = (out: Float64Array, along: number, left: number): void => {
     out[0]! += along * ex - left * ey;
     out[1]! += along * ey + left * ex;
@@ -79,8 +82,9 @@ function tidePart(part: Extract<CurrentPart, { kind: 'tide' }>): Part {
   return {
     velocity: (tS, out) => addTurned(out, part.majorMps * Math.cos(w * tS - phase), part.minorMps * Math.sin(w * tS - phase)),
     displacement: (tS, out) =>
-      addTurned(out, (part.majorMps / w) * (Math.sin(w * tS - phase) + Math.sin(phase)), (part.minorMps / w) * (Math.cos(phase) - Math.cos(w * tS - phase))),
+      addTurned(out, (part.majorMps / w) * (Math.sin(w * tS - phase) + sinPhase), part.minorMps === 0 ? 0 : (part.minorMps / w) * (cosPhase - Math.cos(w * tS - phase))),
     maxMps: Math.max(part.majorMps, Math.abs(part.minorMps)),
+    maxMps2: w * Math.max(part.majorMps, Math.abs(part.minorMps)),
   };
 }
 
@@ -120,9 +124,10 @@ function seriesPart(rows: readonly { atS: number; eastMps: number; northMps: num
     out[0]! += a.eastMps + z * (b.eastMps - a.eastMps);
     out[1]! += a.northMps + z * (b.northMps - a.northMps);
   };
+  const now = new Float64Array(2);
   const sinceFirst = (t: number, out: Float64Array, sign: number): void => {
     const i = t <= first.atS ? 0 : t >= last.atS ? n - 1 : rowBefore(t);
-    const now = new Float64Array(2);
+    now.fill(0);
     velocity(t, now);
     const h = t - rows[i]!.atS;
     out[0]! += sign * (sumX[i]! + (h * (rows[i]!.eastMps + now[0]!)) / 2);
@@ -137,6 +142,7 @@ function seriesPart(rows: readonly { atS: number; eastMps: number; northMps: num
       out[0]! -= atT0[0]!;
       out[1]! -= atT0[1]!;
     },
+    maxMps2: rows.slice(1).reduce((most, row, i) => Math.max(most, Math.hypot(row.eastMps - rows[i]!.eastMps, row.northMps - rows[i]!.northMps) / (row.atS - rows[i]!.atS)), 0),
     maxMps: rows.reduce((most, row) => Math.max(most, Math.hypot(row.eastMps, row.northMps)), 0),
   };
 }

@@ -6,8 +6,10 @@ import { Puff, type OpenMotion, type OpenSource } from './puffs';
 
 /** Farther than this many standard deviations a puff adds less than 1e-14 of its peak and is left out. */
 const FAR_SIGMA = 8;
-/** Widest stretch, in standard deviations travelled, that 15 points integrate well. */
-const TAKE_SIGMA = 4;
+/** A stretch is wide too where the puffs within it differ more than this in size. */
+const MOST_GROWTH = 4;
+/** Widest stretch, in standard deviations travelled, that 15 points integrate well; a coarse tolerance takes wider ones. */
+const takeSigma = (tolerance: number): number => (tolerance < 1e-5 ? 4 : 6);
 
 /**
  * Concentration at a place against time per kilogram of one release: the puff solution, or for a release that lasts
@@ -30,9 +32,8 @@ export function openResponse(motion: OpenMotion, source: OpenSource, x: number, 
     };
   }
   const quadrature = new AdaptiveQuadrature(meter);
-  const triageAt = triageFor(motion, source, puff, x, y);
-  const switches = motion.loss.switches(profile.startS, Math.min(profile.stopS, horizonS));
-  const knots = [...profile.knotsS, ...switches, ...motion.current.kinksS].filter((t) => t >= profile.startS && t <= profile.stopS).sort((a, b) => a - b);
+  const triageAt = triageFor(motion, source, puff, x, y, takeSigma(tolerance));
+  const knots = knotsOf(motion, source, horizonS, tolerance);
   return {
     features,
     at(tS, withLoss) {
@@ -48,20 +49,39 @@ export function openResponse(motion: OpenMotion, source: OpenSource, x: number, 
   };
 }
 
+/** More kinks than this are left to the adaptive rule where the tolerance is coarse, or where they are only in the current's slope. */
+const MANY_KNOTS = 60;
+
+/** Release times at which the integrand is not smooth: kinks of the rate, switches of the loss, kinks of the current. */
+function knotsOf(motion: OpenMotion, source: OpenSource, horizonS: number, tolerance: number): number[] {
+  const { startS, stopS, knotsS } = source.release.profile;
+  const inside = motion.current.kinksS.filter((t) => t > startS && t < stopS);
+  const rate = knotsS.length > MANY_KNOTS && tolerance >= 1e-5 ? [startS, stopS] : knotsS;
+  return [...rate, ...motion.loss.switches(startS, Math.min(stopS, horizonS)), ...(inside.length > MANY_KNOTS ? [] : inside)].sort((a, b) => a - b);
+}
+
 /** Bounds how near the puffs released between a and b can come, and how much they differ. */
-function triageFor(motion: OpenMotion, source: OpenSource, puff: Puff, x: number, y: number): (tS: number) => Triage {
+function triageFor(motion: OpenMotion, source: OpenSource, puff: Puff, x: number, y: number, take: number): (tS: number) => Triage {
   const { spread, current } = motion;
   const start = source.startVarianceM2;
+  const velocity = new Float64Array(2);
   return (tS) => (a, b) => {
-    const travelled = current.maxSpeedMps * (b - a);
+    // Over the stretch the speed differs from that in its middle by at most half its length times the acceleration.
+    current.velocity((a + b) / 2, velocity);
+    const travelled = Math.min(current.maxSpeedMps, Math.hypot(velocity[0]!, velocity[1]!) + (current.maxAccelerationMps2 * (b - a)) / 2) * (b - a);
     const widest = Math.sqrt(start + spread.largest(tS - a));
     puff.seen((a + b) / 2, tS, false);
     let nearest = Infinity;
     for (const origin of source.origins) nearest = Math.min(nearest, Math.hypot(x - origin.x - puff.shiftX, y - origin.y - puff.shiftY));
     if (nearest - travelled / 2 > FAR_SIGMA * widest) return 'skip';
     const narrowest = Math.sqrt(start + spread.smallest(tS - b));
-    // A stretch is wide too where the puffs grow many times over within it.
-    return travelled > TAKE_SIGMA * narrowest || widest > 4 * narrowest ? ((b - a) < 1e-6 ? 'take' : 'split') : 'take';
+    const growth = Math.sqrt(start + spread.smallest(tS - a)) / narrowest;
+    const isNarrow = travelled <= take * narrowest && growth <= MOST_GROWTH;
+    if (!isNarrow) return b - a < 1e-6 ? 'take' : 'split';
+    // In standard deviations of the puff in the middle: tells more than metres where the puffs are long.
+    let least = Infinity;
+    for (let origin = 0; origin < source.origins.length; origin++) least = Math.min(least, puff.distance2(x, y, origin));
+    return Math.sqrt(least) / growth - travelled / (2 * narrowest) > FAR_SIGMA ? 'skip' : 'take';
   };
 }
 

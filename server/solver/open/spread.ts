@@ -19,11 +19,11 @@ const RAD = Math.PI / 180;
 /**
  * Constant diffusivities whose axes turn: V(t) = 2 integral R diag(K_L, K_T) R^T dt, summed in fixed axes.
  * With a the angle of the long axis, V_xx, V_yy = (K_L + K_T) t +- (K_L - K_T) I_c and V_xy = (K_L - K_T) I_s, where
- * I_c, I_s are the integrals of cos 2a and sin 2a, tabulated to 1e-11 of their length.
+ * I_c, I_s are the integrals of cos 2a and sin 2a, tabulated to 1e-10 of their length.
  * Source: Fischer et al. 1979, section 2.4; the table's error is its own.
  */
 export function turningSpread(alongM2s: number, acrossM2s: number, direction: AxisDirection, cutsS: readonly number[]): Spread {
-  const table = new IntegralTable(direction, 2, cutsS, 1e-11);
+  const table = new IntegralTable(direction, 2, cutsS, 1e-10);
   const sum = alongM2s + acrossM2s;
   const difference = alongM2s - acrossM2s;
   const start = new Float64Array(2);
@@ -117,7 +117,7 @@ function alignedWithShore(alongM2s: number, acrossM2s: number, axis: { cos: numb
 
 function cutsFor(current: Current, fromS: number, toS: number): number[] {
   const cuts = [fromS, ...current.kinksS.filter((t) => t > fromS && t < toS), toS];
-  const step = Math.min(current.shortestPeriodS / 8, toS - fromS);
+  const step = Math.min(current.shortestPeriodS / 96, toS - fromS);
   const out: number[] = [fromS];
   for (let i = 1; i < cuts.length; i++) {
     const n = Math.max(1, Math.ceil((cuts[i]! - cuts[i - 1]!) / step));

@@ -24,6 +24,15 @@ export function curveOf(response: SiteResponse, samples: Samples, weights: Weigh
   return withHumps(samples.timesS, values, (tS) => response.at(tS, weights));
 }
 
+/** The same curve for amounts that are `ratio` times as large; right while the larger one stays below the solubility or `cap` cuts it. */
+export const scaledCurve = (curve: Curve, ratio: number, cap: number): Curve => ({
+  timesS: curve.timesS,
+  values: curve.values.map((value) => Math.min(cap, ratio * value)),
+  f: (tS) => Math.min(cap, ratio * curve.f(tS)),
+  peak: Math.min(cap, ratio * curve.peak),
+  peakS: curve.peakS,
+});
+
 /** The moving mean over `windowS` of one set of amounts. */
 export function meanCurveOf(response: SiteResponse, samples: Samples, weights: Weights, windowS: number): Curve {
   const integral = new RunningIntegral(samples, samples.units.map((units) => response.total(units, weights)));

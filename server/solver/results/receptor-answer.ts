@@ -3,7 +3,7 @@ import type { ActionAnswer, Check, ReceptorAnswer, WorkingLine } from '../../../
 import { concentrationText, sig } from '../format';
 import type { Weights } from '../release-profile';
 import type { ReceptorSite, RunInput } from '../types';
-import { curveOf, firstReach, meanCurveOf, pulsesAbove, type Curve, type Pulse } from './curve';
+import { curveOf, firstReach, meanCurveOf, pulsesAbove, scaledCurve, type Curve, type Pulse } from './curve';
 import { RunningIntegral } from './running-integral';
 import { sampleSite, SiteResponse, type Samples } from './sampling';
 import { thinned } from './series';
@@ -30,7 +30,7 @@ export function receptorAnswer(input: RunInput, receptor: EstimateReceptor, site
   const effort = !isReached ? { most: 3, even: 1 } : input.isPreview ? { most: 180, even: 16 } : { most: 300, even: 24 };
   const samples = sampleSite(response, features, weights.likely, doc.horizonS, effort);
   const sets: Triple<Weights> = { low: weights.low, likely: weights.likely, high: weights.high };
-  const curves = mapTriple(sets, (set) => curveOf(response, samples, set));
+  const curves = curvesOf(response, samples, sets, doc.substance.solubilityKgM3 ?? Infinity);
   const doses = mapTriple(sets, (set) => new RunningIntegral(samples, samples.units.map((units) => response.total(units, set))).total);
   const stop = site.checks.find((check) => check.severity === 'stop') ?? null;
   const answers = receptor.actionValues.map((value, index) =>
@@ -48,10 +48,22 @@ export function receptorAnswer(input: RunInput, receptor: EstimateReceptor, site
     leadingEdgeS: firstReach(likely, LEADING_EDGE_SHARE),
     dose: doses,
     answers,
-    series: thinned(response, likely, sets, answers),
-    withLosses: isReached ? lossesBeside(input, site, likely, answers, response, sets) : null,
+    series: thinned(curves, answers),
+    withLosses: isReached ? lossesBeside(input, site, curves, answers) : null,
     working: [...(hasPeak ? site.working(likely.peakS) : []), ...closingLines(input, likely, samples, doses.likely)],
   };
+}
+
+/** Low and high curves are scaled from the likely one where all amounts are in one proportion, as with a single release. */
+function curvesOf(response: SiteResponse, samples: Samples, sets: Triple<Weights>, solubility: number): Triple<Curve> {
+  const likely = curveOf(response, samples, sets.likely);
+  const other = (set: Weights | null): Curve | null => {
+    if (set === null) return null;
+    const ratio = set[0]! / sets.likely[0]!;
+    const isProportional = set.every((weight, r) => Math.abs(weight - ratio * sets.likely[r]!) <= 1e-12 * weight);
+    return isProportional && likely.peak < solubility ? scaledCurve(likely, ratio, solubility) : curveOf(response, samples, set);
+  };
+  return { low: other(sets.low), likely, high: other(sets.high) };
 }
 
 /** The worst of the action answers. */
@@ -116,12 +128,11 @@ function unknownReason(limitSi: number, peakPerUnit: number, measure: Measure, l
 }
 
 /** Peak and curve with losses, where the estimate itself leaves them out. */
-function lossesBeside(input: RunInput, site: ReceptorSite, likely: Curve, answers: readonly ActionAnswer[], response: SiteResponse, sets: Triple<Weights>): ReceptorAnswer['withLosses'] {
+function lossesBeside(input: RunInput, site: ReceptorSite, curves: Triple<Curve>, answers: readonly ActionAnswer[]): ReceptorAnswer['withLosses'] {
   const { substance } = input.doc;
   if (substance.applyLoss || substance.loss.kind === 'none') return null;
   const lossy = new SiteResponse(site, substance.solubilityKgM3 ?? Infinity, true);
-  const series = thinned(response, likely, sets, answers);
-  const values = series.timesS.map((t) => lossy.at(t, sets.likely));
+  const values = thinned(curves, answers).timesS.map((t) => lossy.at(t, input.weights.likely));
   return { peak: values.reduce((most, value) => Math.max(most, value), 0), likely: values };
 }
 

@@ -129,6 +129,15 @@ function peakTimes(path: RiverPath, reachId: string, km: number, horizonS: numbe
   return times.map((t) => Math.min(horizonS, t));
 }
 
+const MOST_PEAK_TIMES = 16;
+
+/** Distinct times, evenly thinned where many releases bring many. */
+function fewTimes(times: readonly number[]): number[] {
+  const distinct = [...new Set(times)].sort((a, b) => a - b);
+  const n = Math.min(MOST_PEAK_TIMES, distinct.length);
+  return Array.from({ length: n }, (_, i) => distinct[Math.round((i * (distinct.length - 1)) / Math.max(1, n - 1))]!);
+}
+
 /** Largest value over all time on nodes over the whole way of the clouds. */
 export function riverEnvelope(gridding: RiverGridding, weights: Weights, horizonS: number): GriddedField {
   const parts = gridding.states.flatMap((state) => {
@@ -139,7 +148,7 @@ export function riverEnvelope(gridding: RiverGridding, weights: Weights, horizon
   const n = gridding.across.count;
   const profile = new Float64Array(n);
   const values = fill(gridding, grid, (out, at, reachId, km) => {
-    for (const tS of gridding.paths.flatMap((path) => peakTimes(path, reachId, km, horizonS))) {
+    for (const tS of fewTimes(gridding.paths.flatMap((path) => peakTimes(path, reachId, km, horizonS)))) {
       profile.fill(0);
       addAll(gridding, profile, 0, reachId, km, weights, tS);
       for (let j = 0; j < n; j++) if (profile[j]! > out[at + j]!) out[at + j] = profile[j]!;
@@ -173,7 +182,7 @@ export function riverDistanceTime(gridding: RiverGridding, weights: Weights, tim
       addAll(gridding, profile, 0, reachIds[i]!, km, weights, tS);
       // Trapezoid over evenly spaced nodes: the bank nodes count half.
       const mean = profile.reduce((sum, value, j) => sum + (j === 0 || j === n - 1 ? value / 2 : value), 0) / (n - 1);
-      return Math.min(mean, gridding.solubility);
+      return Number(Math.min(mean, gridding.solubility).toPrecision(6));
     }),
   );
   return { timesS: [...timesS], chainageKm, reachIds, values };
