@@ -32,12 +32,16 @@ export const textSchema = (max: number) =>
 export const nameSchema = z.string().trim().min(1, 'Give a name').max(120, 'At most 120 characters');
 export const idSchema = z.string().regex(/^[a-z0-9][a-z0-9-]{0,63}$/, 'An id is made of a-z, 0-9 and hyphens');
 
+/** Below this a figure is none that anybody means, and reckoning with it loses all digits. */
+const SMALLEST = 1e-30;
+
 /** Finite number above zero and at most `max`, with the unit in the message. */
 export const positive = (unit: string, max: number, min = 0) =>
   z
     .number({ error: `Give a number in ${unit}` })
     .gt(min, `Must be above ${min} ${unit}`)
-    .max(max, `Must be at most ${max} ${unit}`);
+    .max(max, `Must be at most ${max} ${unit}`)
+    .refine((value) => value <= 0 || value >= SMALLEST, `Too small to be meant: give at least ${SMALLEST} ${unit}, or 0 where that is allowed`);
 
 /** Finite number of zero or more and at most `max`, with the unit in the message. */
 export const notNegative = (unit: string, max: number) =>

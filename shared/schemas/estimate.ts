@@ -229,8 +229,9 @@ export const mixingSchema = z.discriminatedUnion('kind', [
   /** Constant horizontal tensor. With `turnsWithCurrent` the along axis follows the current; otherwise `axisTowardDeg`. */
   z.object({
     kind: z.literal('constant'),
-    alongM2s: positive('m2/s', 1e5),
-    acrossM2s: positive('m2/s', 1e5),
+    /** Water does not mix less than by the motion of its molecules. */
+    alongM2s: positive('m2/s', 1e5, 1e-9),
+    acrossM2s: positive('m2/s', 1e5, 1e-9),
     turnsWithCurrent: z.boolean().default(true),
     axisTowardDeg: towardDeg.default(0),
   }),
@@ -272,7 +273,7 @@ export type ReceptorKind = z.infer<typeof receptorKindSchema>;
 
 export const actionValueSchema = z.object({
   /** Concentration, kg/m3 or counts/m3. */
-  value: positive('kg/m3', 1e16),
+  value: positive('kg/m3', 1e16, 1e-18),
   basis: textSchema(40).default(''),
   /** 0 means the momentary value decides. */
   averagingS: notNegative('s', 365 * 86_400).default(0),

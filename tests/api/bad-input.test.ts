@@ -35,7 +35,10 @@ const inside = /node_modules|\.ts:\d|\.js:\d|\n\s+at |SQLITE|QueryFailed|TypeErr
 /** Asks and holds the answer to the rules for bad input; gives back the problem where there was one. */
 async function probe(fetchAs: Fetch, address: string, init: RequestInit, label: string): Promise<Problem | null> {
   const leaving = new AbortController();
-  const response = await fetchAs(address, { ...init, signal: leaving.signal });
+  const patience = setTimeout(() => leaving.abort(), 20_000);
+  const response = await fetchAs(address, { ...init, signal: leaving.signal }).catch(() => null);
+  clearTimeout(patience);
+  if (!response) throw new Error(`No answer within 20 s: ${label}`);
   expect(response.status, label).toBeLessThan(500);
   if (response.status < 400) {
     // An answer under way can still fail; what takes long is left, which cancels it.

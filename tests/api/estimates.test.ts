@@ -76,6 +76,9 @@ describe('a document that cannot be estimated names the field, the value and the
   it.each<[string, () => unknown, string, RegExp]>([
     ['a depth of zero', () => { const d = river(); d.water.reaches[0]!.hydraulics[0]!.depthM = 0; return d; }, 'water.reaches.0.hydraulics.0.depthM', /above 0 m.*got 0/],
     ['a negative depth', () => { const d = lake(); d.water.depthM = -4; return d; }, 'water.depthM', /above 0 m.*got -4/],
+    ['a depth too small to be meant', () => { const d = lake(); d.water.depthM = 5e-324; return d; }, 'water.depthM', /Too small.*got 5e-324/],
+    ['mixing below that of molecules', () => { const d = lake(); d.water.mixing = { kind: 'constant', alongM2s: 1e-100, acrossM2s: 1 }; return d; }, 'water.mixing.alongM2s', /above 1e-9 m2\/s.*got 1e-100/],
+    ['an action value too small to be meant', () => { const d = lake(); d.receptors![0]!.actionValues![0]!.value = 5e-324; return d; }, 'receptors.0.actionValues.0.value', /got 5e-324/],
     ['a number that is none', () => ({ ...river(), horizonS: Number.NaN }), 'horizonS', /number in s/],
     ['a date without its offset', () => ({ ...river(), startAt: '2031-05-12T06:40:00' }), 'startAt', /UTC offset.*2031-05-12T06:40:00/],
     ['a day that does not exist', () => ({ ...river(), startAt: '2031-02-30T06:40:00Z' }), 'startAt', /2031-02-30/],

@@ -35,8 +35,8 @@ afterAll(closePool);
 
 const frame = (index: number): StreamHead => ({ type: 'frame', index, timeS: index, grid: { kind: 'channel', parts: [] }, scale: { floor: 1e-9, top: 1 }, max: 0 });
 const stateOf = async (id: string) => (await runs.getHead(id)).state;
-const start = async (solve?: Solve) => {
-  registerRunJobs(deps, solve);
+const start = async (solve?: Solve, silenceLimitMs?: number) => {
+  registerRunJobs(deps, solve, silenceLimitMs);
   await deps.jobs.start();
 };
 /** Sends one frame and then waits until it is told to stop. */
@@ -126,6 +126,15 @@ describe('a run', () => {
     await eventually(async () => expect(await stateOf(runId)).toBe('failed'));
     expect((await runs.getHead(runId)).failure).toMatchObject({ code: 'cannot-be-estimated', errors: [{ path: 'water.reaches.0', message: 'too steep' }] });
     expect((await headsOf(runId)).at(-1)).toMatchObject({ type: 'failed', code: 'cannot-be-estimated' });
+  });
+
+  it('that gives no sign for too long is ended, so that the next one gets its turn', async () => {
+    const { runId } = await saveRevision(deps, buildRiverDocument());
+    const next = await saveRevision(deps, buildRiverDocument());
+    await start(hanging, 200);
+    await eventually(async () => expect(await stateOf(runId)).toBe('failed'));
+    expect((await runs.getHead(runId)).failure).toMatchObject({ code: 'silent', detail: expect.stringContaining('no sign') });
+    await eventually(async () => expect(await stateOf(next.runId)).toBe('failed'));
   });
 
   it('that meets a bug fails without telling its inside', async () => {

@@ -9,6 +9,10 @@ import { type Route, route } from '../../http/routes';
 import { SolverInputError } from '../../solver/errors';
 import { solveInWorker } from '../../workers/pool';
 
+/** One thread solves everybody's previews: none may keep it longer than this. */
+const PREVIEW_LIMIT_MS = 30_000;
+const tooSlow = new SolverInputError([{ path: 'horizonS', message: `This forecast takes longer than ${PREVIEW_LIMIT_MS / 1_000} s: shorten the estimate, take fewer frames, releases or receptors, or save it as a revision, whose run may take its time` }]);
+
 export function estimateRoutes(deps: Deps): Route[] {
   return [
     route({
@@ -16,10 +20,11 @@ export function estimateRoutes(deps: Deps): Route[] {
       body: estimateDocumentSchema, produces: STREAM_TYPE,
       handle: async ({ body, res }) => {
         const gone = goneSignal(res);
+        const late = AbortSignal.timeout(PREVIEW_LIMIT_MS);
         try {
-          await solveInWorker(body, { preview: true, signal: gone, onMessage: (head, payload) => send(res, head, payload) });
+          await solveInWorker(body, { preview: true, signal: AbortSignal.any([gone, late]), onMessage: (head, payload) => send(res, head, payload) });
         } catch (error) {
-          if (!gone.aborted) refuse(deps, res, body, error);
+          if (!gone.aborted) refuse(deps, res, body, late.aborted ? tooSlow : error);
         }
         res.end();
       },

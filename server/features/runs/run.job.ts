@@ -14,17 +14,20 @@ import { RUN_JOB, RunService } from './run.service';
 /** Runs take this many workers at once; previews and mail do not wait for them. */
 const RUNS_AT_ONCE = 1;
 const RENEW_EVERY_MS = 15_000;
+/** A solve that sends nothing for so long is ended: it would hold up every run behind it. */
+const SILENCE_LIMIT_MS = 300_000;
 const SYSTEM = { id: null, name: 'Downreach' };
 
 type Failure = NonNullable<RunRow['failure']>;
 const interrupted: Failure = { code: 'interrupted', detail: 'The server stopped twice while this run was being solved. Run the revision again', errors: [] };
+const silent: Failure = { code: 'silent', detail: 'The solver gave no sign for a long time and was stopped. Shorten the estimate, take fewer releases or receptors, and save another revision', errors: [] };
 const internal = (id: string): Failure => ({ code: 'internal', detail: `Something went wrong on our side while this was being solved. Quote run ${id} when you report it`, errors: [] });
 
 type Solve = typeof solveInWorker;
 
 /** Solves queued runs in worker threads. */
-export function registerRunJobs(deps: Deps, solve: Solve = solveInWorker): void {
-  const work = new RunWork(deps, solve);
+export function registerRunJobs(deps: Deps, solve: Solve = solveInWorker, silenceLimitMs = SILENCE_LIMIT_MS): void {
+  const work = new RunWork(deps, solve, silenceLimitMs);
   deps.jobs.register(RUN_JOB, {
     atOnce: RUNS_AT_ONCE,
     handle: (job, control) => work.solve(job.subjectId, control),
@@ -38,6 +41,7 @@ class RunWork {
   constructor(
     private readonly deps: Deps,
     private readonly solveDocument: Solve,
+    private readonly silenceLimitMs: number,
   ) {
     this.runs = new RunService(deps);
   }
@@ -86,14 +90,21 @@ class RunWork {
       },
       (error) => lost.abort(error),
     );
+    const silence = setTimeout(() => lost.abort(silent), this.silenceLimitMs);
     try {
-      const result = await this.solveDocument(await this.runs.getDocument(run), { preview: false, onMessage: (head, payload) => recorder.add(head, payload), signal: AbortSignal.any([signal, lost.signal]) });
+      const onMessage: RunRecorder['add'] = (head, payload) => {
+        silence.refresh();
+        recorder.add(head, payload);
+      };
+      const result = await this.solveDocument(await this.runs.getDocument(run), { preview: false, onMessage, signal: AbortSignal.any([signal, lost.signal]) });
       await recorder.finish();
       lost.signal.throwIfAborted();
       return { result, passing: recorder.passing };
     } catch (error) {
       await recorder.finish();
       return this.failureOf(run, lost.signal.aborted ? lost.signal.reason : error, signal);
+    } finally {
+      clearTimeout(silence);
     }
   }
 
@@ -106,6 +117,7 @@ class RunWork {
   }
 
   private failureOf(run: RunHead, error: unknown, signal: AbortSignal): Failure {
+    if (error === silent) return silent;
     if (error instanceof SolverInputError) return { code: 'cannot-be-estimated', detail: error.message, errors: error.errors };
     if (!signal.aborted) this.deps.log(`run ${run.id}: ${error instanceof Error ? (error.stack ?? error.message) : String(error)}`);
     return internal(run.id);
