@@ -87,6 +87,17 @@ export const diagnosticsSchema = z.object({
   cappedValues: z.number().int(),
 });
 
+/** Leading edge: first time at 2 % of the peak; end: last time at 10 % of it, null where still above at the end of the estimate. */
+export const travelTimeSchema = z.object({
+  reachId: z.string(),
+  chainageKm: z.number(),
+  leadingEdgeS: z.number(),
+  peakS: z.number(),
+  endS: z.number().nullable(),
+  peak: z.number(),
+});
+export type TravelTime = z.infer<typeof travelTimeSchema>;
+
 export const estimateResultSchema = z.object({
   engineVersion: z.string(),
   solver: z.string(),
@@ -100,6 +111,8 @@ export const estimateResultSchema = z.object({
   distanceTime: z
     .object({ timesS: z.array(z.number()), chainageKm: z.array(z.number()), reachIds: z.array(z.string()), values: z.array(z.array(z.number())) })
     .nullable(),
+  /** Rivers: passage of the cloud by chainage, from the likely section mean. */
+  travelTimes: z.array(travelTimeSchema).optional(),
   checks: z.array(checkSchema),
   diagnostics: diagnosticsSchema,
   /** Working common to all receptors: amounts, hydraulics, coefficients. */

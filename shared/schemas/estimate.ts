@@ -164,8 +164,33 @@ export const reachSchema = z.object({
   coefficientNote: textSchema(500).default(''),
   calibrated: z.boolean().default(false),
   tidal: z.boolean().default(false),
+  /** Dead zones beside the stream: their area over that of the stream, and the share of the stream exchanged with them per second. */
+  storage: z.object({ areaRatio: positive('m2/m2', 20), exchangePerS: positive('1/s', 1) }).optional(),
+  /** Stirred water at the head of the reach through which all of its flow passes: `tanks` equal volumes in a row. */
+  structure: z.object({ kind: z.enum(['weir', 'reservoir']), volumeM3: positive('m3', 1e11), tanks: z.number().int().min(1, 'At least 1 tank').max(20, 'At most 20 tanks').default(1) }).optional(),
+  /**
+   * Tidal current added to the river's own: amplitude at the lower end of the reach, largest ebb (seaward) at `maxEbbS`.
+   * It falls evenly up the reach to that of the tidal reach above, or to none where the tide ends.
+   */
+  tide: z.object({ amplitudeMps: positive('m/s', 10), periodS: positive('s', 40 * 86_400, 600), maxEbbS: z.number().min(-40 * 86_400).max(40 * 86_400) }).optional(),
 });
 export type Reach = z.infer<typeof reachSchema>;
+
+export const dischargeSeriesSchema = z.object({
+  reachId: z.string().min(1).max(64),
+  rows: z
+    .array(z.object({ atS: z.number().min(-60 * 86_400).max(120 * 86_400), dischargeM3s: positive('m3/s', 1e6) }))
+    .min(2, 'A series of discharges needs at least two rows')
+    .max(estimateLimits.tableRows, `At most ${estimateLimits.tableRows} rows`)
+    .superRefine((rows, ctx) => {
+      rows.forEach((row, i) => {
+        const before = rows[i - 1];
+        if (before && row.atS <= before.atS)
+          ctx.addIssue({ code: 'custom', path: [i, 'atS'], message: `Times must ascend: row ${i + 1} (${row.atS} s) is not after row ${i} (${before.atS} s)` });
+      });
+    }),
+});
+export type DischargeSeries = z.infer<typeof dischargeSeriesSchema>;
 
 export const riverWaterSchema = z.object({
   kind: z.literal('river'),
@@ -178,6 +203,8 @@ export const riverWaterSchema = z.object({
     name: z.string().trim().min(1).max(40),
     /** Discharge set for a reach, m3/s; width, depth and velocity follow by power laws through the named flows. */
     discharges: z.array(z.object({ reachId: z.string().max(64), dischargeM3s: positive('m3/s', 1e6) })).max(estimateLimits.reaches).default([]),
+    /** Discharge at the head of a reach against time, linear between rows; times ascend and cover the estimate. Reaches below take up the change as it runs down. */
+    series: z.array(dischargeSeriesSchema).max(estimateLimits.reaches).optional(),
     source: textSchema(300).default(''),
     readAt: instantSchema.nullable().default(null),
   }),
@@ -314,6 +341,8 @@ export const estimateDocumentSchema = z
     releases: z.array(releaseSchema).min(1, 'Place at least one release').max(estimateLimits.releases, `At most ${estimateLimits.releases} releases`),
     receptors: z.array(estimateReceptorSchema).max(estimateLimits.receptors, `At most ${estimateLimits.receptors} receptors: leave out those not on this water`).default([]),
     seed: z.number().int().min(0).max(4_294_967_295).default(1),
+    /** Which way to solve; auto, the default, takes the closed form where it is exact enough. */
+    solver: z.enum(['auto', 'closed-form', 'network', 'bounded', 'box', 'paths']).optional(),
     /** Relative error asked of the release-time integral. */
     tolerance: z.number().min(1e-10).max(1e-2).default(1e-6),
   })
