@@ -267,6 +267,40 @@ export const mixingSchema = z.discriminatedUnion('kind', [
 ]);
 export type Mixing = z.infer<typeof mixingSchema>;
 
+/** A stream in or out: through the shore nearest to its position. Positive into the water. */
+export const throughflowSchema = z.object({
+  name: nameSchema,
+  position: lonLatSchema,
+  dischargeM3s: z.number({ error: 'Give a discharge in m3/s' }).min(-1e6, 'Must be at least -1000000 m3/s').max(1e6, 'Must be at most 1000000 m3/s'),
+});
+export type Throughflow = z.infer<typeof throughflowSchema>;
+
+/** The stretch of outline that is open to other water, between two positions on it; the shorter way round unless said otherwise. */
+export const openEdgeSchema = z.object({
+  from: lonLatSchema,
+  to: lonLatSchema,
+  way: z.enum(['shorter', 'longer']).optional(),
+  /** High less low water, m; the water that a rising level needs comes through the edge. */
+  tideRangeM: notNegative('m', 20).optional(),
+  /** 44,714 s (M2) where not given. */
+  periodS: positive('s', 40 * 86_400, 600).optional(),
+  /** A high water, s after T0; 0 where not given. */
+  highWaterS: z.number().min(-40 * 86_400).max(40 * 86_400).optional(),
+});
+export type OpenEdge = z.infer<typeof openEdgeSchema>;
+
+/** A small basin taken as stirred: what leaves with each tide and with the streams through it. */
+export const boxSchema = z.object({
+  volumeM3: positive('m3', 1e13),
+  surfaceAreaM2: positive('m2', 1e12),
+  tidalRangeM: notNegative('m', 20),
+  periodS: positive('s', 40 * 86_400, 600),
+  /** Share of the water that left on the ebb and comes back on the flood. */
+  returnFraction: z.number().min(0, 'Runs from 0 to 1').max(1, 'Runs from 0 to 1'),
+  dischargeM3s: notNegative('m3/s', 1e6).optional(),
+});
+export type Box = z.infer<typeof boxSchema>;
+
 export const openWaterSchema = z.object({
   kind: z.literal('open'),
   registerId: z.string().max(64).nullable().default(null),
@@ -281,6 +315,13 @@ export const openWaterSchema = z.object({
   mixing: mixingSchema,
   /** Straight shore used by images: the line through two positions, water on the side of the release. */
   straightShore: z.object({ from: lonLatSchema, to: lonLatSchema }).nullable().default(null),
+  throughflows: z.array(throughflowSchema).max(60, 'At most 60 streams').optional(),
+  openEdge: openEdgeSchema.optional(),
+  /** Steady currents known at points, without the tide. */
+  measuredCurrents: z.array(z.object({ position: lonLatSchema, eastMps: z.number().min(-10).max(10), northMps: z.number().min(-10).max(10) })).max(200, 'At most 200 measured currents').optional(),
+  /** Soundings; between them the depth is interpolated, and without any it is `depthM` throughout. */
+  depthPoints: z.array(z.object({ position: lonLatSchema, depthM: positive('m', 12_000) })).max(2_000, 'At most 2,000 depths').optional(),
+  box: boxSchema.optional(),
   coefficientNote: textSchema(500).default(''),
   calibrated: z.boolean().default(false),
 }).superRefine((water, ctx) => {
