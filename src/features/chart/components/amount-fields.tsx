@@ -29,13 +29,15 @@ export function AmountFields({ release, index }: { release: DraftRelease; index:
           ))}
         </SelectInput>
       </Field>
-      <FormFields amount={amount} path={path} onChange={set} basis={draft.substance?.basis ?? ''} />
+      <FormFields amount={amount} path={path} onChange={set} basis={draft.substance?.basis ?? ''} measure={measure} />
       <Working amount={amount} measure={measure} basis={draft.substance?.basis ?? ''} />
     </>
   );
 }
 
-function FormFields({ amount, path, onChange, basis }: { amount: DraftAmount; path: string; onChange: (next: DraftAmount) => void; basis: string }) {
+type FormProps = { amount: DraftAmount; path: string; onChange: (next: DraftAmount) => void; basis: string; measure: 'mass' | 'count' };
+
+function FormFields({ amount, path, onChange, basis, measure }: FormProps) {
   const massError = useErrorAt(`${path}.massKg`);
   const volumeError = useErrorAt(`${path}.volumeM3`);
   const strengthError = useErrorAt(`${path}.strengthKgM3`);
@@ -80,7 +82,7 @@ function FormFields({ amount, path, onChange, basis }: { amount: DraftAmount; pa
         <UnitField
           label="Plan with"
           isOptional
-          scales={unitScales.mass}
+          scales={measure === 'count' ? unitScales.count : unitScales.mass}
           value={amount.standIn}
           error={standInError}
           hint="A stand-in, for example the largest credible amount. Left empty, answers are per kilogram and nothing is said to exceed"

@@ -122,7 +122,7 @@ export function EditWorkspace({ scenario, registers, nowIso, from }: Props) {
         document={live.document}
         isBehind={live.isBehind}
         missing={missing}
-        note={saveRevision.error ? errorText(saveRevision.error) : noteOf(built.document !== null, saved)}
+        note={saveRevision.error ? errorText(saveRevision.error) : noteOf(built.document !== null && live.forecast !== null, saved)}
         horizonS={draft.horizonS ?? automaticHorizonS(draft)}
       />
       {state.phase === 'conflict' && !isPutOff && (

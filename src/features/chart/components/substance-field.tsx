@@ -5,6 +5,8 @@ import { Field } from '../../../components/field';
 import { CheckInput, SelectInput } from '../../../components/inputs';
 import { useChart, useErrorAt } from '../hooks/chart-context';
 import { chooseSubstance } from '../model/draft-actions';
+import { unitScales } from '../model/unit-scales';
+import { UnitField } from './unit-fields';
 
 /** Which substance; its entry brings density, share that counts, losses and the receptors' action values. */
 export function SubstanceField() {
@@ -41,16 +43,39 @@ export function SubstanceField() {
             ))}
         </SelectInput>
       </Field>
-      {substance && substance.loss.kind !== 'none' && (
-        <CheckInput
-          label="Reckon with losses"
-          hint={`${lossWords(substance)}. Left unticked the estimate is conservative, and figures with losses stand beside it`}
-          checked={substance.applyLoss}
-          onChange={(event) => change((now) => (now.substance ? { ...now, substance: { ...now.substance, applyLoss: event.target.checked } } : now))}
-        />
+      {substance && <LossFields substance={substance} onChange={(next) => change((now) => ({ ...now, substance: next }), 'loss')} />}
+    </>
+  );
+}
+
+/** Losses are off unless ticked; their rates may be set for this estimate alone. */
+function LossFields({ substance, onChange }: { substance: EstimateSubstance; onChange: (next: EstimateSubstance) => void }) {
+  const { loss } = substance;
+  const isCount = substance.measure === 'count';
+  if (loss.kind === 'none') return null;
+  const setRate = (patch: Partial<Record<'ratePerS' | 'dayRatePerS' | 'nightRatePerS', number>>) => onChange({ ...substance, loss: { ...loss, ...patch, source: 'typed for this estimate' } });
+  return (
+    <>
+      <CheckInput
+        label="Reckon with losses"
+        hint={`${lossWords(substance)}. Left unticked the estimate is conservative, and figures with losses stand beside it`}
+        checked={substance.applyLoss}
+        onChange={(event) => onChange({ ...substance, applyLoss: event.target.checked })}
+      />
+      {substance.applyLoss && loss.kind === 'first-order' && <LifeField label={isCount ? 'T90' : 'Half-life'} fold={isCount ? Math.LN10 : Math.LN2} ratePerS={loss.ratePerS} onRate={(ratePerS) => setRate({ ratePerS })} />}
+      {substance.applyLoss && loss.kind === 'day-night' && (
+        <>
+          <LifeField label={isCount ? 'T90 by day' : 'Half-life by day'} fold={isCount ? Math.LN10 : Math.LN2} ratePerS={loss.dayRatePerS} onRate={(dayRatePerS) => setRate({ dayRatePerS })} />
+          <LifeField label={isCount ? 'T90 by night' : 'Half-life by night'} fold={isCount ? Math.LN10 : Math.LN2} ratePerS={loss.nightRatePerS} onRate={(nightRatePerS) => setRate({ nightRatePerS })} />
+        </>
       )}
     </>
   );
+}
+
+/** A loss rate as the time in which half, or nine tenths, are gone. An empty field leaves the rate as it was. */
+function LifeField({ label, fold, ratePerS, onRate }: { label: string; fold: number; ratePerS: number; onRate: (ratePerS: number) => void }) {
+  return <UnitField label={label} scales={[unitScales.duration[1], unitScales.duration[0], unitScales.duration[2]]} value={ratePerS > 0 ? fold / ratePerS : null} onChange={(s) => s !== null && s > 0 && onRate(fold / s)} />;
 }
 
 function lossWords({ loss }: EstimateSubstance): string {

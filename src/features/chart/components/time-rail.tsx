@@ -11,7 +11,8 @@ import { RailFlags } from './rail-flags';
 import type { Rows } from './receptors-panel';
 
 const SIDE_PX = 14;
-const LANE_PX = 18;
+/** Tall enough for a plate to be pressed: 24 px is the least target (WCAG 2.2, 2.5.8). */
+const LANE_PX = 24;
 const SCALE_PX = 38;
 const NARROWEST_TICK_PX = 74;
 const PLATE_PX = 56;
@@ -38,7 +39,7 @@ export function TimeRail({ player, startMs, horizonS, offset, place, rows, selec
   const nights = useMemo(() => (place ? nightSpans(startMs, horizonS, place[0], place[1]) : []), [startMs, horizonS, place]);
   const flags = useMemo(() => flagsOf(rows, horizonS, (PLATE_PX / track) * horizonS), [rows, horizonS, track]);
   const ticks = clockTicks(startMs, horizonS, offset, Math.max(2, Math.floor(track / NARROWEST_TICK_PX)));
-  const lanes = Math.min(6, Math.max(1, ...flags.map((flag) => flag.lane + 1)));
+  const lanes = Math.min(5, Math.max(1, ...flags.map((flag) => flag.lane + 1)));
   const laneTop = 6;
   const axisY = laneTop + lanes * LANE_PX + 4;
   const height = axisY + SCALE_PX;
