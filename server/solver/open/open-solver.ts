@@ -36,21 +36,10 @@ export type OpenFacts = {
 
 function prepareOpenWater(input: RunInput): PreparedField {
   const { doc } = input;
-  const water = doc.water as OpenWater;
+  const facts = openFacts(input);
+  const { area, motion, sources } = facts;
   const [originLon, originLat] = doc.releases[0]!.position;
   const plane = { originLon, originLat };
-  const area = planeArea(water.area, originLon, originLat);
-  const shore = water.straightShore ? shoreFrame(toPlane(plane, water.straightShore.from), toPlane(plane, water.straightShore.to)) : null;
-  const freeCurrent = currentOf(water.current);
-  const current = shore ? alongShore(freeCurrent, shore.ex, shore.ey) : freeCurrent;
-  const fromS = Math.min(0, ...input.releases.map((release) => release.profile.startS));
-  const motion: OpenMotion = { current, spread: spreadOf(water.mixing, current, fromS, doc.horizonS, shore), loss: input.loss, mixingDepthM: water.mixingDepthM };
-  const sources = input.releases.map((release): OpenSource => {
-    const [x, y] = toPlane(plane, release.release.position);
-    const at = { x, y };
-    return { release, origins: shore ? [at, mirrored(at, shore)] : [at], startVarianceM2: release.release.initialRadiusM ** 2 / 4 };
-  });
-  const facts: OpenFacts = { input, water, motion, freeCurrent, shore, sources, area };
   const gridding: OpenGridding = {
     motion,
     sources,
@@ -72,6 +61,26 @@ function prepareOpenWater(input: RunInput): PreparedField {
   };
 }
 
+/** Plane, current, spreading and sources of a document in open water; the plane has its origin at the first release. */
+export function openFacts(input: RunInput): OpenFacts {
+  const { doc } = input;
+  const water = doc.water as OpenWater;
+  const [originLon, originLat] = doc.releases[0]!.position;
+  const plane = { originLon, originLat };
+  const area = planeArea(water.area, originLon, originLat);
+  const shore = water.straightShore ? shoreFrame(toPlane(plane, water.straightShore.from), toPlane(plane, water.straightShore.to)) : null;
+  const freeCurrent = currentOf(water.current);
+  const current = shore ? alongShore(freeCurrent, shore.ex, shore.ey) : freeCurrent;
+  const fromS = Math.min(0, ...input.releases.map((release) => release.profile.startS));
+  const motion: OpenMotion = { current, spread: spreadOf(water.mixing, current, fromS, doc.horizonS, shore), loss: input.loss, mixingDepthM: water.mixingDepthM };
+  const sources = input.releases.map((release): OpenSource => {
+    const [x, y] = toPlane(plane, release.release.position);
+    const at = { x, y };
+    return { release, origins: shore ? [at, mirrored(at, shore)] : [at], startVarianceM2: release.release.initialRadiusM ** 2 / 4 };
+  });
+  return { input, water, motion, freeCurrent, shore, sources, area };
+}
+
 const shoreFrame = ([ax, ay]: [number, number], [bx, by]: [number, number]): ShoreFrame => {
   const length = Math.hypot(bx - ax, by - ay);
   return { ex: (bx - ax) / length, ey: (by - ay) / length, x: ax, y: ay };
@@ -83,7 +92,8 @@ const mirrored = (at: { x: number; y: number }, shore: ShoreFrame): { x: number;
   return { x: at.x + 2 * off * shore.ey, y: at.y - 2 * off * shore.ex };
 };
 
-const ontoWater = (area: PlaneArea, x: number, y: number): { x: number; y: number; movedM: number } => {
+/** A place as it stands on the water: itself, or the nearest point of the outline. */
+export const onWater = (area: PlaneArea, x: number, y: number): { x: number; y: number; movedM: number } => {
   if (isInPlaneArea(area, x, y)) return { x, y, movedM: 0 };
   const shore = nearestShore(area, x, y);
   return { x: shore.x, y: shore.y, movedM: shore.distanceM };
@@ -91,7 +101,7 @@ const ontoWater = (area: PlaneArea, x: number, y: number): { x: number; y: numbe
 
 function siteOf(facts: OpenFacts, receptor: EstimateReceptor, toXy: (position: LonLat) => [number, number]): ReceptorSite {
   const { input, motion, sources, area } = facts;
-  const at = ontoWater(area, ...toXy(receptor.position));
+  const at = onWater(area, ...toXy(receptor.position));
   const distanceM = Math.min(...sources.map((source) => Math.hypot(at.x - source.origins[0]!.x, at.y - source.origins[0]!.y)));
   const responses = sources.map((source) => openResponse(motion, source, at.x, at.y, input.doc.horizonS, input.tolerance, input.meter));
   return {
