@@ -12,8 +12,11 @@ type Props = { position: LonLat; frame: Frame; envelope: Envelope | null; water:
 
 /** What the estimate says at a place that was clicked. */
 export function ReadOut({ position, frame, envelope, water, ribbonM, timeS, clock, measure, onClose }: Props) {
-  const now = readFrameAt(frame, position, water, ribbonM);
-  const largest = envelope ? readFrameAt(envelope, position, water, ribbonM) : null;
+  // The grid of a river reaches only as far as the cloud: in the river beside it there is nothing to draw, not nothing known.
+  const onRiver = isOnRiver(position, water, ribbonM);
+  const read = (one: Frame | Envelope) => readFrameAt(one, position, water, ribbonM) ?? (onRiver ? 0 : null);
+  const now = read(frame);
+  const largest = envelope ? read(envelope) : null;
   return (
     <section aria-label="Read-out" aria-live="polite" className="absolute top-3 left-3 z-[1000] w-64 rounded-sm bg-sheet p-3 shadow-float print:hidden">
       <div className="flex items-start justify-between gap-2">
@@ -30,6 +33,11 @@ export function ReadOut({ position, frame, envelope, water, ribbonM, timeS, cloc
 }
 
 const say = (value: number | null, measure: Measure): string => (value === null ? 'no estimate here' : value === 0 ? 'below what is drawn' : sayConcentration(value, measure));
+
+function isOnRiver(position: LonLat, water: EstimateWater, ribbonM: number): boolean {
+  const snap = water.kind === 'river' ? snapToReaches(position, water.reaches) : null;
+  return snap !== null && snap.distanceM <= ribbonM / 2;
+}
 
 function placeText(position: LonLat, water: EstimateWater): string {
   const snap = water.kind === 'river' ? snapToReaches(position, water.reaches) : null;
