@@ -4,9 +4,9 @@ import { auditRoutes } from './audit/audit.routes';
 import { estimateRoutes } from './estimates/estimate.routes';
 import { eventRoutes } from './events/event.routes';
 import { incidentRoutes } from './incidents/incident.routes';
-import { registerRoutes } from './registers/register.routes';
 import { outboxRoutes } from './outbox/outbox.routes';
 import { personRoutes } from './people/person.routes';
+import { registerRoutes } from './registers/register.routes';
 import { runRoutes } from './runs/run.routes';
 import { scenarioRoutes } from './scenarios/scenario.routes';
 import { sessionRoutes } from './session/session.routes';
@@ -20,10 +20,10 @@ export function allRoutes(deps: Deps): Route[] {
     ...personRoutes(deps),
     ...outboxRoutes(deps),
     ...auditRoutes(deps),
+    ...registerRoutes(deps),
     ...watchRoutes(deps),
     ...incidentRoutes(deps),
     ...scenarioRoutes(deps),
-    ...registerRoutes(deps),
     ...runRoutes(deps),
     ...estimateRoutes(deps),
     ...eventRoutes(deps),
