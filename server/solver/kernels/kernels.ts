@@ -1,9 +1,10 @@
 import { compileKernel, type CompiledKernel } from './host';
+import { PoissonSolver } from './poisson';
 import { PuffSum32, PuffSum64 } from './puffs';
 import { VolumeGrid } from './volume';
 
 /** The modules that `build.mjs` makes, by name. */
-export const KERNEL_NAMES = ['puffs', 'volume'] as const;
+export const KERNEL_NAMES = ['puffs', 'volume', 'poisson'] as const;
 export type KernelName = (typeof KERNEL_NAMES)[number];
 export type KernelBytes = Readonly<Record<KernelName, Uint8Array>>;
 
@@ -22,5 +23,6 @@ export function createKernels(bytes: KernelBytes) {
     puffSum64: (nx: number, ny: number, maxPuffs: number) => new PuffSum64(kernel('puffs'), nx, ny, maxPuffs),
     puffSum32: (nx: number, ny: number, maxPuffs: number, kappa?: number) => new PuffSum32(kernel('puffs'), nx, ny, maxPuffs, kappa),
     volumeGrid: (nx: number, ny: number, isWater: Uint8Array) => new VolumeGrid(kernel('volume'), nx, ny, isWater),
+    poissonSolver: (nx: number, ny: number) => new PoissonSolver(kernel('poisson'), nx, ny),
   };
 }

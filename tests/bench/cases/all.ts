@@ -1,6 +1,7 @@
 import type { MakeCase } from '../harness';
 import { puffCases } from './puffs';
+import { poissonCases } from './poisson';
 import { volumeCases } from './volume';
 
 /** Every case by name, in the order they are run. */
-export const cases: Record<string, MakeCase> = { ...puffCases, ...volumeCases };
+export const cases: Record<string, MakeCase> = { ...puffCases, ...volumeCases, ...poissonCases };

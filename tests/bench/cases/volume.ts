@@ -24,13 +24,13 @@ async function prepare(peer: Peer | null, n: number): Promise<Prepared> {
   for (let k = 0; k < COMPARED_STEPS; k++) grid.step();
   const ours = start.map((_, k) => grid.c[grid.index(k % n, Math.floor(k / n))]!);
 
-  let exact = start;
+  let exact: Float64Array = start;
   if (peer) {
     const { flowX, flowY, diffusionX, diffusionY } = closeShores(problem);
     for (const [name, values] of Object.entries({ flowX, flowY, diffusionX, diffusionY, c: start, water: Float64Array.from(problem.isWater) })) writeFileSync(peer.path(name), raw(values));
     await peer.ask('volume.setup', { n, folder: peer.path('.') });
     exact = await peer.array('volume.result', { steps: COMPARED_STEPS });
-  } else for (let k = 0; k < COMPARED_STEPS; k++) exact = plainVolumeStep(exact, problem, k % 2 === 0).c as Float64Array<ArrayBuffer>;
+  } else for (let k = 0; k < COMPARED_STEPS; k++) exact = plainVolumeStep(exact, problem, k % 2 === 0).c;
 
   for (let k = COMPARED_STEPS; k < BOOK_STEPS; k++) grid.step();
   const drift = Math.abs(grid.total() + grid.lost - before) / before;
