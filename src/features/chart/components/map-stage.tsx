@@ -1,8 +1,7 @@
-import { useEffect, useMemo, useState } from 'react';
+import { useCallback, useEffect, useMemo, useState } from 'react';
 import { useMapEvents } from 'react-leaflet';
 import type L from 'leaflet';
 import { isRiver } from '../../../../shared/assemble';
-import { EARTH_RADIUS_M } from '../../../../shared/geo';
 import type { Measure } from '../../../../shared/format';
 import type { LonLat } from '../../../../shared/schemas/basics';
 import type { EstimateDocument, EstimateWater } from '../../../../shared/schemas/estimate';
@@ -15,16 +14,19 @@ import { FrameLayer } from '../../../map/frame-layer';
 import { ReceptorLayer } from '../../../map/receptor-layer';
 import { ReleaseLayer, type ReleaseMark } from '../../../map/release-layer';
 import { RiverLayer } from '../../../map/river-layer';
-import { THIN_RIBBON_PX } from '../../../map/sheets';
+import { leastRibbonM } from '../../../map/channel-course';
+import { metresPerPixelAt } from '../../../map/mercator';
+import { PlacePreview, type Snapped } from '../../../map/place-preview';
 import { useChart } from '../hooks/chart-context';
 import type { Clock } from '../model/arrival-words';
 import { formatTimeOfDay } from '../../../../shared/format';
 import { placeRelease } from '../model/draft-actions';
 import { frameIndexAt, type Forecast } from '../model/forecast';
-import { NEAR_WATER_M, type Place } from '../model/place';
+import { NEAR_WATER_M, placeAt, type Place } from '../model/place';
 import { boundsOf } from '../model/bounds';
 import { MapLegend } from './map-legend';
 import { ReadOut } from './read-out';
+import { StationMarks } from './station-marks';
 import type { Rows } from './receptors-panel';
 
 type Props = {
@@ -52,7 +54,7 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
   const [probe, setProbe] = useState<LonLat | null>(null);
   const [refused, setRefused] = useState<{ why: string; nearest: Place | null } | null>(null);
   const [showsEnvelope, setShowsEnvelope] = useState(true);
-  const [metresPerPixel, setMetresPerPixel] = useState(50);
+  const [{ metresPerPixel, ribbonM }, setScale] = useState({ metresPerPixel: 50, ribbonM: 0 });
   const water = document?.water ?? null;
   const index = forecast ? frameIndexAt(forecast, timeS) : null;
   const frame = forecast && index !== null ? (forecast.frames[index] ?? null) : null;
@@ -87,6 +89,14 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
     else setProbe(position);
   };
 
+  const preview = useCallback(
+    (position: LonLat): Snapped => {
+      const answer = placeAt(position, registers.waters, Math.max(NEAR_WATER_M, CLICK_PX * metresPerPixel));
+      return answer.place ? { position: answer.place.position, words: answer.place.words } : { position: null, words: answer.why, nearest: answer.nearest?.position ?? null };
+    },
+    [registers.waters, metresPerPixel],
+  );
+
   const waterId = draft.water?.registerId ?? '';
   const fitTo = useMemo(() => boundsOf([...draft.releases.map((release) => release.position), ...draft.receptors.map((receptor) => receptor.position)]),
     // The view follows a change of water only: it must stay still while a release is dragged.
@@ -101,10 +111,12 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
   return (
     <div className={classNames('relative h-full min-h-0 overflow-hidden [grid-area:stage] print:h-[105mm]', className)}>
       <DistrictMap theme={theme} label="Map of the district" onClick={click} fitTo={fitTo}>
-        <ScaleReport onScale={setMetresPerPixel} />
+        <ScaleReport onScale={setScale} />
         <KeepInView position={receptors.find((receptor) => receptor.id === selectedId)?.position ?? null} />
         <RiverLayer reaches={reaches} />
         {water && forecast && <CloudLayers forecast={forecast} frame={frame} water={water} theme={theme} measure={measure} showsEnvelope={showsEnvelope} />}
+        <StationMarks waterId={waterId} />
+        {isPlacing && <PlacePreview snap={preview} />}
         <ReceptorLayer receptors={receptors} answers={answers} numbers={numbers} selectedId={selectedId} onSelect={onSelect} />
         <ReleaseLayer releases={releases} selectedId={selectedReleaseId} onSelect={selectRelease} {...(isReadOnly ? {} : { onMove: (id: string, position: LonLat, ended: boolean) => (ended ? letGo(id, position) : carry(id, position)) })} />
       </DistrictMap>
@@ -121,7 +133,7 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
         </div>
       )}
       {forecast && forecast.levels.length > 0 && <MapLegend levels={forecast.levels} measure={measure} theme={theme} showsEnvelope={showsEnvelope} onEnvelope={setShowsEnvelope} />}
-      {probe && frame && water && <ReadOut position={probe} frame={frame} envelope={forecast?.envelope ?? null} water={water} ribbonM={THIN_RIBBON_PX * metresPerPixel} timeS={frame.head.timeS} clock={clock} measure={measure} onClose={() => setProbe(null)} />}
+      {probe && frame && water && <ReadOut position={probe} frame={frame} envelope={forecast?.envelope ?? null} water={water} ribbonM={ribbonM} timeS={frame.head.timeS} clock={clock} measure={measure} onClose={() => setProbe(null)} />}
       {(missing ? forecast !== null || draft.releases.length > 0 : isBehind) && (
         <p className={classNames('pointer-events-none absolute inset-x-0 bottom-0 z-[999] bg-sheet/85 px-4 py-1.5 text-center font-semibold print:hidden', !missing && 'transition-opacity delay-500 duration-150 starting:opacity-0')}>
           {!missing ? 'Solving the change' : forecast ? <><s className="font-normal text-ink2">Forecast of the last complete figures.</s> {missing}</> : `Next: ${missing.charAt(0).toLowerCase()}${missing.slice(1)}`}
@@ -142,8 +154,10 @@ function CloudLayers({ forecast, frame, water, theme, measure, showsEnvelope }: 
   );
 }
 
-/** Tells how many metres a pixel is, so that a click on a river drawn as a thin ribbon is read as in the river. */
-function ScaleReport({ onScale }: { onScale: (metresPerPixel: number) => void }) {
+type Scale = { metresPerPixel: number; ribbonM: number };
+
+/** Tells how many metres a pixel and a thin river's ribbon are, so that a click on the ribbon is read as in the river. */
+function ScaleReport({ onScale }: { onScale: (scale: Scale) => void }) {
   const map = useMapEvents({ zoomend: () => onScale(scaleOf(map)) });
   useEffect(() => onScale(scaleOf(map)), [map, onScale]);
   return null;
@@ -159,4 +173,4 @@ function KeepInView({ position }: { position: LonLat | null }) {
   return null;
 }
 
-const scaleOf = (map: L.Map): number => (2 * Math.PI * EARTH_RADIUS_M * Math.cos((map.getCenter().lat * Math.PI) / 180)) / 2 ** (map.getZoom() + 8);
+const scaleOf = (map: L.Map): Scale => ({ metresPerPixel: metresPerPixelAt(map.getCenter().lat, map.getZoom()), ribbonM: leastRibbonM(map.getCenter().lat, map.getZoom()) });

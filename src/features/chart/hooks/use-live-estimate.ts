@@ -3,8 +3,8 @@ import { apiPaths } from '../../../../shared/api-paths';
 import type { FieldError } from '../../../../shared/problem';
 import type { EstimateDocument } from '../../../../shared/schemas/estimate';
 import { api, ApiError } from '../../../lib/api-client';
+import { readEstimateStream } from '../../../lib/estimate-stream';
 import { emptyForecast, withMessage, type Forecast } from '../model/forecast';
-import { readStream } from '../model/read-stream';
 
 /** Short enough not to be felt, long enough for one solution per burst of key strokes. */
 const WAIT_MS = 60;
@@ -68,9 +68,9 @@ async function solve(
   };
   try {
     const response = await api.raw('POST', apiPaths.estimates, document, { signal: abort.signal });
-    await readStream(response, (head, payload) => {
-      forecast = withMessage(forecast, head, payload);
-      if (head.type === 'failed') fail({ key, text: `${head.title}. ${head.detail}`, errors: head.errors });
+    await readEstimateStream(response, (message) => {
+      forecast = withMessage(forecast, message);
+      if (message.type === 'failed') fail({ key, text: `${message.title}. ${message.detail}`, errors: message.errors });
       const isWorthShowing = forecast.frames.length > 0 || forecast.result !== null;
       if (isAsked || !isWorthShowing) return;
       isAsked = true;

@@ -2,9 +2,9 @@ import { useQuery } from '@tanstack/react-query';
 import { useEffect, useState } from 'react';
 import { apiPaths } from '../../../../shared/api-paths';
 import { api } from '../../../lib/api-client';
+import { readEstimateStream } from '../../../lib/estimate-stream';
 import { runQuery } from '../api';
 import { emptyForecast, withMessage, type Forecast } from '../model/forecast';
-import { readStream } from '../model/read-stream';
 
 type Loaded = { runId: string; forecast: Forecast; isWhole: boolean; isBroken: boolean };
 
@@ -24,8 +24,8 @@ export function useStoredRun(runId: string | null) {
     };
     const read = async () => {
       const response = await api.raw('GET', apiPaths.runFrames(runId), undefined, { signal: abort.signal });
-      await readStream(response, (head, payload) => {
-        forecast = withMessage(forecast, head, payload);
+      await readEstimateStream(response, (message) => {
+        forecast = withMessage(forecast, message);
         if (isAsked) return;
         isAsked = true;
         requestAnimationFrame(() => publish(false));

@@ -1,22 +1,20 @@
 import { describe, expect, it } from 'vitest';
-import { encodeValues, MessageReader, writeMessage } from '../../../../shared/frames';
+import { encodeValues } from '../../../../shared/frames';
 import { emptyForecast, frameIndexAt, withMessage, type Forecast } from './forecast';
 
 const grid = { kind: 'plane' as const, originLon: 0, originLat: 0, x0M: 0, y0M: 0, dxM: 1, dyM: 1, nx: 2, ny: 1 };
 const scale = { floor: 1e-9, top: 1 };
 
 function withFrames(indexes: number[]): Forecast {
-  const started = withMessage(emptyForecast, { type: 'start', solver: 's', engineVersion: '1', unit: 'kg/m3', levels: [], frameTimesS: [0, 100, 200] }, new Uint8Array(0));
+  const started = withMessage(emptyForecast, { type: 'start', solver: 's', engineVersion: '1', unit: 'kg/m3', levels: [], frameTimesS: [0, 100, 200] });
   return indexes.reduce((forecast, index) => {
     const codes = encodeValues(Float64Array.from([0.5, 0]), scale);
-    const bytes = writeMessage({ type: 'frame', index, timeS: index * 100, grid, scale, max: 0.5 }, new Uint8Array(codes.buffer));
-    const [message] = new MessageReader().push(bytes);
-    return withMessage(forecast, message!.head, message!.payload);
+    return withMessage(forecast, { type: 'frame', frame: { head: { type: 'frame', index, timeS: index * 100, grid, scale, max: 0.5 }, codes } });
   }, started);
 }
 
 describe('a forecast as it streams in', () => {
-  it('reads the codes of a frame out of its message', () => {
+  it('keeps the codes of a frame at its index', () => {
     expect([...withFrames([0]).frames[0]!.codes]).toEqual([...encodeValues(Float64Array.from([0.5, 0]), scale)]);
   });
 

@@ -1,6 +1,7 @@
-import type { EnvelopeHead, FrameHead, StreamHead } from '../../../../shared/frames';
+import type { EnvelopeHead, FrameHead } from '../../../../shared/frames';
 import type { Check, EstimateResult, Level, ReceptorAnswer } from '../../../../shared/schemas/estimate-result';
 import type { FieldError } from '../../../../shared/problem';
+import type { EstimateMessage } from '../../../lib/estimate-stream';
 
 export type Frame = { head: FrameHead; codes: Uint16Array };
 export type Envelope = { head: EnvelopeHead; codes: Uint16Array };
@@ -20,28 +21,25 @@ export type Forecast = {
 
 export const emptyForecast: Forecast = { unit: 'kg/m3', levels: [], frameTimesS: [], frames: [], envelope: null, answers: [], result: null, progress: null, failed: null };
 
-/** The payload is a copy that starts at a fresh buffer, so it can be read in place. */
-const codesOf = (payload: Uint8Array): Uint16Array => new Uint16Array(payload.buffer, payload.byteOffset, payload.byteLength / 2);
-
-export function withMessage(forecast: Forecast, head: StreamHead, payload: Uint8Array): Forecast {
-  switch (head.type) {
+export function withMessage(forecast: Forecast, message: EstimateMessage): Forecast {
+  switch (message.type) {
     case 'start':
-      return { ...emptyForecast, unit: head.unit, levels: head.levels, frameTimesS: head.frameTimesS };
+      return { ...emptyForecast, unit: message.unit, levels: message.levels, frameTimesS: message.frameTimesS };
     case 'progress':
-      return { ...forecast, progress: { stage: head.stage, done: head.done, of: head.of } };
+      return { ...forecast, progress: { stage: message.stage, done: message.done, of: message.of } };
     case 'receptor':
-      return { ...forecast, answers: [...forecast.answers.filter((answer) => answer.receptorId !== head.answer.receptorId), head.answer] };
+      return { ...forecast, answers: [...forecast.answers.filter((answer) => answer.receptorId !== message.answer.receptorId), message.answer] };
     case 'frame': {
       const frames = forecast.frames.slice();
-      frames[head.index] = { head, codes: codesOf(payload) };
+      frames[message.frame.head.index] = message.frame;
       return { ...forecast, frames };
     }
     case 'envelope':
-      return { ...forecast, envelope: { head, codes: codesOf(payload) } };
+      return { ...forecast, envelope: message.frame };
     case 'result':
-      return { ...forecast, result: head.result, answers: head.result.receptors, levels: head.result.levels, frameTimesS: head.result.frameTimesS, progress: null };
+      return { ...forecast, result: message.result, answers: message.result.receptors, levels: message.result.levels, frameTimesS: message.result.frameTimesS, progress: null };
     case 'failed':
-      return { ...forecast, progress: null, failed: { title: head.title, detail: head.detail, errors: head.errors } };
+      return { ...forecast, progress: null, failed: { title: message.title, detail: message.detail, errors: message.errors } };
   }
 }
 

@@ -6,6 +6,7 @@ import type { Scenario } from '../../../../shared/schemas/incidents';
 import { Notice } from '../../../components/notice';
 import { Loading } from '../../../components/progress-text';
 import { errorText } from '../../../lib/form-errors';
+import { serverNowMs } from '../../../lib/server-clock';
 import { registerQuery, revisionQuery, runQuery, scenarioQuery } from '../api';
 import { EditWorkspace } from '../components/edit-workspace';
 import { StoredWorkspace } from '../components/stored-workspace';
@@ -55,7 +56,7 @@ function Edited({ scenario, registers }: { scenario: Scenario; registers: Regist
   const fromRevision = (location.state as { fromRevision?: number } | null)?.fromRevision ?? null;
   const revision = useQuery({ ...revisionQuery(scenario.id, fromRevision ?? 0), enabled: fromRevision !== null });
   // A new draft starts at the present minute.
-  const [nowIso] = useState(() => isoWithOffset(Math.floor(Date.now() / 60_000) * 60_000, scenario.utcOffset));
+  const [nowIso] = useState(() => isoWithOffset(Math.floor(serverNowMs() / 60_000) * 60_000, scenario.utcOffset));
   if (fromRevision !== null && !revision.data) return revision.error ? <Failed error={revision.error} /> : <Padded><Loading what={`revision ${fromRevision}`} /></Padded>;
   return <EditWorkspace scenario={scenario} registers={registers} nowIso={nowIso} from={fromRevision !== null && revision.data ? readDraft(revision.data.document, nowIso) : null} />;
 }
