@@ -1,10 +1,11 @@
 import { compileKernel, type CompiledKernel } from './host';
+import { ChannelTubes } from './channel';
 import { PoissonSolver } from './poisson';
 import { PuffSum32, PuffSum64 } from './puffs';
 import { VolumeGrid } from './volume';
 
 /** The modules that `build.mjs` makes, by name. */
-export const KERNEL_NAMES = ['puffs', 'volume', 'poisson'] as const;
+export const KERNEL_NAMES = ['puffs', 'volume', 'poisson', 'channel'] as const;
 export type KernelName = (typeof KERNEL_NAMES)[number];
 export type KernelBytes = Readonly<Record<KernelName, Uint8Array>>;
 
@@ -24,5 +25,6 @@ export function createKernels(bytes: KernelBytes) {
     puffSum32: (nx: number, ny: number, maxPuffs: number, kappa?: number) => new PuffSum32(kernel('puffs'), nx, ny, maxPuffs, kappa),
     volumeGrid: (nx: number, ny: number, isWater: Uint8Array) => new VolumeGrid(kernel('volume'), nx, ny, isWater),
     poissonSolver: (nx: number, ny: number) => new PoissonSolver(kernel('poisson'), nx, ny),
+    channelTubes: (cells: number, tubes: number) => new ChannelTubes(kernel('channel'), cells, tubes),
   };
 }

@@ -1,7 +1,8 @@
 import type { MakeCase } from '../harness';
 import { puffCases } from './puffs';
+import { channelCases } from './channel';
 import { poissonCases } from './poisson';
 import { volumeCases } from './volume';
 
 /** Every case by name, in the order they are run. */
-export const cases: Record<string, MakeCase> = { ...puffCases, ...volumeCases, ...poissonCases };
+export const cases: Record<string, MakeCase> = { ...puffCases, ...volumeCases, ...poissonCases, ...channelCases };
