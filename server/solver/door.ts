@@ -3,6 +3,7 @@ import type { FieldError } from '../../shared/problem';
 import type { EstimateDocument, OpenWater, RiverWater } from '../../shared/schemas/estimate';
 import { SolverInputError } from './errors';
 import { lengthText, sig } from './format';
+import { networkErrors } from './network/network-door';
 import { isInPlaneArea, nearestShore, planeArea } from './open/area-mask';
 import { RECEPTOR_SNAP_M } from './open/open-solver';
 import { reachStates } from './river/reach-state';
@@ -73,5 +74,5 @@ function riverErrors(doc: EstimateDocument, water: RiverWater): FieldError[] {
       ? [{ path, message: `${positionText(place.position)} lies ${lengthText(off)} from km ${place.channel.chainageKm} of ${state.reach.name}: mend the position or the chainage` }]
       : [];
   };
-  return [...doc.releases.flatMap((release, i) => offRiver(release, `releases.${i}.position`)), ...doc.receptors.flatMap((receptor, i) => offRiver(receptor, `receptors.${i}.position`))];
+  return [...networkErrors(doc, water), ...doc.releases.flatMap((release, i) => offRiver(release, `releases.${i}.position`)), ...doc.receptors.flatMap((receptor, i) => offRiver(receptor, `receptors.${i}.position`))];
 }

@@ -34,7 +34,7 @@ const PREVIEW_TOLERANCE = 1e-4;
 export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options: SolveOptions = {}): EstimateResult {
   checkDoor(doc);
   const input = runInput(doc, options);
-  const solver = solverFor(doc.water);
+  const solver = solverFor(doc);
   const field = solver.prepare(input);
   const frameTimesS = Array.from({ length: doc.frameCount }, (_, k) => (doc.horizonS * (k + 1)) / doc.frameCount);
   const frames = new FrameWriter(input, field, frameTimesS, sink);
@@ -55,6 +55,7 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
     frameTimesS,
     receptors: answers,
     distanceTime: field.distanceTime(frameTimesS, input.weights.likely),
+    ...(field.travelTimes && !input.isPreview ? { travelTimes: field.travelTimes(input.weights.likely) } : {}),
     checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...field.checks, ...sites.flatMap((site) => site.checks)],
     diagnostics,
     working: [...amountWorking(input), ...field.working],

@@ -1,9 +1,28 @@
-import type { EstimateWater } from '../../shared/schemas/estimate';
+import type { EstimateDocument, EstimateWater } from '../../shared/schemas/estimate';
+import { SolverInputError } from './errors';
+import { networkFeatures } from './network/network-door';
+import { networkSolver } from './network/network-solver';
 import { openWaterSolver } from './open/open-solver';
 import { riverSolver } from './river/river-solver';
 import type { Solver } from './types';
 
-/** Which solver takes which water. */
-const table: Record<EstimateWater['kind'], Solver> = { river: riverSolver, open: openWaterSolver };
+type Way = Exclude<NonNullable<EstimateDocument['solver']>, 'auto'>;
 
-export const solverFor = (water: EstimateWater): Solver => table[water.kind];
+/** Which solver takes which water in which way. */
+const table: Record<EstimateWater['kind'], Partial<Record<Way, Solver>>> = {
+  river: { 'closed-form': riverSolver, network: networkSolver },
+  open: { 'closed-form': openWaterSolver },
+};
+
+/** The closed form where it is exact enough, the numeric way where the water asks for it. */
+function automatic(doc: EstimateDocument): Way {
+  return doc.water.kind === 'river' && networkFeatures(doc.water).length > 0 ? 'network' : 'closed-form';
+}
+
+export function solverFor(doc: EstimateDocument): Solver {
+  const way = doc.solver === undefined || doc.solver === 'auto' ? automatic(doc) : doc.solver;
+  const solver = table[doc.water.kind][way];
+  if (solver) return solver;
+  const ways = ['auto', ...Object.keys(table[doc.water.kind])].join(', ');
+  throw new SolverInputError([{ path: 'solver', message: `"${way}" does not solve this kind of water: choose one of ${ways}` }]);
+}

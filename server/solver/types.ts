@@ -1,6 +1,6 @@
 import type { FrameGrid, StreamHead } from '../../shared/frames';
 import type { EstimateDocument, EstimateReceptor } from '../../shared/schemas/estimate';
-import type { Check, WorkingLine } from '../../shared/schemas/estimate-result';
+import type { Check, TravelTime, WorkingLine } from '../../shared/schemas/estimate-result';
 import type { LossClock } from './loss';
 import type { Meter } from './meter';
 import type { ResolvedRelease, WeightSet, Weights } from './release-profile';
@@ -56,6 +56,8 @@ export type PreparedField = {
   envelope(frameTimesS: readonly number[], weights: Weights): GriddedField;
   distanceTime(timesS: readonly number[], weights: Weights): DistanceTime | null;
   books(tS: number, weights: Weights): Books;
+  /** Rivers: passage by chainage; left out in previews. */
+  travelTimes?(weights: Weights): TravelTime[];
   readonly working: readonly WorkingLine[];
   readonly checks: readonly Check[];
 };

@@ -1,0 +1,310 @@
+import type { PathFlow } from './path-flow';
+import { disperse } from './sweep';
+import type { Tubes } from './tubes';
+
+/** Parcels at an edge keep below this share of the largest concentration, so that the closed end is not felt. */
+const EDGE_SHARE = 1e-13;
+/** Parcels at an edge below this share are left out. */
+const DROP_SHARE = 1e-17;
+
+/** Where a row of parcels may reach: between stirred waters, or beyond the ends of the river. */
+export type ChainLimits = {
+  readonly topM: number;
+  readonly endM: number;
+  /** True where what passes the end goes into stirred water. */
+  readonly isCut: boolean;
+};
+
+export type Amounts = Float64Array;
+
+/**
+ * A row of water parcels between two places, which keep their water and move with the flow: advection without numerical
+ * diffusion, whatever the flow does. In steady flow all parcels are one time step long, so that after every step each
+ * stands where the one before it stood: the shift of a unit Courant number. The row covers the cloud and grows at its
+ * ends as the cloud spreads.
+ *
+ * Lanes of a parcel: tubes of the first layer, then of the second (the same cloud with losses).
+ */
+export class Chain {
+  from = 0;
+  to = 0;
+  private capacity = 512;
+  /** Upper face of each parcel, m; `face[to]` is the lower face of the last. */
+  face: Float64Array = new Float64Array(this.capacity + 1);
+  volume: Float64Array = new Float64Array(this.capacity);
+  /** Reach whose discharge the volume of a parcel goes by. */
+  stage = new Int16Array(this.capacity);
+  value: Float64Array;
+  private rhs: Float64Array;
+  private upper = new Float64Array(this.capacity);
+  private conductance = new Float64Array(this.capacity + 1);
+  private explicit = new Float64Array(this.capacity + 1);
+  private readonly scratch: Float64Array;
+  readonly lanes: number;
+  /** What left over the end, and what was left out at the edges, by layer. */
+  readonly left: Amounts;
+  readonly dropped: Amounts;
+  largestMixing = 0;
+  private margin = 8;
+
+  constructor(
+    readonly flow: PathFlow,
+    readonly tubes: Tubes,
+    readonly layers: number,
+    readonly limits: ChainLimits,
+    /** Length of a new parcel, m, at a place. */
+    private readonly lengthAt: (xM: number) => number,
+  ) {
+    this.lanes = tubes.count * layers;
+    this.value = new Float64Array(this.capacity * this.lanes);
+    this.rhs = new Float64Array(this.capacity * this.lanes);
+    this.scratch = new Float64Array(2 * tubes.count);
+    this.left = new Float64Array(layers);
+    this.dropped = new Float64Array(layers);
+  }
+
+  get isEmpty(): boolean {
+    return this.to === this.from;
+  }
+
+  centre(p: number): number {
+    return (this.face[p]! + this.face[p + 1]!) / 2;
+  }
+
+  /** Starts the row with one clean parcel. */
+  begin(upperM: number, tS: number): void {
+    this.from = this.to = this.capacity >> 1;
+    this.face[this.from] = upperM;
+    this.appendBelow(tS);
+  }
+
+  private appendBelow(tS: number): void {
+    if (this.to >= this.capacity) this.recentre();
+    const p = this.to++;
+    this.face[p + 1] = this.flow.below(this.face[p]!, this.lengthAt(this.face[p]!));
+    this.fillClean(p, tS);
+  }
+
+  /** Adds a clean parcel at the upper end; false where the row has reached its top. */
+  appendAbove(tS: number): boolean {
+    const upper = this.flow.above(this.face[this.from]!, this.lengthAt(this.face[this.from]! - 1e-6));
+    const length = this.face[this.from]! - upper;
+    // Half a parcel may stand above the top: a release there lies in the middle of its parcel.
+    if (upper < this.limits.topM - 0.5001 * length) return false;
+    if (this.from === 0) this.recentre();
+    const p = --this.from;
+    this.face[p] = upper;
+    this.fillClean(p, tS);
+    return true;
+  }
+
+  private fillClean(p: number, tS: number): void {
+    const x = this.centre(p);
+    const r = this.flow.reachAt(x);
+    this.stage[p] = r;
+    const length = this.face[p + 1]! - this.face[p]!;
+    this.volume[p] = this.flow.isSteady ? this.flow.dischargeM3s(r, x, tS) * this.flow.travelS(this.face[p]!, this.face[p + 1]!) : this.flow.areaM2(r, x, tS) * length;
+    this.value.fill(0, p * this.lanes, (p + 1) * this.lanes);
+  }
+
+  /** Moves all parcels with the flow; those that have come into a larger river take up its water. */
+  move(tS: number, dtS: number): void {
+    for (let p = this.from; p <= this.to; p++) this.face[p] = this.flow.advance(this.face[p]!, tS, dtS);
+    this.passEnd();
+    for (let p = this.from; p < this.to; p++) {
+      const x = this.centre(p);
+      const r = this.flow.reachAt(x);
+      // Water that a tide brings back up has mixed already.
+      while (this.stage[p]! < r) this.enter(p, this.stage[p]! + 1, tS + dtS);
+    }
+  }
+
+  private enter(p: number, r: number, tS: number): void {
+    const { x0, joined } = this.flow.reaches[r]!;
+    const before = this.flow.dischargeM3s(r - 1, x0, tS);
+    const after = this.flow.dischargeM3s(r, x0, tS);
+    const grown = after / before;
+    this.stage[p] = r;
+    this.volume[p]! *= grown;
+    const at = p * this.lanes;
+    const n = this.tubes.count;
+    for (let layer = 0; layer < this.layers; layer++) {
+      const start = at + layer * n;
+      if (joined) {
+        // Its stretch of the joined river; what the discharges lack or have over goes evenly over the section.
+        const share = this.flow.reaches.some((reach) => reach.wave) ? Math.min(0.9999, Math.max(1e-4, before / after)) : joined.share;
+        const low = joined.low === 0 ? 0 : joined.low >= 1 - joined.share - 1e-9 ? 1 - share : (joined.low / (1 - joined.share)) * (1 - share);
+        this.tubes.join(this.scratch, this.value, start, low, share);
+        for (let j = 0; j < n; j++) this.value[start + j] = this.scratch[j]! / (grown * share);
+      } else for (let j = start; j < start + n; j++) this.value[j]! /= grown;
+    }
+  }
+
+  /** Takes out what has passed the end; a parcel half-way is cut where stirred water begins. */
+  private passEnd(): void {
+    const { endM, isCut } = this.limits;
+    while (this.to > this.from && this.face[this.to]! > endM) {
+      const p = this.to - 1;
+      const length = this.face[p + 1]! - this.face[p]!;
+      const overshoot = (this.face[p + 1]! - endM) / length;
+      // A sliver goes with the rest.
+      const beyond = overshoot > 1 - 1e-6 ? 1 : overshoot;
+      if (beyond < 1 && !isCut) return;
+      for (let layer = 0; layer < this.layers; layer++) this.left[layer]! += beyond * this.massOf(p, layer);
+      if (beyond >= 1) this.to--;
+      else {
+        this.volume[p]! *= 1 - beyond;
+        this.face[p + 1] = endM;
+        return;
+      }
+    }
+  }
+
+  /** Puts an amount into the water at x, spread over the two nearest parcels so that its place is kept; `shares` over the tubes. */
+  inject(xM: number, amount: Amounts, shares: Float64Array): void {
+    let low = this.from;
+    let high = this.to - 1;
+    while (low < high) {
+      const mid = (low + high + 1) >> 1;
+      if (this.centre(mid) <= xM) low = mid;
+      else high = mid - 1;
+    }
+    const next = low + 1;
+    let share = 0;
+    if (next < this.to && this.stage[next] === this.stage[low]) share = Math.min(1, Math.max(0, (xM - this.centre(low)) / (this.centre(next) - this.centre(low))));
+    this.put(low, 1 - share, amount, shares);
+    if (share > 0) this.put(next, share, amount, shares);
+  }
+
+  private put(p: number, part: number, amount: Amounts, shares: Float64Array): void {
+    for (let layer = 0; layer < this.layers; layer++)
+      for (let j = 0; j < this.tubes.count; j++)
+        this.value[p * this.lanes + layer * this.tubes.count + j]! += (part * amount[layer]! * shares[j]!) / (this.tubes.share[j]! * this.volume[p]!);
+  }
+
+  /** Mixing across and dispersion along over dt. */
+  spread(tS: number, dtS: number): void {
+    const { flow, tubes } = this;
+    const perSpacing = dtS / tubes.spacing ** 2;
+    let before = -Infinity;
+    for (let p = this.from; p < this.to; p++) {
+      const x = this.centre(p);
+      const r = flow.reachAt(x);
+      const strength = flow.mixingPerS(r, x, tS) * perSpacing;
+      for (let layer = 0; layer < this.layers; layer++) tubes.mix(this.value, p * this.lanes + layer * tubes.count, strength, this.scratch);
+      if (p > this.from) this.conductance[p] = this.conductanceOf(p, x - before, tS);
+      before = x;
+    }
+    let most = 0;
+    for (let p = this.from + 1; p < this.to; p++) most = Math.max(most, (this.conductance[p]! * dtS) / this.volume[p]!);
+    this.margin = Math.min(200, Math.ceil(6 + 8 * Math.sqrt(most)));
+    this.largestMixing = Math.max(this.largestMixing, most);
+    if (this.to - this.from > 1) disperse(this.value, this.rhs, this.upper, this.volume, this.conductance, this.explicit, this.from, this.to, this.lanes, dtS);
+  }
+
+  /** Conductance of the face above parcel p: area times dispersion over the distance of the centres. */
+  private conductanceOf(p: number, distanceM: number, tS: number): number {
+    if (distanceM <= 0) return 0;
+    const { flow } = this;
+    const [a, b] = [this.stage[p - 1]!, this.stage[p]!];
+    // While two waters are just meeting, only what lies side by side could exchange: it waits for one step.
+    for (let r = a + 1; r <= b; r++) if (flow.reaches[r]!.joined) return 0;
+    const x = this.face[p]!;
+    const r = flow.reachAt(x);
+    const areas = this.volume[p - 1]! / (x - this.face[p - 1]!) + this.volume[p]! / (this.face[p + 1]! - x);
+    const area = flow.isTidal ? areas / 2 : flow.areaM2(r, x, tS);
+    return (area * flow.dispersionM2s(r, x, tS)) / distanceM;
+  }
+
+  massOf(p: number, layer: number): number {
+    let sum = 0;
+    const at = p * this.lanes + layer * this.tubes.count;
+    for (let j = 0; j < this.tubes.count; j++) sum += this.tubes.share[j]! * this.value[at + j]!;
+    return sum * this.volume[p]!;
+  }
+
+  /** Amount of a layer between two places. */
+  mass(layer: number, fromM = -Infinity, toM = Infinity): number {
+    let sum = 0;
+    for (let p = this.from; p < this.to; p++) {
+      const x = this.centre(p);
+      if (x >= fromM && x < toM) sum += this.massOf(p, layer);
+    }
+    return sum;
+  }
+
+  /** Multiplies the layer with losses by what survives. */
+  lose(layer: number, survival: number): void {
+    const n = this.tubes.count;
+    for (let p = this.from; p < this.to; p++) for (let l = p * this.lanes + layer * n; l < p * this.lanes + (layer + 1) * n; l++) this.value[l]! *= survival;
+  }
+
+  private largestAt(p: number): number {
+    let most = 0;
+    for (let l = p * this.lanes; l < p * this.lanes + this.tubes.count; l++) if (this.value[l]! > most) most = this.value[l]!;
+    return most;
+  }
+
+  /**
+   * Fits the row to its cloud: clean parcels where it nears an end or where [coverFrom, coverTo] is not covered, and
+   * the ends left out where nothing worth naming is left.
+   */
+  fit(tS: number, coverFromM: number, coverToM: number): void {
+    let peak = 0;
+    for (let p = this.from; p < this.to; p++) peak = Math.max(peak, this.largestAt(p));
+    const edge = peak * EDGE_SHARE;
+    this.trim(peak * DROP_SHARE, coverFromM, coverToM);
+    let first = this.from;
+    while (first < this.to && this.largestAt(first) <= edge) first++;
+    let last = this.to - 1;
+    while (last >= this.from && this.largestAt(last) <= edge) last--;
+    const above = first < this.to ? this.margin - (first - this.from) : 0;
+    const below = first < this.to ? this.margin - (this.to - 1 - last) : 0;
+    for (let i = 0; i < above && this.appendAbove(tS); i++);
+    while (this.face[this.from]! > coverFromM && this.appendAbove(tS));
+    for (let i = 0; i < below && this.appendBelowEnd(tS); i++);
+    while (this.face[this.to]! < coverToM && this.appendBelowEnd(tS));
+  }
+
+  private appendBelowEnd(tS: number): boolean {
+    if (this.face[this.to]! >= this.limits.endM) return false;
+    this.appendBelow(tS);
+    return true;
+  }
+
+  private trim(least: number, coverFromM: number, coverToM: number): void {
+    const room = 3 * this.margin;
+    while (this.to - this.from > room && this.face[this.from + 1]! < coverFromM && this.largestAt(this.from) <= least && this.largestAt(this.from + 1) <= least) this.drop(this.from++);
+    while (this.to - this.from > room && this.face[this.to - 1]! > coverToM && this.largestAt(this.to - 1) <= least && this.largestAt(this.to - 2) <= least) this.drop(--this.to);
+  }
+
+  private drop(p: number): void {
+    for (let layer = 0; layer < this.layers; layer++) this.dropped[layer]! += this.massOf(p, layer);
+  }
+
+  private recentre(): void {
+    const count = this.to - this.from;
+    const capacity = count * 3 > this.capacity ? 2 * this.capacity : this.capacity;
+    const start = (capacity - count) >> 1;
+    const moved = (array: Float64Array, length: number, per: number, extra = 0): Float64Array => {
+      const out = new Float64Array(length);
+      out.set(array.subarray(this.from * per, this.to * per + extra), start * per);
+      return out;
+    };
+    this.face = moved(this.face, capacity + 1, 1, 1);
+    this.volume = moved(this.volume, capacity, 1);
+    this.value = moved(this.value, capacity * this.lanes, this.lanes);
+    const stage = new Int16Array(capacity);
+    stage.set(this.stage.subarray(this.from, this.to), start);
+    this.stage = stage;
+    if (capacity !== this.capacity) {
+      this.rhs = new Float64Array(capacity * this.lanes);
+      this.upper = new Float64Array(capacity);
+      this.conductance = new Float64Array(capacity + 1);
+      this.explicit = new Float64Array(capacity + 1);
+    }
+    this.capacity = capacity;
+    this.from = start;
+    this.to = start + count;
+  }
+}
