@@ -3,9 +3,10 @@ import { ChannelTubes } from './channel';
 import { PoissonSolver } from './poisson';
 import { PuffSum32, PuffSum64 } from './puffs';
 import { VolumeGrid } from './volume';
+import { BoxWalk } from './walk';
 
 /** The modules that `build.mjs` makes, by name. */
-export const KERNEL_NAMES = ['puffs', 'volume', 'poisson', 'channel'] as const;
+export const KERNEL_NAMES = ['puffs', 'volume', 'poisson', 'channel', 'walk'] as const;
 export type KernelName = (typeof KERNEL_NAMES)[number];
 export type KernelBytes = Readonly<Record<KernelName, Uint8Array>>;
 
@@ -26,5 +27,6 @@ export function createKernels(bytes: KernelBytes) {
     volumeGrid: (nx: number, ny: number, isWater: Uint8Array) => new VolumeGrid(kernel('volume'), nx, ny, isWater),
     poissonSolver: (nx: number, ny: number) => new PoissonSolver(kernel('poisson'), nx, ny),
     channelTubes: (cells: number, tubes: number) => new ChannelTubes(kernel('channel'), cells, tubes),
+    boxWalk: (paths: number, lengthXM: number, lengthYM: number, seed: number) => new BoxWalk(kernel('walk'), paths, lengthXM, lengthYM, seed),
   };
 }

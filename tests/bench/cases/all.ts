@@ -3,6 +3,7 @@ import { puffCases } from './puffs';
 import { channelCases } from './channel';
 import { poissonCases } from './poisson';
 import { volumeCases } from './volume';
+import { walkCases } from './walk';
 
 /** Every case by name, in the order they are run. */
-export const cases: Record<string, MakeCase> = { ...puffCases, ...volumeCases, ...poissonCases, ...channelCases };
+export const cases: Record<string, MakeCase> = { ...puffCases, ...volumeCases, ...poissonCases, ...walkCases, ...channelCases };

@@ -20,7 +20,7 @@ function c(index: usize): v128 {
 // @ts-ignore: decorator
 @inline
 export function exp2lanes(xIn: v128): v128 {
-  const x = f64x2.max(xIn, c(0));
+  const x = f64x2.pmax(xIn, c(0));
   const magic = c(2); // 1.5 * 2^52: its low bits hold the nearest integer
   const shifted = f64x2.add(f64x2.mul(x, c(1)), magic);
   const n = f64x2.sub(shifted, magic);
@@ -42,7 +42,7 @@ export function exp2lanes(xIn: v128): v128 {
 // @ts-ignore: decorator
 @inline
 export function exp2lanesShort(xIn: v128): v128 {
-  const x = f64x2.max(xIn, c(0));
+  const x = f64x2.pmax(xIn, c(0));
   const magic = c(2);
   const shifted = f64x2.add(f64x2.mul(x, c(1)), magic);
   const n = f64x2.sub(shifted, magic);

@@ -160,10 +160,10 @@ function addPuff(lanes: i32, grid: usize, stride: i32, nx: i32, ny: i32, puff: u
     const dy = f64x2(<f64>j - y, <f64>j + 1.0 - y);
     const down = f64x2.mul(f64x2.mul(dy, dy), vInverse);
     const centre = f64x2.add(vX, f64x2.mul(dy, vSlope));
-    const half = f64x2.sqrt(f64x2.mul(f64x2.max(f64x2.sub(vCut, down), zero), vVariance));
+    const half = f64x2.sqrt(f64x2.mul(f64x2.pmax(f64x2.sub(vCut, down), zero), vVariance));
     // Limits are brought inside the grid, and a row that misses it altogether gets its last below its first.
-    const from = f64x2.max(f64x2.ceil(f64x2.sub(centre, half)), zero);
-    const to = f64x2.min(f64x2.floor(f64x2.add(centre, half)), vLast);
+    const from = f64x2.pmax(f64x2.ceil(f64x2.sub(centre, half)), zero);
+    const to = f64x2.pmin(f64x2.floor(f64x2.add(centre, half)), vLast);
     const block = f64x2.floor(f64x2.mul(from, vPerLane));
     const fromBlock = f64x2.mul(block, vLanes);
     const middle = f64x2.nearest(centre);
