@@ -26,6 +26,7 @@ export type LogEntry = z.infer<typeof logEntrySchema>;
 export const nextArrivalSchema = z.object({
   incidentId: z.string(),
   scenarioId: z.string(),
+  scenarioName: z.string(),
   runId: z.string(),
   receptorCode: z.string(),
   receptorName: z.string(),
@@ -149,7 +150,7 @@ export const runCreateSchema = z.object({ revisionNumber: z.number().int().min(1
 export const watchSchema = z.object({
   incidents: z.array(incidentSchema),
   /** What waits for this person. */
-  waiting: z.array(z.object({ kind: z.enum(['stale-register', 'unsaved-draft', 'failed-run', 'failed-mail', 'password']), text: z.string(), href: z.string(), count: z.number().int() })),
+  waiting: z.array(z.object({ kind: z.enum(['stale-register', 'unsaved-draft', 'failed-run', 'failed-mail']), text: z.string(), href: z.string(), count: z.number().int() })),
   runningRuns: z.array(z.object({ runId: z.string(), scenarioId: z.string(), scenarioName: z.string(), state: runStateSchema, done: z.number(), of: z.number() })),
   serverTime: z.string(),
 });

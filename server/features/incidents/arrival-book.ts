@@ -7,12 +7,12 @@ const KEPT_RUNS = 500;
 const known = new Map<string, RunArrivals>();
 
 /** The coming arrivals of incidents, out of the newest finished run of each scenario. */
-export async function arrivalsByIncident(runs: RunService, incidents: readonly Pick<IncidentRow, 'id' | 'utcOffset'>[], scenarios: readonly { id: string; incidentId: string }[], now: Date): Promise<Map<string, NextArrival[]>> {
-  const incidentOf = new Map(scenarios.map((scenario) => [scenario.id, scenario.incidentId]));
-  const byIncident = new Map<string, RunArrivals[]>();
-  for (const { id, scenarioId } of await runs.latestOf([...incidentOf.keys()], true)) {
-    const incidentId = incidentOf.get(scenarioId)!;
-    byIncident.set(incidentId, [...(byIncident.get(incidentId) ?? []), await arrivalsOfRun(runs, id)]);
+export async function arrivalsByIncident(runs: RunService, incidents: readonly Pick<IncidentRow, 'id' | 'utcOffset'>[], scenarios: readonly { id: string; incidentId: string; name: string }[], now: Date): Promise<Map<string, NextArrival[]>> {
+  const scenarioOf = new Map(scenarios.map((scenario) => [scenario.id, scenario]));
+  const byIncident = new Map<string, (RunArrivals & { scenarioName: string })[]>();
+  for (const { id, scenarioId } of await runs.latestOf([...scenarioOf.keys()], true)) {
+    const { incidentId, name } = scenarioOf.get(scenarioId)!;
+    byIncident.set(incidentId, [...(byIncident.get(incidentId) ?? []), { ...(await arrivalsOfRun(runs, id)), scenarioName: name }]);
   }
   return new Map(incidents.map(({ id, utcOffset }) => [id, nextArrivals(id, utcOffset, byIncident.get(id) ?? [], now.getTime())]));
 }

@@ -19,13 +19,13 @@ const reckoned = (...receptors: { code: string; closingS?: number; answers: Acti
     { startAt: start, receptors: receptors.map(({ code, closingS }) => ({ id: code, code, name: `Name of ${code}`, closingS: closingS ?? null })) } as unknown as EstimateDocument,
     { receptors: receptors.map(({ code, answers }) => ({ receptorId: code, verdict: 'may exceed', answers }) as unknown as ReceptorAnswer) } as unknown as EstimateResult,
   );
-const next = (nowMs: number, ...receptors: Parameters<typeof reckoned>) => nextArrivals('incident-1', '-08:00', [reckoned(...receptors)], nowMs);
+const next = (nowMs: number, ...receptors: Parameters<typeof reckoned>) => nextArrivals('incident-1', '-08:00', [{ ...reckoned(...receptors), scenarioName: 'Whole tank' }], nowMs);
 
 describe('next arrivals', () => {
   it('are rounded to the safe side, with the latest time to begin closing', () => {
     const [arrival] = next(at(0), { code: 'INT-1', closingS: 1_800, answers: [answer([2 * hour + 1_000, 3 * hour, null], [5 * hour, 6 * hour, null])] });
     expect(arrival).toEqual({
-      incidentId: 'incident-1', scenarioId: 'scenario-1', runId: 'run-1', receptorCode: 'INT-1', receptorName: 'Name of INT-1', verdict: 'may exceed',
+      incidentId: 'incident-1', scenarioId: 'scenario-1', scenarioName: 'Whole tank', runId: 'run-1', receptorCode: 'INT-1', receptorName: 'Name of INT-1', verdict: 'may exceed',
       earliestAt: '2031-05-12T08:55:00-08:00', likelyAt: '2031-05-12T09:40:00-08:00', closeByAt: '2031-05-12T08:25:00-08:00',
     });
   });

@@ -45,9 +45,9 @@ function firstExceedance(answers: readonly ActionAnswer[]): Pick<Arrival, 'early
  * Arrivals to come or still lasting, the earliest first. One whose end has passed drops out; one that is above
  * its action value when the estimate ends stays, since the estimate does not know when it ends.
  */
-export function nextArrivals(incidentId: string, utcOffset: string, runs: readonly RunArrivals[], nowMs: number): NextArrival[] {
+export function nextArrivals(incidentId: string, utcOffset: string, runs: readonly (RunArrivals & { scenarioName: string })[], nowMs: number): NextArrival[] {
   return runs
-    .flatMap(({ runId, scenarioId, startMs, arrivals }) =>
+    .flatMap(({ runId, scenarioId, scenarioName, startMs, arrivals }) =>
       arrivals
         .filter(({ endS }) => endS === null || startMs + endS * 1_000 >= nowMs)
         .map((arrival) => ({
@@ -55,6 +55,7 @@ export function nextArrivals(incidentId: string, utcOffset: string, runs: readon
           next: {
             incidentId,
             scenarioId,
+            scenarioName,
             runId,
             receptorCode: arrival.receptorCode,
             receptorName: arrival.receptorName,

@@ -41,10 +41,10 @@ export class IncidentRepository {
     return this.db.read.createQueryBuilder(LogEntryEntity, 'entry').where('entry.incidentId = :incidentId', { incidentId }).orderBy('entry.at').addOrderBy('entry.rowid').getMany();
   }
 
-  async scenarioIdsOf(incidentIds: readonly string[]): Promise<{ id: string; incidentId: string }[]> {
+  async scenarioNamesOf(incidentIds: readonly string[]): Promise<{ id: string; incidentId: string; name: string }[]> {
     return this.db.read
       .createQueryBuilder(ScenarioEntity, 'scenario')
-      .select(['scenario.id', 'scenario.incidentId'])
+      .select(['scenario.id', 'scenario.incidentId', 'scenario.name'])
       .where('scenario.incidentId in (:...incidentIds)', { incidentIds: ['', ...incidentIds] })
       .getMany();
   }

@@ -122,7 +122,7 @@ export class IncidentService {
   }
 
   private async presentAll(actor: Actor, incidents: readonly IncidentRow[]): Promise<Incident[]> {
-    const scenarios = await this.repository.scenarioIdsOf(incidents.map(({ id }) => id));
+    const scenarios = await this.repository.scenarioNamesOf(incidents.map(({ id }) => id));
     const open = incidents.filter(({ state }) => state === 'open');
     const openIds = new Set(open.map(({ id }) => id));
     const arrivals = await arrivalsByIncident(this.runs, open, scenarios.filter(({ incidentId }) => openIds.has(incidentId)), this.deps.now());

@@ -1,4 +1,4 @@
-import { type Action, allows } from '../../../shared/permissions';
+import { allows, registerWriteActions } from '../../../shared/permissions';
 import { type Incident, type Watch, markings } from '../../../shared/schemas/incidents';
 import { type RegisterName, registerNames, staleAfterDays } from '../../../shared/schemas/registers';
 import type { Deps } from '../../deps';
@@ -10,7 +10,6 @@ import { WatchRepository } from './watch.repository';
 
 type Waiting = Watch['waiting'][number];
 
-const mends: Record<RegisterName, Action> = { waters: 'water:write', receptors: 'receptor:write', sources: 'source:write', substances: 'substance:write', stations: 'station:write' };
 const entryWords: Record<RegisterName, [one: string, many: string]> = {
   waters: ['water', 'waters'],
   receptors: ['receptor', 'receptors'],
@@ -62,7 +61,7 @@ export class WatchService {
   }
 
   private async staleEntries(actor: Actor): Promise<Waiting[]> {
-    const registers = registerNames.filter((register) => allows(actor.roles, mends[register]));
+    const registers = registerNames.filter((register) => allows(actor.roles, registerWriteActions[register]));
     const counts = await Promise.all(registers.map((register) => this.repository.countStale(register, this.dayBefore(staleAfterDays[register]))));
     return registers.flatMap((register, i): Waiting[] => {
       const count = counts[i]!;

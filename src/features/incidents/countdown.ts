@@ -11,6 +11,10 @@ function write(seconds: number): string {
   return formatDuration(Math.floor(seconds / step) * step);
 }
 
+const FAR_OFF_MS = 30 * 86_400_000;
+/** So far ahead that a clock time says more than a countdown. */
+export const isFarOff = (ms: number, nowMs: number): boolean => ms - nowMs > FAR_OFF_MS;
+
 /** Time left; after the moment the time since. */
 export function countdownTo(ms: number, nowMs: number): Countdown {
   const leftS = (ms - nowMs) / 1_000;

@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import type { Incident, NextArrival } from '../../../shared/schemas/incidents';
-import { countdownTo } from './countdown';
+import { countdownTo, isFarOff } from './countdown';
 import { byUrgency, matches } from './order';
 
-const arrival = (earliestAt: string): NextArrival => ({ incidentId: 'i', scenarioId: 's', runId: 'r', receptorCode: 'INT-1', receptorName: 'Upper intake', verdict: 'may exceed', earliestAt, likelyAt: null, closeByAt: null });
+const arrival = (earliestAt: string): NextArrival => ({ incidentId: 'i', scenarioId: 's', scenarioName: 'Whole tank', runId: 'r', receptorCode: 'INT-1', receptorName: 'Upper intake', verdict: 'may exceed', earliestAt, likelyAt: null, closeByAt: null });
 const buildIncident = (parts: Partial<Incident>): Incident => ({
   id: 'i',
   number: '2031-001',
@@ -44,6 +44,11 @@ describe('the Watch', () => {
     expect(countdownTo(59_000, 0)).toEqual({ text: 'under 1 min', isPast: false });
     expect(countdownTo(0, 30_000)).toEqual({ text: 'now', isPast: true });
     expect(countdownTo(0, 1_259_000)).toEqual({ text: '20 min', isPast: true });
+  });
+
+  it('counts down to nothing that is more than thirty days off: plans lie at dates that were made up', () => {
+    const day = 86_400_000;
+    expect([29 * day, 31 * day, -40 * day].map((ms) => isFarOff(ms, 0))).toEqual([false, true, false]);
   });
 });
 

@@ -3,7 +3,7 @@ import { formatClock, formatDay, formatDayYear, formatOffset, formatTimeOfDay } 
 import type { NextArrival } from '../../../../shared/schemas/incidents';
 import { RuledList, RuledRow } from '../../../components/ruled-list';
 import { StatusWord } from '../../../components/status-word';
-import { countdownTo } from '../countdown';
+import { countdownTo, isFarOff } from '../countdown';
 
 type ArrivalListProps = { label: string; arrivals: readonly NextArrival[]; offset: string; nowMs: number; isFirstLarge?: boolean };
 
@@ -20,18 +20,12 @@ export function ArrivalList({ label, arrivals, offset, nowMs, isFirstLarge = tru
 
 function ArrivalRow({ arrival, offset, nowMs, isLarge }: { arrival: NextArrival; offset: string; nowMs: number; isLarge: boolean }) {
   const earliest = instantMs(arrival.earliestAt);
-  const { text, isPast } = countdownTo(earliest, nowMs);
   return (
     <RuledRow
       to={`/scenarios/${arrival.scenarioId}?run=${arrival.runId}`}
       openLabel={`Open the forecast for ${arrival.receptorCode} ${arrival.receptorName}`}
       leadWidth="wide"
-      lead={
-        <div className="flex items-baseline gap-x-2 sm:block">
-          <div className={`${isLarge ? 'text-title' : 'text-figure'} font-semibold whitespace-nowrap text-ink`}>{text}</div>
-          <div className="text-note">{isPast ? 'since the earliest arrival' : 'to the earliest arrival'}</div>
-        </div>
-      }
+      lead={<Lead ms={earliest} offset={offset} nowMs={nowMs} isLarge={isLarge} />}
       trail={arrival.closeByAt && <CloseBy atMs={instantMs(arrival.closeByAt)} offset={offset} nowMs={nowMs} />}
     >
       <p className="text-lead">
@@ -39,13 +33,26 @@ function ArrivalRow({ arrival, offset, nowMs, isLarge }: { arrival: NextArrival;
         {arrival.receptorName}
       </p>
       <p className="text-ink2">
-        {isPast ? 'may be there since ' : 'earliest '}
-        <time dateTime={arrival.earliestAt} className="font-semibold whitespace-nowrap text-ink">
-          {clockFrom(earliest, nowMs, offset)}
+        {earliest < nowMs ? 'may be there since ' : 'earliest '}
+        <time dateTime={arrival.earliestAt} className="whitespace-nowrap">
+          <span className="font-semibold text-ink">{clockFrom(earliest, nowMs, offset)}</span> {formatOffset(offset)}
         </time>
-        <Likely arrival={arrival} offset={offset} /> <span className="whitespace-nowrap">{formatOffset(offset)}</span>
+        <Likely arrival={arrival} offset={offset} />
       </p>
+      <p className="text-note break-words text-ink2">{arrival.scenarioName}</p>
     </RuledRow>
+  );
+}
+
+/** What is left of the time; the hour itself where counting down would say nothing. */
+function Lead({ ms, offset, nowMs, isLarge }: { ms: number; offset: string; nowMs: number; isLarge: boolean }) {
+  const { text, isPast } = countdownTo(ms, nowMs);
+  const isFar = isFarOff(ms, nowMs);
+  return (
+    <div className="flex flex-wrap items-baseline gap-x-2 sm:block">
+      <div className={`${isLarge ? 'text-title' : 'text-figure'} font-semibold whitespace-nowrap text-ink`}>{isFar ? formatTimeOfDay(ms, offset) : text}</div>
+      <div className="text-note">{isFar ? `earliest arrival, ${formatDayYear(ms, offset)}` : isPast ? 'since the earliest arrival' : 'to the earliest arrival'}</div>
+    </div>
   );
 }
 
@@ -76,7 +83,7 @@ function CloseBy({ atMs, offset, nowMs }: { atMs: number; offset: string; nowMs:
         <span className="text-ink2">begin closing by </span>
         <span className="text-lead font-semibold">{formatTimeOfDay(atMs, offset)}</span>
       </div>
-      <div className="text-note">{isPast ? <StatusWord tone="attention">passed {text === 'now' ? 'just now' : `${text} ago`}</StatusWord> : <span className="text-ink2">in {text}, {formatDay(atMs, offset)}</span>}</div>
+      <div className="text-note">{isFarOff(atMs, nowMs) ? <span className="text-ink2">{formatDayYear(atMs, offset)}</span> : isPast ? <StatusWord tone="attention">passed {text === 'now' ? 'just now' : `${text} ago`}</StatusWord> : <span className="text-ink2">in {text}, {formatDay(atMs, offset)}</span>}</div>
     </div>
   );
 }

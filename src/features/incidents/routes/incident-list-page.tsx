@@ -2,7 +2,7 @@ import { useQuery } from '@tanstack/react-query';
 import { useState } from 'react';
 import { useNavigate, useSearchParams } from 'react-router-dom';
 import { instantMs } from '../../../../shared/civil';
-import { formatClock, formatDayYear } from '../../../../shared/format';
+import { formatDayYear, formatOffset, formatTimeOfDay } from '../../../../shared/format';
 import type { Incident } from '../../../../shared/schemas/incidents';
 import { Button } from '../../../components/button';
 import { Dialog } from '../../../components/dialog';
@@ -80,9 +80,9 @@ function IncidentRow({ incident }: { incident: Incident }) {
         </>
       }
       trail={
-        <div className="pointer-events-none sm:w-52 sm:text-right">
+        <div className="pointer-events-none sm:w-72 sm:text-right">
           <StatusWord tone={state === 'open' ? 'active' : 'neutral'}>{state}</StatusWord>
-          <div className="text-note text-ink2">{next ? `${next.receptorCode} from ${formatClock(instantMs(next.earliestAt), utcOffset)}` : `${scenarioCount} ${scenarioCount === 1 ? 'scenario' : 'scenarios'}`}</div>
+          <div className="text-note text-ink2">{next ? `${next.receptorCode} from ${formatDayYear(instantMs(next.earliestAt), utcOffset)} ${formatTimeOfDay(instantMs(next.earliestAt), utcOffset)} ${formatOffset(utcOffset)}` : `${scenarioCount} ${scenarioCount === 1 ? 'scenario' : 'scenarios'}`}</div>
         </div>
       }
     >
