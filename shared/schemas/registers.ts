@@ -253,4 +253,4 @@ export type RegisterList<R extends RegisterName = RegisterName> = Omit<z.infer<t
 /** Body of archive and restore. */
 export const registerMoveSchema = z.object({ version: z.number().int().min(1), reason: textSchema(300).default('') });
 /** Body of "checked": somebody has looked at the entry and found it right, today unless said. */
-export const registerCheckedSchema = z.object({ version: z.number().int().min(1), on: daySchema.optional() });
+export const registerCheckedSchema = z.object({ version: z.number().int().min(1), on: daySchema.optional(), reason: textSchema(300).default('') });

@@ -90,10 +90,10 @@ export class RegisterService {
   }
 
   /** Somebody has looked at the entry and found it right. */
-  markChecked(actor: Actor, register: RegisterName, id: string, { version, on }: z.output<typeof registerCheckedSchema>): Promise<RegisterItem> {
+  markChecked(actor: Actor, register: RegisterName, id: string, { version, on, reason }: z.output<typeof registerCheckedSchema>): Promise<RegisterItem> {
     const lastCheckedOn = on ?? this.today();
     this.assertNotAhead(lastCheckedOn, 'on');
-    return this.change(actor, register, id, { action: 'register.check', version, reason: '' }, async (before) => ({ ...before, lastCheckedOn }));
+    return this.change(actor, register, id, { action: 'register.check', version, reason }, async (before) => ({ ...before, lastCheckedOn }));
   }
 
   archive(actor: Actor, register: RegisterName, id: string, { version, reason }: Move): Promise<RegisterItem> {

@@ -61,7 +61,7 @@ const movePaths = { archive: apiPaths.registerArchive, restore: apiPaths.registe
 
 export function useMoveEntry(register: RegisterName, id: string) {
   return useMutation({
-    mutationFn: ({ move, version }: { move: Move; version: number }) => api.post<RegisterItem>(movePaths[move](register, id), { version }),
+    mutationFn: ({ move, version, reason }: { move: Move; version: number; reason: string }) => api.post<RegisterItem>(movePaths[move](register, id), { version, reason }),
     onSuccess: useKeepItem(register),
   });
 }
