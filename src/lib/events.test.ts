@@ -9,8 +9,8 @@ describe('what others do', () => {
   beforeEach(() => void vi.useFakeTimers());
   afterEach(() => void vi.useRealTimers());
 
-  it('makes the incident, its lists and the Watch out of date, and nothing else', () => {
-    expect(keysOf({ topic: 'incident', id: 'i1' })).toEqual([['incidents'], ['incident', 'i1'], ['watch']]);
+  it('makes the incident, its lists, the Watch and the audit trail out of date, and nothing else', () => {
+    expect(keysOf({ topic: 'incident', id: 'i1' })).toEqual([['incidents'], ['incident', 'i1'], ['watch'], ['audit']]);
     expect(keysOf(run('done', 48))).toContainEqual(['scenarios', 'i1']);
     expect(keysOf({ topic: 'outbox', id: 'm1' })).not.toContainEqual(['incidents']);
   });
@@ -22,7 +22,7 @@ describe('what others do', () => {
     for (let i = 0; i < 10; i++) follower.take({ topic: 'incident', id: 'i1' });
     expect(asked).not.toHaveBeenCalled();
     vi.advanceTimersByTime(200);
-    expect(asked.mock.calls.map(([filter]) => filter?.queryKey)).toEqual([['incidents'], ['incident', 'i1'], ['watch']]);
+    expect(asked.mock.calls.map(([filter]) => filter?.queryKey)).toEqual([['incidents'], ['incident', 'i1'], ['watch'], ['audit']]);
   });
 
   it('writes the progress of a run into the Watch without asking the server again', () => {

@@ -3,8 +3,10 @@ import { useEffect, useSyncExternalStore } from 'react';
 import { apiPaths } from '../../shared/api-paths';
 import type { ChangeEvent, Run, RunState, Watch } from '../../shared/schemas/incidents';
 
-/** What a change makes out of date. */
-export function keysOf(event: ChangeEvent): QueryKey[] {
+/** What a change makes out of date; each also leaves its line in the audit trail. */
+export const keysOf = (event: ChangeEvent): QueryKey[] => [...subjectKeys(event), ['audit']];
+
+function subjectKeys(event: ChangeEvent): QueryKey[] {
   switch (event.topic) {
     case 'incident':
       return [['incidents'], ['incident', event.id], ['watch']];

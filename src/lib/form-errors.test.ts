@@ -3,8 +3,8 @@ import { ApiError } from './api-client';
 import { errorText, placeErrors } from './form-errors';
 
 type Form = { name: string; contact: { phone: string } };
-const problem = (errors: { path: string; message: string }[]) =>
-  new ApiError(422, { type: 'about:blank', title: 'Some of this cannot be used', status: 422, detail: 'See the fields.', instance: 'req-1', code: 'bad-input', errors });
+const problem = (errors: { path: string; message: string }[], detail = 'See the fields.') =>
+  new ApiError(422, { type: 'about:blank', title: 'Some of this cannot be used', status: 422, detail, instance: 'req-1', code: 'bad-input', errors });
 
 describe('errors of the server', () => {
   it('stand beside the field they name, and the first one takes the focus', () => {
@@ -23,6 +23,7 @@ describe('errors of the server', () => {
   });
 
   it('give the request id to quote', () => {
-    expect(errorText(problem([]))).toContain('Request req-1.');
+    expect(errorText(problem([]))).toBe('Some of this cannot be used. See the fields. Request req-1.');
+    expect(errorText(problem([], 'Somebody was quicker'))).toBe('Some of this cannot be used. Somebody was quicker. Request req-1.');
   });
 });

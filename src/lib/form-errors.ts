@@ -26,9 +26,11 @@ export function placeErrors<T extends FieldValues>(error: unknown, setError: Use
   return hasFocus ? null : [problem.title, problem.detail].filter(Boolean).join('. ');
 }
 
+const sentence = (text: string): string => (/[.!?]$/.test(text) ? text : `${text}.`);
+
 /** One readable text for any failure, with the request id to quote. */
 export function errorText(error: unknown): string {
   if (!(error instanceof ApiError)) return 'Something went wrong in this page. Load it again; what was saved is kept.';
   const { title, detail, instance } = error.problem;
-  return [`${title}.`, detail, instance ? `Request ${instance}.` : ''].filter(Boolean).join(' ');
+  return [title, detail, instance ? `Request ${instance}` : ''].filter(Boolean).map(sentence).join(' ');
 }
