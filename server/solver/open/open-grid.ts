@@ -53,12 +53,17 @@ export const clipBox = (box: Box, area: PlaneArea): Box | null => {
 export const unionBox = (a: Box | null, b: Box | null): Box | null =>
   !a || !b ? (a ?? b) : { x0: Math.min(a.x0, b.x0), y0: Math.min(a.y0, b.y0), x1: Math.max(a.x1, b.x1), y1: Math.max(a.y1, b.y1), sigmaM: Math.min(a.sigmaM, b.sigmaM) };
 
-/** Five nodes a standard deviation where `maxNodes` allows it, and never fewer than 24 a side. */
+/** Empty cells round the box, so that no isoline ends at the grid's border, not even at a source of no size at its very edge. */
+const MARGIN_CELLS = 3;
+
+/** Five nodes a standard deviation where `maxNodes` allows it, and never fewer than 24 a side, with a margin of empty cells. */
 export function gridFor(box: Box, origin: { originLon: number; originLat: number }, maxNodes: number): PlaneGrid {
-  const nodes = (width: number): number => Math.min(maxNodes, Math.max(24, Math.ceil((5 * width) / Math.max(box.sigmaM, 1e-3)) + 1));
+  const nodes = (width: number): number => Math.min(maxNodes - 2 * MARGIN_CELLS, Math.max(24, Math.ceil((5 * width) / Math.max(box.sigmaM, 1e-3)) + 1));
   const nx = nodes(box.x1 - box.x0);
   const ny = nodes(box.y1 - box.y0);
-  return { kind: 'plane', originLon: origin.originLon, originLat: origin.originLat, x0M: box.x0, y0M: box.y0, dxM: (box.x1 - box.x0) / (nx - 1), dyM: (box.y1 - box.y0) / (ny - 1), nx, ny };
+  const dxM = (box.x1 - box.x0) / (nx - 1);
+  const dyM = (box.y1 - box.y0) / (ny - 1);
+  return { kind: 'plane', originLon: origin.originLon, originLat: origin.originLat, x0M: box.x0 - MARGIN_CELLS * dxM, y0M: box.y0 - MARGIN_CELLS * dyM, dxM, dyM, nx: nx + 2 * MARGIN_CELLS, ny: ny + 2 * MARGIN_CELLS };
 }
 
 /** Adds all releases at time t to `out`, each capped at the strength of what was spilled. */
