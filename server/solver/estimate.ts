@@ -1,5 +1,5 @@
 import type { EstimateDocument } from '../../shared/schemas/estimate';
-import type { EstimateResult, ReceptorAnswer } from '../../shared/schemas/estimate-result';
+import type { EstimateResult, Reached, ReceptorAnswer } from '../../shared/schemas/estimate-result';
 import { commonChecks } from './checks/common-checks';
 import { checkDoor } from './door';
 import { ENGINE_VERSION } from './engine-version';
@@ -9,8 +9,10 @@ import { resolveReleases, weightsOf } from './release-profile';
 import { amountWorking } from './results/amount-working';
 import { packField, largestOf } from './results/frame-message';
 import { contourLevels } from './results/levels';
+import { envelopesUntil, isochroneTimes, reachedLevel, reachedOf } from './results/isochrones';
 import { receptorAnswer } from './results/receptor-answer';
 import { solverFor } from './solvers';
+import { resolutionOf } from './results/resolution';
 import type { Books, EstimateSink, GriddedField, PreparedField, ReceptorSite, RunInput } from './types';
 
 export type SolveOptions = {
@@ -43,9 +45,14 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
   frames.write(0, Math.min(FIRST_FRAMES, doc.frameCount));
   const { answers, sites } = answerReceptors(input, field, sink);
   frames.write(Math.min(FIRST_FRAMES, doc.frameCount), doc.frameCount);
-  frames.writeEnvelope();
+  const reached = frames.writeEnvelope();
   const books = field.books(doc.horizonS, input.weights.likely);
-  const diagnostics = diagnosticsOf(input, books, frames.cappedValues);
+  const diagnostics = {
+    ...diagnosticsOf(input, books, frames.cappedValues),
+    maxCourant: field.numerics?.maxCourant ?? null,
+    clippedValues: field.numerics?.clippedValues ?? 0,
+    ...(input.isPreview ? {} : { resolution: resolutionOf(input, solver, field, answers) }),
+  };
   const result: EstimateResult = {
     engineVersion: ENGINE_VERSION,
     solver: solver.name,
@@ -57,6 +64,7 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
     distanceTime: field.distanceTime(frameTimesS, input.weights.likely),
     ...(field.travelTimes && !input.isPreview ? { travelTimes: field.travelTimes(input.weights.likely) } : {}),
     checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...field.checks, ...sites.flatMap((site) => site.checks)],
+    reached,
     diagnostics,
     working: [...amountWorking(input), ...field.working],
   };
@@ -86,6 +94,8 @@ class FrameWriter {
 
   constructor(
     private readonly input: RunInput,
+  /** Largest value of each frame that has been sent. */
+  private readonly largest: number[] = [];
     private readonly field: PreparedField,
     private readonly timesS: readonly number[],
     private readonly sink: EstimateSink,
@@ -112,14 +122,28 @@ class FrameWriter {
       this.cappedValues += countAt(made.values, this.input.doc.substance.solubilityKgM3);
       this.sink({ type: 'frame', index, timeS: this.timesS[index]!, grid: made.grid, ...head }, payload);
       this.sink({ type: 'progress', stage: 'frames', done: index + 1, of: this.timesS.length });
+      this.largest[index] = head.max;
     }
   }
 
-  writeEnvelope(): void {
+  /** Sends the largest values over all time; gives the lines of first arrival that were found on the way. */
+  writeEnvelope(): Reached | null {
     this.input.meter.assertWanted();
-    const made = this.field.envelope(this.timesS, this.input.weights.likely);
-    const { payload, ...head } = packField(made, this.levels);
-    this.sink({ type: 'envelope', grid: made.grid, ...head }, payload);
+    const { horizonS } = this.input.doc;
+    const level = this.input.weights.isPerUnit ? null : reachedLevel(this.levels);
+    const timesS = level ? this.arrivalTimes(level.value).filter((t) => t < horizonS) : [];
+    const fields = envelopesUntil(this.field, [...timesS, horizonS], this.timesS, this.input);
+    const whole = fields[timesS.length]!;
+    const { payload, ...head } = packField(whole, this.levels);
+    this.sink({ type: 'envelope', grid: whole.grid, ...head }, payload);
+    return level && reachedOf(this.input, level, timesS, fields.slice(0, -1), whole);
+  }
+
+  /** Times for lines of first arrival: from the first release to the first frame without the value. */
+  private arrivalTimes(value: number): number[] {
+    const lastAbove = this.largest.findLastIndex((most) => most >= value);
+    const startS = Math.min(...this.input.releases.map((release) => release.profile.startS));
+    return isochroneTimes(startS, this.timesS[Math.min(lastAbove + 1, this.timesS.length - 1)]!);
   }
 }
 
@@ -145,7 +169,7 @@ function answerReceptors(input: RunInput, field: PreparedField, sink: EstimateSi
   return { answers, sites };
 }
 
-const diagnosticsOf = ({ doc, meter }: RunInput, books: Books, cappedValues: number): EstimateResult['diagnostics'] => ({
+const diagnosticsOf = (input: RunInput, books: Books, cappedValues: number): EstimateResult['diagnostics'] => ({
   massReleased: books.released,
   massInWater: books.inWater,
   massLost: books.lost,

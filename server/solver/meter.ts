@@ -19,6 +19,11 @@ export class Meter {
     if (relative > this.worstError) this.worstError = relative;
   }
 
+  /** Counts apart from this one and stops with it. */
+  fork(): Meter {
+    return new Meter(this.isCancelled);
+  }
+
   assertWanted(): void {
     if (this.isCancelled()) throw new SolverCancelled();
   }

@@ -56,10 +56,18 @@ export type PreparedField = {
   envelope(frameTimesS: readonly number[], weights: Weights): GriddedField;
   distanceTime(timesS: readonly number[], weights: Weights): DistanceTime | null;
   books(tS: number, weights: Weights): Books;
+  /** Largest value at each node up to the last of the times. */
   /** Rivers: passage by chainage; left out in previews. */
+  /** The same up to each of `untilS`, ascending, where that is cheaper in one pass. */
+  envelopes?(untilS: readonly number[], weights: Weights): GriddedField[];
   travelTimes?(weights: Weights): TravelTime[];
   readonly working: readonly WorkingLine[];
   readonly checks: readonly Check[];
 };
 
 export type Solver = { readonly name: string; prepare(input: RunInput): PreparedField };
+  /** How a numeric solver stepped; a closed form leaves it out. */
+  readonly numerics?: Numerics;
+/** For the books: largest Courant number, values set to zero or cut, and how fine cells and steps were, in words. */
+export type Numerics = { readonly maxCourant: number | null; readonly clippedValues: number; readonly resolution: string };
+

@@ -4,7 +4,7 @@ import { fromPlane } from '../../shared/geo';
 import type { EstimateWater } from '../../shared/schemas/estimate';
 import type { Level } from '../../shared/schemas/estimate-result';
 import { alongCourse, courseOf, coursePoint, reachWidthM, ribbonPx, type Course } from './channel-course';
-import { dryNodes } from './dry-nodes';
+import { dryNodes } from '../../shared/dry-nodes';
 import { assertWholeFrame, bridgedCodes, codeOfLevel, type Frame } from './frame';
 import { worldX, worldY, type MapView } from './mercator';
 

@@ -1,4 +1,5 @@
 import type { PlaneGrid } from '../../../shared/frames';
+import type { Meter } from '../meter';
 import type { Weights } from '../release-profile';
 import type { GriddedField } from '../types';
 import { clearLand, type PlaneArea } from './area-mask';
@@ -19,6 +20,7 @@ export type OpenGridding = {
   readonly withLoss: boolean;
   /** Values are capped at the solubility, kg/m3. */
   readonly solubility: number;
+  readonly meter: Meter;
 };
 
 /** Five standard deviations round the clouds at time t, and the smallest standard deviation among them; null before any release. */
@@ -106,37 +108,51 @@ function emptyGrid({ sources, originLon, originLat }: OpenGridding): PlaneGrid {
   return { kind: 'plane', originLon, originLat, x0M: at.x, y0M: at.y, dxM: 1, dyM: 1, nx: 2, ny: 2 };
 }
 
-/** Largest value over all time at each node of one grid over all clouds, from fields close enough for a cloud to move one node or one standard deviation. */
-export function envelopeOf(gridding: OpenGridding, weights: Weights, horizonS: number, maxFields: number): GriddedField {
+/**
+ * Largest value at each node of one grid over all clouds, up to each of the times `untilS` (ascending): from fields close
+ * enough for a cloud to move one node or one standard deviation, in one pass.
+ */
+export function envelopesOf(gridding: OpenGridding, weights: Weights, untilS: readonly number[], maxFields: number): GriddedField[] {
   const { motion, sources, area } = gridding;
   const startS = Math.min(...sources.map((source) => source.release.profile.startS));
+  const endS = untilS[untilS.length - 1]!;
   let cloud: Box | null = null;
-  for (let k = 1; k <= 48; k++) cloud = unionBox(cloud, cloudBox(motion, sources, weights, startS + ((horizonS - startS) * k) / 48));
+  for (let k = 1; k <= 48; k++) cloud = unionBox(cloud, cloudBox(motion, sources, weights, startS + ((endS - startS) * k) / 48));
   const box = cloud && clipBox(cloud, area);
-  if (!box) return { grid: emptyGrid(gridding), values: new Float64Array(4) };
+  if (!box) return untilS.map(() => ({ grid: emptyGrid(gridding), values: new Float64Array(4) }));
   const grid = gridFor(box, gridding, gridding.maxNodes);
-  const out = new Float64Array(grid.nx * grid.ny);
-  const scratch = new Float64Array(out.length);
-  for (const tS of envelopeTimes(gridding, startS, horizonS, Math.max(grid.dxM, grid.dyM), maxFields)) {
+  const most = new Float64Array(grid.nx * grid.ny);
+  const scratch = new Float64Array(most.length);
+  const out: GriddedField[] = [];
+  for (const tS of envelopeTimes(gridding, startS, untilS, Math.max(grid.dxM, grid.dyM), maxFields)) {
+    gridding.meter.assertWanted();
     scratch.fill(0);
     addField(scratch, grid, gridding, weights, tS);
-    for (let i = 0; i < out.length; i++) if (scratch[i]! > out[i]!) out[i] = scratch[i]!;
+    for (let i = 0; i < most.length; i++) if (scratch[i]! > most[i]!) most[i] = scratch[i]!;
+    if (tS !== untilS[out.length]) continue;
+    const values = most.slice();
+    clearLand(values, grid, area);
+    capAt(values, gridding.solubility);
+    out.push({ grid, values });
   }
-  clearLand(out, grid, area);
-  capAt(out, gridding.solubility);
-  return { grid, values: out };
+  return out;
 }
 
-function envelopeTimes({ motion, sources }: OpenGridding, startS: number, horizonS: number, cellM: number, maxFields: number): number[] {
+/** Times from the first release to the last of `untilS`, which are all among them. */
+function envelopeTimes({ motion, sources }: OpenGridding, startS: number, untilS: readonly number[], cellM: number, maxFields: number): number[] {
   const births = sources.map((source) => source.release.profile);
-  const out: number[] = [];
   const speed = Math.max(motion.current.maxSpeedMps, 1e-4);
-  const least = (horizonS - startS) / maxFields;
-  for (let t = startS; t < horizonS && out.length < maxFields; ) {
-    const youngest = Math.min(...births.filter((profile) => profile.startS <= t).map((profile) => t - Math.min(t, profile.stopS)));
-    const sigma = Math.max(cellM, Math.sqrt(motion.spread.smallest(youngest)));
-    t += Math.max(least, sigma / speed);
-    out.push(Math.min(t, horizonS));
+  const endS = untilS[untilS.length - 1]!;
+  const least = (endS - startS) / maxFields;
+  const out: number[] = untilS.filter((until) => until <= startS);
+  let t = startS;
+  for (const until of untilS) {
+    while (t < until) {
+      const youngest = Math.min(...births.filter((profile) => profile.startS <= t).map((profile) => t - Math.min(t, profile.stopS)));
+      const sigma = Math.max(cellM, Math.sqrt(motion.spread.smallest(youngest)));
+      t = Math.min(until, t + Math.max(least, sigma / speed));
+      out.push(t);
+    }
   }
   return out;
 }

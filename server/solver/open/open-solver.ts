@@ -3,11 +3,11 @@ import type { EstimateReceptor, OpenWater } from '../../../shared/schemas/estima
 import type { WorkingLine } from '../../../shared/schemas/estimate-result';
 import { openReceptorChecks, openRunChecks } from '../checks/open-checks';
 import type { LonLat } from '../../../shared/schemas/basics';
-import type { Books, PreparedField, ReceptorSite, RunInput, Solver } from '../types';
+import type { Books, GriddedField, PreparedField, ReceptorSite, RunInput, Solver } from '../types';
 import type { Weights } from '../release-profile';
 import { isInPlaneArea, nearestShore, planeArea, clearLand, type PlaneArea } from './area-mask';
 import { alongShore, currentOf, type Current } from './current';
-import { addField, cloudBox, envelopeOf, fieldAt, gridFor, type OpenGridding } from './open-grid';
+import { addField, cloudBox, envelopesOf, fieldAt, gridFor, type OpenGridding } from './open-grid';
 import { openResponse } from './open-response';
 import { openReceptorWorking, openRunWorking } from './open-working';
 import type { OpenMotion, OpenSource } from './puffs';
@@ -49,11 +49,14 @@ function prepareOpenWater(input: RunInput): PreparedField {
     maxNodes: input.isPreview ? 96 : 160,
     withLoss: doc.substance.applyLoss,
     solubility: doc.substance.solubilityKgM3 ?? Infinity,
+    meter: input.meter,
   };
+  const envelopes = (untilS: readonly number[], weights: Weights): GriddedField[] => envelopesOf(gridding, weights, untilS, input.isPreview ? 60 : 300);
   return {
     receptor: (_index, receptor) => siteOf(facts, receptor, (position) => toPlane(plane, position)),
     gridAt: (tS, weights) => fieldAt(gridding, weights, tS),
-    envelope: (_times, weights) => envelopeOf(gridding, weights, doc.horizonS, input.isPreview ? 60 : 300),
+    envelope: (timesS, weights) => envelopes(timesS.slice(-1), weights)[0]!,
+    envelopes,
     distanceTime: () => null,
     books: (tS, weights) => booksAt(gridding, weights, tS),
     working: openRunWorking(facts),

@@ -121,7 +121,7 @@ function peakTimes(path: RiverPath, reachId: string, km: number, horizonS: numbe
   const place = placeOn(path, reachId, km);
   if (!place) return [];
   const { profile } = path.release;
-  const own = peakTimeAtStation(place.travelS, 1, place.kappaS, 0);
+  const own = Math.max(YOUNGEST_S, peakTimeAtStation(place.travelS, 1, place.kappaS, 0));
   if (profile.isInstant) return [Math.min(horizonS, profile.startS + own)];
   const late = Math.sqrt(2 * place.kappaS * Math.max(place.travelS, place.kappaS));
   const times = [0, 0.25, 0.5, 0.75, 0.9, 1].map((share) => profile.startS + own + share * (profile.stopS - profile.startS));
@@ -129,6 +129,8 @@ function peakTimes(path: RiverPath, reachId: string, km: number, horizonS: numbe
   return times.map((t) => Math.min(horizonS, t));
 }
 
+/** At the very place of a release the solution has no end: it is seen this long after, s. */
+const YOUNGEST_S = 1;
 const MOST_PEAK_TIMES = 16;
 
 /** Distinct times, evenly thinned where many releases bring many. */

@@ -40,7 +40,7 @@ function prepareRiver(input: RunInput): PreparedField {
   return {
     receptor: (_index, receptor) => siteOf(facts, receptor),
     gridAt: (tS, weights) => riverFieldAt(gridding, weights, tS),
-    envelope: (_times, weights) => riverEnvelope(gridding, weights, doc.horizonS),
+    envelope: (timesS, weights) => riverEnvelope(gridding, weights, timesS[timesS.length - 1]!),
     distanceTime: (timesS, weights) => riverDistanceTime(gridding, weights, timesS, input.isPreview ? 80 : 160),
     books: (tS, weights) => booksAt(gridding, weights, tS),
     working: riverRunWorking(facts),

@@ -1,6 +1,6 @@
-import type { PlaneGrid } from '../../shared/frames';
-import { toPlane } from '../../shared/geo';
-import type { LonLat } from '../../shared/schemas/basics';
+import type { PlaneGrid } from './frames';
+import { toPlane } from './geo';
+import type { LonLat } from './schemas/basics';
 
 /**
  * Marks with 1 every node of a grid that lies on land: outside the area's rings by the even-odd rule. The frames say
