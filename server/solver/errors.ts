@@ -18,7 +18,7 @@ export class SolverCancelled extends Error {
 
 /** The solution blew up: a fault of the solver or of figures far outside its range, never shown as a picture. */
 export class SolverDivergedError extends Error {
-  constructor(readonly step: number, readonly timeS: number, readonly cell: string, why: string) {
+  constructor(readonly step: number, readonly timeS: number, readonly cell: string, why = 'the concentration is not a number') {
     super(`The solution broke down at step ${step}, ${timeS.toPrecision(6)} s after T0, in cell ${cell}: ${why}`);
     this.name = 'SolverDivergedError';
   }
