@@ -7,6 +7,7 @@ import { idSchema } from '../../../../shared/schemas/basics';
 import { isRiver } from '../../../../shared/assemble';
 import { evarrow, ollemar, quillock } from '../../../../tiles/district-points';
 import { districtRegisters } from './index';
+import { estuaryStretches, mouthArea } from './places';
 import { districtIncidents } from './scenarios';
 
 const river = districtRegisters.waters.find(({ id }) => id === 'river-ollemar')!.data;
@@ -23,7 +24,7 @@ function offShoreM(position: LonLat, area: readonly (readonly LonLat[])[]): numb
 
 describe('the river network', () => {
   it.each([
-    ['Ollemar', ollemar, ['ol-upper', 'ol-middle', 'ol-lower', 'ol-estuary']],
+    ['Ollemar', ollemar, ['ol-upper', 'ol-middle', 'ol-lower', ...estuaryStretches.map(({ id }) => id)]],
     ['Evarrow', evarrow, ['evarrow']],
     ['Quillock', quillock, ['quillock']],
   ] as const)('passes every surveyed point of the %s at its chainage', (_name, points, reachIds) => {
@@ -113,29 +114,62 @@ describe('the registers', () => {
 });
 
 describe('the demonstration scenarios', () => {
-  const documents = new Map(districtIncidents.flatMap(({ scenarios }) => scenarios.map(({ key, document }) => [key, document])));
+  const scenarios = districtIncidents.flatMap(({ scenarios }) => scenarios);
+  const documents = new Map(scenarios.map(({ key, document }) => [key, document]));
 
-  it('release the amounts of the exercises', () => {
-    const likely = (key: string) => amountOf(documents.get(key)!.releases[0]!.amount).likely!;
-    expect(likely('S01')).toBeCloseTo(822.4, 1); // 4,000 kg x 0.25 x 14.007/17.031
-    expect(likely('S06')).toBeCloseTo(9e13, -9);
-    expect(likely('S06-N')).toBeCloseTo(900, 6);
-    expect(likely('S11')).toBe(20_000);
+  it('are twelve cases and their variants in one library, each with a name and a note of its own', () => {
+    const cases = new Set(districtIncidents.find(({ name }) => name === 'Library of the district')!.scenarios.map(({ key }) => key.split('-')[0]));
+    expect([...cases].sort()).toEqual(['S01', 'S02', 'S03', 'S04', 'S05', 'S06', 'S07', 'S08', 'S09', 'S10', 'S11', 'S12']);
+    for (const what of ['key', 'name', 'note'] as const) expect(new Set(scenarios.map((scenario) => scenario[what])).size).toBe(scenarios.length);
   });
 
-  it('start at the stated clock times and release inside their water', () => {
-    expect([...documents.values()].map(({ startAt }) => startAt)).toEqual(['2031-05-12T06:40:00-08:00', '2031-07-06T05:30:00-08:00', '2031-07-06T05:30:00-08:00', '2031-08-02T03:00:00-08:00']);
-    for (const document of documents.values())
-      for (const { position, channel } of document.releases)
-        if (document.water.kind === 'open') expect(isInArea(position, document.water.area)).toBe(true);
-        else expect(channel).toMatchObject({ reachId: 'ol-upper', chainageKm: 48, bank: 'right' });
+  it.each([
+    ['S01', 822.4, 0.05], // 4,000 kg x 0.25 x 14.007/17.031
+    ['S02', 144, 1e-9],
+    ['S03', 2.5, 1e-9],
+    ['S04', 450, 1e-9],
+    ['S05-2', 30, 1e-9],
+    ['S06', 9e13, 1],
+    ['S06-N', 900, 1e-9],
+    ['S07', 509, 0.05], // 2,000 kg x 63.546/249.677
+    ['S08', 18, 1e-9],
+    ['S09', 25, 1e-9],
+    ['S10', 2.88e14, 1],
+    ['S11', 20_000, 1e-9],
+    ['S12', 5.832e13, 1],
+    ['S12-N', 2_041.2, 1e-9],
+  ])('%s releases %d kg or counts', (key, amount, within) => expect(Math.abs(amountOf(documents.get(key)!.releases[0]!.amount).likely! - amount)).toBeLessThanOrEqual(within));
+
+  it('start at the local clock and release inside their water', () => {
+    for (const { startAt, releases, water } of documents.values()) {
+      expect(startAt).toMatch(/-08:00$/);
+      for (const { position, channel } of releases)
+        if (water.kind === 'open') expect(isInArea(position, water.area)).toBe(true);
+        else expect(water.reaches.map(({ id }) => id)).toContain(channel?.reachId);
+    }
   });
 
-  it('ask of each reached receptor a value for their substance', () => {
+  it('ask of each receptor that decides a value for their substance', () => {
     const valued = (key: string) => documents.get(key)!.receptors.filter(({ actionValues }) => actionValues.length > 0).map(({ code }) => code);
     expect(valued('S01')).toEqual(expect.arrayContaining(['INT-1', 'IRR-1', 'INT-2']));
+    expect(valued('S02')).toEqual(expect.arrayContaining(['HAT-1', 'INT-2']));
+    expect(valued('S03')).toEqual(expect.arrayContaining(['INT-2', 'ECO-1']));
+    expect(valued('S04')).toEqual(expect.arrayContaining(['STK-1', 'INT-1', 'INT-2']));
+    expect(valued('S05-2')).toEqual(['INT-3', 'BCH-2']);
     expect(valued('S06')).toEqual(['BCH-2']);
     expect(valued('S06-N')).toEqual(['INT-3', 'BCH-2']);
+    expect(valued('S08')).toEqual(expect.arrayContaining(['INT-4', 'SHL-1', 'AQ-1']));
+    expect(valued('S09')).toEqual(expect.arrayContaining(['ECO-1', 'IND-1']));
+    expect(valued('S10')).toContain('BCH-1');
     expect(valued('S11')).toEqual(expect.arrayContaining(['INT-4', 'BCH-1', 'AQ-1']));
+    expect(valued('S12')).toContain('BCH-1');
+    expect(valued('S12-N')).toEqual(expect.arrayContaining(['INT-4', 'BCH-1']));
+  });
+
+  it('join bay and estuary into one simple outline that holds both', () => {
+    const area = mouthArea();
+    // The quay and the overflow in the estuary, the mouth itself, and the bay.
+    for (const place of [[-117.2916, -44.4945], [-117.2668, -44.4995], [-117.304, -44.4975], [-117.43, -44.48]] as LonLat[]) expect(isInArea(place, area)).toBe(true);
+    expect(isInArea([-117.28, -44.48], area)).toBe(false);
   });
 });

@@ -1,4 +1,4 @@
-import { areaOf, centrelineOf, type ReachId } from './places';
+import { areaOf, centrelineOf, estuaryStretches, type ReachId } from './places';
 import { INVENTED, type WrittenItem } from './seed-item';
 
 type Row = [dischargeM3s: number, widthM: number, depthM: number, velocityMps: number];
@@ -19,6 +19,18 @@ const PERIOD_S = 12.42 * 3_600;
 const MAX_FLOOD_S = -PERIOD_S / 4;
 const tide = (majorMps: number, floodTowardDeg: number) => ({ kind: 'tide' as const, name: 'M2', majorMps, floodTowardDeg, periodS: PERIOD_S, maxFloodS: MAX_FLOOD_S });
 const residual = (speedMps: number, towardDeg: number) => ({ kind: 'residual' as const, speedMps, towardDeg });
+/** The estuary as a channel: fresh water over a widening section. An estimate adds the tide of the day. */
+const estuaryReaches = () =>
+  estuaryStretches.map(({ id, fromKm, toKm, widthM, depthM }, i) => {
+    const row = (dischargeM3s: number): Row => [dischargeM3s, widthM, depthM, dischargeM3s / (widthM * depthM)];
+    return {
+      ...reach(id, `Ollemar estuary, km ${fromKm} to ${toKm === 0 ? 'the bar' : toKm}`, 'OL', null, hydraulics(row(5.8), row(16.5), row(48)), { downstreamReachId: estuaryStretches[i + 1]?.id ?? null }),
+      dispersionM2s: 80,
+      tidal: true,
+      coefficientNote: 'Velocity is river flow over section, without the tide. Dispersion 80 m2/s averaged over the tide (invented; 30 to 300 is common, Fischer et al. 1979).',
+    };
+  });
+
 const TIDE_TEXT =
   'Level 2.0 + A cos(2 pi (t - high water) / 12.42 h) m above chart datum, A 1.6 m at springs and 0.7 m at neaps. The current runs a quarter of a tide behind: strongest ebb 3.1 h after high water. The states below put high water at T0; set the time of strongest flood for the day at hand. High water at the bar 12 May 2031 05:10 and 17:35 UTC-08:00 (springs).';
 
@@ -32,13 +44,8 @@ export const waters: WrittenItem<'waters'>[] = [
       reaches: [
         reach('ol-upper', 'Ollemar, km 54.0 to Evarrow', 'OL', 0.0005, hydraulics([3.2, 21.2, 0.6, 0.253], [9, 24, 0.95, 0.395], [28, 27.5, 1.58, 0.643]), { downstreamReachId: 'ol-middle' }),
         reach('ol-middle', 'Ollemar, Evarrow to Quillock', 'OL', 0.0004, hydraulics([5.2, 28.4, 0.74, 0.248], [14, 32, 1.15, 0.38], [40, 36.3, 1.84, 0.597]), { downstreamReachId: 'ol-lower' }),
-        reach('ol-lower', 'Ollemar, Quillock to Low Weir', 'OL', 0.0003, hydraulics([5.8, 31.8, 0.78, 0.234], [16.5, 36, 1.25, 0.367], [48, 40.9, 2.02, 0.581]), { downstreamReachId: 'ol-estuary' }),
-        {
-          ...reach('ol-estuary', 'Ollemar estuary, Low Weir to the bar', 'OL', null, hydraulics([5.8, 558, 4.6, 0.00226], [16.5, 558, 4.6, 0.00643], [48, 558, 4.6, 0.0187]), { downstreamReachId: null }),
-          dispersionM2s: 80,
-          tidal: true,
-          coefficientNote: 'Means over 14 km; velocity is river flow over section, without the tide. Width 1,220 / 900 / 600 / 350 / 150 / 60 m and mean depth 6 / 6 / 5 / 4 / 3 / 2 m at km 0 / 3 / 6 / 9 / 12 / 14. Dispersion 80 m2/s averaged over the tide (invented; 30 to 300 is common, Fischer et al. 1979).',
-        },
+        reach('ol-lower', 'Ollemar, Quillock to Low Weir', 'OL', 0.0003, hydraulics([5.8, 31.8, 0.78, 0.234], [16.5, 36, 1.25, 0.367], [48, 40.9, 2.02, 0.581]), { downstreamReachId: 'ol-estuary-12' }),
+        ...estuaryReaches(),
         reach('evarrow', 'Evarrow Water, Thessaby Dam to Ollemar', 'EV', 0.0012, hydraulics([2, 12.5, 0.53, 0.301], [5, 14, 0.8, 0.446], [12, 15.6, 1.19, 0.65]), { downstreamReachId: 'ol-middle', joinsOnBank: 'left' }),
         reach('quillock', 'Quillock Brook', 'QU', 0.003, hydraulics([0.6, 6.3, 0.32, 0.301], [2.5, 7.5, 0.6, 0.556], [8, 8.6, 1.01, 0.917]), { downstreamReachId: 'ol-lower', joinsOnBank: 'right' }),
       ],
