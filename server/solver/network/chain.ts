@@ -7,6 +7,9 @@ const EDGE_SHARE = 1e-13;
 /** Parcels at an edge below this share are left out. */
 const DROP_SHARE = 1e-17;
 
+/** A step of dispersion is divided into no more parts than this. */
+const MOST_PARTS = 4;
+
 /** Where a row of parcels may reach: between stirred waters, or beyond the ends of the river. */
 export type ChainLimits = {
   readonly topM: number;
@@ -199,7 +202,13 @@ export class Chain {
     for (let p = this.from + 1; p < this.to; p++) most = Math.max(most, (this.conductance[p]! * dtS) / this.volume[p]!);
     this.margin = Math.min(200, Math.ceil(6 + 8 * Math.sqrt(most)));
     this.largestMixing = Math.max(this.largestMixing, most);
-    if (this.to - this.from > 1) disperse(this.value, this.rhs, this.upper, this.volume, this.conductance, this.explicit, this.from, this.to, this.lanes, dtS);
+    if (this.to - this.from < 2) return;
+    // Through the top only water comes in. In the frame of the parcels the top runs up one parcel in a step: on average
+    // it stands at the lower face of the parcel that has just come in.
+    if (this.face[this.from]! < this.limits.topM + 1e-6) this.conductance[this.from + 1] = 0;
+    // Crank-Nicolson keeps values positive up to a mixing number of 1: steps a little longer are divided.
+    const parts = Math.min(MOST_PARTS, Math.max(1, Math.ceil(most)));
+    for (let i = 0; i < parts; i++) disperse(this.value, this.rhs, this.upper, this.volume, this.conductance, this.explicit, this.from, this.to, this.lanes, dtS / parts);
   }
 
   /** Conductance of the face above parcel p: area times dispersion over the distance of the centres. */

@@ -13,6 +13,8 @@ export type PathReach = FlowingReach & {
   readonly top: TideEnd;
   readonly bottom: TideEnd;
   readonly isTidal: boolean;
+  /** The river's velocity at both ends over its own: between tidal reaches it changes steadily, so that no tide piles water up where one ends. */
+  readonly endShares: readonly [number, number];
   /** Whether another water joins at its head, and which side of the joined river this path's water takes. */
   readonly joined: { readonly low: number; readonly share: number } | null;
   /** True where all of its flow passes through stirred water at its head. */
@@ -47,6 +49,7 @@ export class PathFlow {
         top,
         bottom,
         isTidal: state.reach.tide !== undefined,
+        endShares: [between(line[i - 1], state), between(line[i + 1], state)],
         joined: stretch && stretch.share < 1 ? stretch : null,
         hasStructure: state.reach.structure !== undefined,
       };
@@ -97,7 +100,9 @@ export class PathFlow {
     const down = Math.min(1, Math.max(0, (xM - reach.x0) / (reach.x1 - reach.x0)));
     const cos = reach.top.cos + down * (reach.bottom.cos - reach.top.cos);
     const sin = reach.top.sin + down * (reach.bottom.sin - reach.top.sin);
-    return river + cos * Math.cos(this.omega * tS) + sin * Math.sin(this.omega * tS);
+    const [a, b] = reach.endShares;
+    const share = down < 0.5 ? a + 2 * down * (1 - a) : 1 + (2 * down - 1) * (b - 1);
+    return share * river + cos * Math.cos(this.omega * tS) + sin * Math.sin(this.omega * tS);
   }
 
   /** Where water at x is after dt: exact where the flow is steady, else by the midpoint rule reach by reach. */
@@ -189,6 +194,9 @@ function lineThrough(first: ReachState, states: readonly ReachState[]): ReachSta
   }
   return line;
 }
+
+/** Geometric mean of the velocities of two tidal neighbours over that of `state`; 1 where they are not both tidal. */
+const between = (neighbour: ReachState | undefined, state: ReachState): number => (neighbour?.reach.tide && state.reach.tide ? Math.sqrt(neighbour.speedMps / state.speedMps) : 1);
 
 /** Tide at both ends of reach i of a path: its own at the lower end; above, that of the tidal reach above, or none at the tidal limit. */
 function tideEnds(line: readonly ReachState[], i: number, states: readonly ReachState[]): [TideEnd, TideEnd] {

@@ -28,7 +28,7 @@ export class StationRecorder {
   record(chains: readonly Chain[], step: number): void {
     for (const { station, layers } of this.series)
       for (const chain of chains) {
-        if (station.xM < chain.limits.topM || station.xM > chain.limits.endM) continue;
+        if (!holds(chain, station.reach)) continue;
         this.reader.find(chain, station.xM, station.reach);
         if (this.reader.count === 0) continue;
         layers.forEach((values, layer) => {
@@ -39,6 +39,13 @@ export class StationRecorder {
         break;
       }
   }
+}
+
+/** Whether a reach lies in the stretch of a chain. */
+function holds(chain: Chain, r: number): boolean {
+  const { x0, x1 } = chain.flow.reaches[r]!;
+  const middle = (x0 + x1) / 2;
+  return middle > chain.limits.topM && middle < chain.limits.endM;
 }
 
 /** The sections of all chains, moved on by `advance` from the time of the step to the time of the snapshot. */
@@ -91,6 +98,7 @@ export class EnvelopeRecorder {
       const [top, end] = [chain.face[chain.from]!, chain.face[chain.to]!];
       for (let i = this.firstFrom(top); i < this.stations.length && this.stations[i]!.xM <= end; i++) {
         const { xM, reach } = this.stations[i]!;
+        if (!holds(chain, reach)) continue;
         this.reader.find(chain, xM, reach);
         if (this.reader.count === 0) continue;
         for (let j = 0; j < this.tubes; j++) {

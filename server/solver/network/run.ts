@@ -107,7 +107,7 @@ export class NetworkSimulation {
   /** Faces of the dead zones' cells: where parcels stand after a step in steady flow. */
   private storageFaces(topM: number, endM: number, hasSource: boolean): number[] {
     const { flow } = this.plan;
-    const faces = [hasSource ? this.firstFace() : topM];
+    const faces = [hasSource ? this.firstFace() : topM - this.lengthAt(topM) / 2];
     for (;;) {
       const above = flow.above(faces[0]!, this.lengthAt(faces[0]! - 1e-6));
       if (above < topM - 0.5001 * (faces[0]! - above)) break;
@@ -204,9 +204,10 @@ export class NetworkSimulation {
     const { chain, end } = stretch;
     const before = chain.left.slice();
     const isFed = inflow !== null && inflow[0]! > 0;
-    if (chain.isEmpty && isFed) chain.begin(chain.limits.topM, tS);
+    const top = chain.limits.topM - this.lengthAt(chain.limits.topM) / 2;
+    if (chain.isEmpty && isFed) chain.begin(top, tS);
     if (!chain.isEmpty) chain.move(tS, dtS);
-    if (chain.isEmpty && isFed) chain.begin(chain.limits.topM, tS + dtS);
+    if (chain.isEmpty && isFed) chain.begin(top, tS + dtS);
     if (!chain.isEmpty) this.work(stretch, i, tS, dtS, survival, isFed ? inflow : null);
     if (!end) return null;
     const out = chain.left.map((sum, layer) => sum - before[layer]!);
