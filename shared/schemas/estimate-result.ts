@@ -38,7 +38,8 @@ export const actionAnswerSchema = z.object({
   timeAboveS: triple,
   /** Likely peak over the action value, a plain ratio. */
   ratio: z.number().nullable(),
-  pulses: z.array(z.object({ startS: z.number(), endS: z.number() })),
+  /** Times above, in the likely curve; told apart where it stays below the action value for at least a minute. `releaseId`: which release adds most at the pulse's peak. */
+  pulses: z.array(z.object({ startS: z.number(), endS: z.number(), peak: z.number().optional(), peakS: z.number().optional(), releaseId: z.string().optional() })),
 });
 export type ActionAnswer = z.infer<typeof actionAnswerSchema>;
 

@@ -4,6 +4,7 @@ import { concentrationText, sig } from '../format';
 import type { Weights } from '../release-profile';
 import type { ReceptorSite, RunInput } from '../types';
 import { curveOf, firstReach, meanCurveOf, pulsesAbove, scaledCurve, type Curve, type Pulse } from './curve';
+import { pulsesOf } from './pulses';
 import { RunningIntegral } from './running-integral';
 import { sampleSite, SiteResponse, type Samples } from './sampling';
 import { thinned } from './series';
@@ -34,7 +35,7 @@ export function receptorAnswer(input: RunInput, receptor: EstimateReceptor, site
   const doses = mapTriple(sets, (set) => new RunningIntegral(samples, samples.units.map((units) => response.total(units, set))).total);
   const stop = site.checks.find((check) => check.severity === 'stop') ?? null;
   const answers = receptor.actionValues.map((value, index) =>
-    actionAnswer({ input, value, index, stop, site, curves: value.averagingS > 0 ? mapTriple(sets, (set) => meanCurveOf(response, samples, set, value.averagingS)) : curves }),
+    actionAnswer({ input, value, index, stop, site, response, curves: value.averagingS > 0 ? mapTriple(sets, (set) => meanCurveOf(response, samples, set, value.averagingS)) : curves }),
   );
   const peaks = mapTriple(curves, (curve) => curve.peak);
   const { likely } = curves;
@@ -73,9 +74,10 @@ function overall(answers: readonly ActionAnswer[], stop: Check | null, site: Rec
   return { verdict: worst.verdict, reason: worst.reason };
 }
 
-type ActionInput = { input: RunInput; value: ActionValue; index: number; stop: Check | null; site: ReceptorSite; curves: Triple<Curve> };
+type ActionInput = { input: RunInput; value: ActionValue; index: number; stop: Check | null; site: ReceptorSite; response: SiteResponse; curves: Triple<Curve> };
 
-function actionAnswer({ input, value, index, stop, site, curves }: ActionInput): ActionAnswer {
+function actionAnswer(facts: ActionInput): ActionAnswer {
+  const { input, value, index, stop, response, curves } = facts;
   const { doc, weights } = input;
   const { horizonS } = doc;
   const isUsable = !weights.isPerUnit && stop === null;
@@ -88,13 +90,13 @@ function actionAnswer({ input, value, index, stop, site, curves }: ActionInput):
     index,
     value: value.value,
     verdict,
-    reason: reasonOf({ input, value, index, stop, site, curves }, verdict),
+    reason: reasonOf(facts, verdict),
     arrivalS: { early: start(pulses.high ?? pulses.likely), likely: start(pulses.likely), late: start(pulses.low ?? pulses.likely) },
     endS: { early: end(pulses.low ?? pulses.likely), likely: end(pulses.likely), late: end(pulses.high ?? pulses.likely) },
     endOpen: [pulses.likely, most].some((list) => list.some((pulse) => pulse.endS >= horizonS)),
     timeAboveS: mapTriple(pulses, (list) => list.reduce((sum, pulse) => sum + pulse.endS - pulse.startS, 0)),
     ratio: weights.isPerUnit ? null : curves.likely.peak / value.value,
-    pulses: pulses.likely,
+    pulses: pulsesOf(input, response, curves.likely, pulses.likely, value.averagingS),
   };
 }
 
