@@ -3,6 +3,7 @@ import type { FieldError } from '../../shared/problem';
 import type { EstimateDocument, OpenWater, RiverWater } from '../../shared/schemas/estimate';
 import { SolverInputError } from './errors';
 import { lengthText, sig } from './format';
+import { lossErrors } from './losses/loss-parts';
 import { networkErrors } from './network/network-door';
 import { isInPlaneArea, nearestShore, planeArea } from './open/area-mask';
 import { RECEPTOR_SNAP_M } from './open/open-solver';
@@ -15,6 +16,7 @@ const RIVER_SLACK_M = 1_000;
 /** Refuses a document that its schema allows but no solver can take: places off the water, series too short. */
 export function checkDoor(doc: EstimateDocument): void {
   const errors = doc.water.kind === 'open' ? openErrors(doc, doc.water) : riverErrors(doc, doc.water);
+  if (errors.length === 0) errors.push(...lossErrors(doc));
   if (errors.length > 0) throw new SolverInputError(errors);
 }
 

@@ -3,16 +3,17 @@ import type { EstimateResult, Reached, ReceptorAnswer } from '../../shared/schem
 import { commonChecks } from './checks/common-checks';
 import { checkDoor } from './door';
 import { ENGINE_VERSION } from './engine-version';
-import { lossClock } from './loss';
+import { combinedClock, lossParts } from './losses/loss-parts';
+import { lostBy } from './losses/lost-by';
 import { Meter } from './meter';
 import { resolveReleases, weightsOf } from './release-profile';
 import { amountWorking } from './results/amount-working';
 import { packField, largestOf } from './results/frame-message';
-import { contourLevels } from './results/levels';
 import { envelopesUntil, isochroneTimes, reachedLevel, reachedOf } from './results/isochrones';
+import { contourLevels } from './results/levels';
 import { receptorAnswer } from './results/receptor-answer';
-import { solverFor } from './solvers';
 import { resolutionOf } from './results/resolution';
+import { solverFor } from './solvers';
 import type { Books, EstimateSink, GriddedField, PreparedField, ReceptorSite, RunInput } from './types';
 
 export type SolveOptions = {
@@ -63,8 +64,8 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
     receptors: answers,
     distanceTime: field.distanceTime(frameTimesS, input.weights.likely),
     ...(field.travelTimes && !input.isPreview ? { travelTimes: field.travelTimes(input.weights.likely) } : {}),
-    checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...field.checks, ...sites.flatMap((site) => site.checks)],
     reached,
+    checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...field.checks, ...sites.flatMap((site) => site.checks)],
     diagnostics,
     working: [...amountWorking(input), ...field.working],
   };
@@ -75,11 +76,13 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
 function runInput(doc: EstimateDocument, options: SolveOptions): RunInput {
   const releases = resolveReleases(doc);
   const isPreview = options.preview ?? false;
+  const parts = lossParts(doc);
   return {
     doc,
     releases,
     weights: weightsOf(releases),
-    loss: lossClock(doc.substance.loss, doc.startAt),
+    loss: combinedClock(parts),
+    lossParts: parts,
     isPreview,
     tolerance: isPreview ? Math.max(doc.tolerance, PREVIEW_TOLERANCE) : doc.tolerance,
     meter: new Meter(options.isCancelled),
@@ -91,11 +94,11 @@ class FrameWriter {
   readonly levels;
   cappedValues = 0;
   private readonly made = new Map<number, GriddedField>();
+  /** Largest value of each frame that has been sent. */
+  private readonly largest: number[] = [];
 
   constructor(
     private readonly input: RunInput,
-  /** Largest value of each frame that has been sent. */
-  private readonly largest: number[] = [];
     private readonly field: PreparedField,
     private readonly timesS: readonly number[],
     private readonly sink: EstimateSink,
@@ -119,10 +122,10 @@ class FrameWriter {
       const made = this.make(index);
       this.made.delete(index);
       const { payload, ...head } = packField(made, this.levels);
+      this.largest[index] = head.max;
       this.cappedValues += countAt(made.values, this.input.doc.substance.solubilityKgM3);
       this.sink({ type: 'frame', index, timeS: this.timesS[index]!, grid: made.grid, ...head }, payload);
       this.sink({ type: 'progress', stage: 'frames', done: index + 1, of: this.timesS.length });
-      this.largest[index] = head.max;
     }
   }
 
@@ -173,10 +176,11 @@ const diagnosticsOf = (input: RunInput, books: Books, cappedValues: number): Est
   massReleased: books.released,
   massInWater: books.inWater,
   massLost: books.lost,
+  ...(input.doc.substance.applyLoss && input.lossParts.length > 0 ? { lostBy: lostBy(input, input.lossParts, input.doc.horizonS, books.lost) } : {}),
   massLeft: books.left,
   massResidual: books.released > 0 ? (books.released - books.inWater - books.lost - books.left) / books.released : 0,
-  booksAtS: doc.horizonS,
-  quadratureError: meter.worstError,
-  evaluations: meter.evaluations,
+  booksAtS: input.doc.horizonS,
+  quadratureError: input.meter.worstError,
+  evaluations: input.meter.evaluations,
   cappedValues,
 });

@@ -2,6 +2,7 @@ import type { FrameGrid, StreamHead } from '../../shared/frames';
 import type { EstimateDocument, EstimateReceptor } from '../../shared/schemas/estimate';
 import type { Check, TravelTime, WorkingLine } from '../../shared/schemas/estimate-result';
 import type { LossClock } from './loss';
+import type { LossPart } from './losses/loss-parts';
 import type { Meter } from './meter';
 import type { ResolvedRelease, WeightSet, Weights } from './release-profile';
 
@@ -14,6 +15,8 @@ export type RunInput = {
   readonly releases: readonly ResolvedRelease[];
   readonly weights: WeightSet;
   readonly loss: LossClock;
+  /** The processes that make it up. */
+  readonly lossParts: readonly LossPart[];
   /** Coarser frames and release-time integrals, for a forecast that follows the hand. */
   readonly isPreview: boolean;
   readonly tolerance: number;
@@ -53,21 +56,21 @@ export type DistanceTime = { timesS: number[]; chainageKm: number[]; reachIds: s
 export type PreparedField = {
   receptor(index: number, receptor: EstimateReceptor): ReceptorSite;
   gridAt(tS: number, weights: Weights): GriddedField;
-  envelope(frameTimesS: readonly number[], weights: Weights): GriddedField;
-  distanceTime(timesS: readonly number[], weights: Weights): DistanceTime | null;
-  books(tS: number, weights: Weights): Books;
   /** Largest value at each node up to the last of the times. */
-  /** Rivers: passage by chainage; left out in previews. */
+  envelope(frameTimesS: readonly number[], weights: Weights): GriddedField;
   /** The same up to each of `untilS`, ascending, where that is cheaper in one pass. */
   envelopes?(untilS: readonly number[], weights: Weights): GriddedField[];
+  distanceTime(timesS: readonly number[], weights: Weights): DistanceTime | null;
+  books(tS: number, weights: Weights): Books;
+  /** Rivers: passage by chainage; left out in previews. */
   travelTimes?(weights: Weights): TravelTime[];
   readonly working: readonly WorkingLine[];
   readonly checks: readonly Check[];
-};
-
-export type Solver = { readonly name: string; prepare(input: RunInput): PreparedField };
   /** How a numeric solver stepped; a closed form leaves it out. */
   readonly numerics?: Numerics;
+};
+
 /** For the books: largest Courant number, values set to zero or cut, and how fine cells and steps were, in words. */
 export type Numerics = { readonly maxCourant: number | null; readonly clippedValues: number; readonly resolution: string };
 
+export type Solver = { readonly name: string; prepare(input: RunInput): PreparedField };

@@ -1,6 +1,8 @@
 import { z } from 'zod';
 import { isInArea } from '../geo';
 import { bankSchema, instantSchema, lonLatSchema, nameSchema, notNegative, positive, rangeSchema, ringSchema, textSchema } from './basics';
+import { behaviourSchema, conditionsSchema } from './conditions';
+import { lossProcessSchema } from './losses';
 
 /**
  * The estimate document: everything one estimate needs, self-contained, SI throughout.
@@ -53,6 +55,9 @@ export const estimateSubstanceSchema = z.object({
   solubilityKgM3: positive('kg/m3', 1e4).nullable().default(null),
   densityKgM3: positive('kg/m3', 2e4).nullable().default(null),
   loss: lossSchema.default({ kind: 'none' }),
+  /** Further processes whose rates add to `loss`. */
+  losses: z.array(lossProcessSchema).max(10, 'At most 10 processes').optional(),
+  behaviour: behaviourSchema.optional(),
   /** False: the estimate is conservative and the figures with losses are only shown beside it. */
   applyLoss: z.boolean().default(false),
 });
@@ -378,6 +383,7 @@ export const estimateDocumentSchema = z
     horizonS: positive('s', estimateLimits.horizonS).min(60, 'Must be at least 60 s'),
     frameCount: z.number().int().min(2).max(estimateLimits.frames, `At most ${estimateLimits.frames} frames`).default(48),
     substance: estimateSubstanceSchema,
+    conditions: conditionsSchema.optional(),
     water: estimateWaterSchema,
     releases: z.array(releaseSchema).min(1, 'Place at least one release').max(estimateLimits.releases, `At most ${estimateLimits.releases} releases`),
     receptors: z.array(estimateReceptorSchema).max(estimateLimits.receptors, `At most ${estimateLimits.receptors} receptors: leave out those not on this water`).default([]),

@@ -4,7 +4,7 @@ import { sig } from '../format';
 import type { RunInput } from '../types';
 
 /** How each release's amount came down to kilograms (or counts), and its timing and loss. */
-export function amountWorking({ doc, releases, loss }: RunInput): WorkingLine[] {
+export function amountWorking({ doc, releases, lossParts }: RunInput): WorkingLine[] {
   const unit = doc.substance.measure === 'count' ? 'organisms' : `kg${doc.substance.basis ? ` ${doc.substance.basis}` : ''}`;
   const lines = releases.map(({ release, amount, profile }): WorkingLine => {
     const range = amount.low !== null || amount.high !== null ? ` (low ${amount.low === null ? 'not given' : sig(amount.low)}, high ${amount.high === null ? 'not given' : sig(amount.high)})` : '';
@@ -18,17 +18,8 @@ export function amountWorking({ doc, releases, loss }: RunInput): WorkingLine[] 
       source: release.evidence || (amount.isStandIn ? 'stand-in for an unknown amount' : 'as entered'),
     };
   });
-  const { substance } = doc;
-  if (loss.kind === 'none') return lines;
-  const rate = substance.loss.kind === 'first-order' ? `k = ${sig(substance.loss.ratePerS)} 1/s` : substance.loss.kind === 'day-night' ? `k = ${sig(substance.loss.dayRatePerS)} 1/s by day, ${sig(substance.loss.nightRatePerS)} 1/s by night` : '';
-  lines.push({
-    label: 'Loss',
-    formula: 'exp(−∫ k dt) for each parcel',
-    substituted: `${rate}; ${substance.applyLoss ? 'applied' : 'left out here, shown beside'}`,
-    value: loss.constantRatePerS,
-    unit: '1/s',
-    source: substance.loss.kind === 'none' ? '' : substance.loss.source,
-  });
+  const applied = doc.substance.applyLoss ? 'applied' : 'left out here, shown beside';
+  lines.push(...lossParts.map(({ line }) => ({ ...line, substituted: `${line.substituted}; ${applied}` })));
   return lines;
 }
 

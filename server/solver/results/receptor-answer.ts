@@ -132,7 +132,7 @@ function unknownReason(limitSi: number, peakPerUnit: number, measure: Measure, l
 /** Peak and curve with losses, where the estimate itself leaves them out. */
 function lossesBeside(input: RunInput, site: ReceptorSite, curves: Triple<Curve>, answers: readonly ActionAnswer[]): ReceptorAnswer['withLosses'] {
   const { substance } = input.doc;
-  if (substance.applyLoss || substance.loss.kind === 'none') return null;
+  if (substance.applyLoss || input.loss.kind === 'none') return null;
   const lossy = new SiteResponse(site, substance.solubilityKgM3 ?? Infinity, true);
   const values = thinned(curves, answers).timesS.map((t) => lossy.at(t, input.weights.likely));
   return { peak: values.reduce((most, value) => Math.max(most, value), 0), likely: values };
