@@ -10,7 +10,7 @@ import { fileURLToPath, pathToFileURL } from 'node:url';
 const here = dirname(fileURLToPath(import.meta.url));
 const sourceFolder = join(here, 'wasm');
 export const kernelFolder = join(here, 'build');
-export const kernelNames = ['puffs', 'volume', 'poisson', 'channel', 'walk'];
+export const kernelNames = ['puffs', 'volume', 'poisson', 'channel', 'walk', 'release'];
 
 const sources = () => readdirSync(sourceFolder).map((name) => join(sourceFolder, name));
 const outputOf = (name) => join(kernelFolder, `${name}.wasm`);

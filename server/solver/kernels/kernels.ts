@@ -2,11 +2,12 @@ import { compileKernel, type CompiledKernel } from './host';
 import { ChannelTubes } from './channel';
 import { PoissonSolver } from './poisson';
 import { PuffSum32, PuffSum64 } from './puffs';
+import { ReleasePoints } from './release';
 import { VolumeGrid } from './volume';
 import { BoxWalk } from './walk';
 
 /** The modules that `build.mjs` makes, by name. */
-export const KERNEL_NAMES = ['puffs', 'volume', 'poisson', 'channel', 'walk'] as const;
+export const KERNEL_NAMES = ['puffs', 'volume', 'poisson', 'channel', 'walk', 'release'] as const;
 export type KernelName = (typeof KERNEL_NAMES)[number];
 export type KernelBytes = Readonly<Record<KernelName, Uint8Array>>;
 
@@ -28,5 +29,6 @@ export function createKernels(bytes: KernelBytes) {
     poissonSolver: (nx: number, ny: number) => new PoissonSolver(kernel('poisson'), nx, ny),
     channelTubes: (cells: number, tubes: number) => new ChannelTubes(kernel('channel'), cells, tubes),
     boxWalk: (paths: number, lengthXM: number, lengthYM: number, seed: number) => new BoxWalk(kernel('walk'), paths, lengthXM, lengthYM, seed),
+    releasePoints: () => new ReleasePoints(kernel('release')),
   };
 }
