@@ -1,5 +1,7 @@
 import type { Check, ReceptorAnswer } from '../../../shared/schemas/estimate-result';
 import { durationText, sig } from '../format';
+import { openWaterSolver } from '../open/open-solver';
+import { solverFor } from '../solvers';
 import type { Books, RunInput } from '../types';
 import { checksBy, type Rule } from './rule';
 
@@ -72,8 +74,8 @@ const rules: readonly Rule<Facts>[] = [
     severity: 'warn',
     title: 'The cloud is wider than the water',
     test: ({ books, input }) =>
-      input.doc.water.kind === 'open' && books.left > 0.1 * books.released
-        ? { detail: `At the end ${sig((100 * books.left) / books.released, 2)} % of the cloud lies beyond the drawn shore; the closed form knows no shore but a straight one.`, remedy: 'Near the shore read up to twice the concentration; use a straight shore where one fits.' }
+      solverFor(input.doc) === openWaterSolver && books.left > 0.1 * books.released
+        ? { detail: `At the end ${sig((100 * books.left) / books.released, 2)} % of the cloud lies beyond the drawn shore; the closed form knows no shore but a straight one.`, remedy: 'Near the shore read up to twice the concentration; use a straight shore where one fits, or solve it on a grid within its shore.' }
         : null,
   },
 ];
