@@ -101,7 +101,7 @@ function HeaderCell<Row>({ column, order, onTurn }: { column: Column<Row>; order
   return (
     <th scope="col" aria-sort={isOrdered ? (order.isDown ? 'descending' : 'ascending') : undefined} className={classNames('py-2 pr-5 align-bottom text-note font-semibold text-ink2 last:pr-0', end && 'text-right')}>
       {column.sortValue ? (
-        <button type="button" onClick={() => onTurn(column.key)} className={classNames('inline-flex min-h-6 items-center gap-1 hover:text-kingfisher pointer-coarse:min-h-11', isOrdered && 'text-ink')}>
+        <button type="button" onClick={() => onTurn(column.key)} className={classNames('-my-1 inline-flex items-center gap-1 py-1 hover:text-kingfisher pointer-coarse:min-h-11', isOrdered && 'text-ink')}>
           {column.header}
           {isOrdered && <Icon name={order.isDown ? 'down' : 'up'} className="size-3.5" />}
         </button>

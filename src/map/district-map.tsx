@@ -5,6 +5,7 @@ import { useEffect, useId, useMemo, useState, type ReactNode } from 'react';
 import { MapContainer } from 'react-leaflet';
 import type { LonLat } from '../../shared/schemas/basics';
 import { BaseTiles } from './base-tiles';
+import { fitAll } from './fit';
 import { MapFoot } from './map-foot';
 import { MapKeys } from './map-keys';
 import { MapToolbar } from './map-toolbar';
@@ -61,7 +62,7 @@ export function DistrictMap({ theme, label, onClick, onPointer, initialView, fit
 
   const fitKey = fitTo ? fitTo.flat().join(',') : '';
   useEffect(() => {
-    if (map && fitTo) map.fitBounds(toLeaflet(fitTo), { padding: [32, 32], maxZoom: 15, animate: false });
+    if (map && fitTo) fitAll(map, fitTo, false);
     // Bounds are compared by value: a page may build the same ones anew at each render.
     // eslint-disable-next-line react-hooks/exhaustive-deps
   }, [map, fitKey]);

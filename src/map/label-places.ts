@@ -1,7 +1,7 @@
 import type L from 'leaflet';
 import type { PixelBox } from './mercator';
+import { movedBox, overlapsBy, spreadPlates, type Push } from './plate-places';
 
-const overlaps = (a: PixelBox, b: PixelBox): boolean => a.left < b.right && a.right > b.left && a.top < b.bottom && a.bottom > b.top;
 const sides = ['right', 'left', 'below', 'above'] as const;
 type Side = (typeof sides)[number];
 
@@ -25,7 +25,7 @@ export function placeLabels(marks: readonly Labelled[]): (Side | null)[] {
   return marks.map((mark) => {
     for (const side of sides) {
       const box = labelBox(mark, side);
-      if (taken.some((other) => other !== mark.body && overlaps(box, other))) continue;
+      if (taken.some((other) => other !== mark.body && overlapsBy(box, other, 0))) continue;
       taken.push(box);
       return side;
     }
@@ -53,24 +53,65 @@ export const LABELS_PLACED = 'labelsplaced';
 
 /** Boxes of all marks and shown labels, measured from the corner of an element. */
 export function markBoxes(map: L.Map, from: DOMRect): PixelBox[] {
-  const drawn = map.getPane('markerPane')?.querySelectorAll<HTMLElement>(".leaflet-marker-icon > svg, .mark-label:not([data-side='none'])") ?? [];
+  const drawn = map.getPane('markerPane')?.querySelectorAll<HTMLElement>(".leaflet-marker-icon:not(.is-crowded) > svg, .leaflet-marker-icon:not(.is-crowded) > .mark-label:not([data-side='none'])") ?? [];
   return [...drawn].map((element) => {
     const box = element.getBoundingClientRect();
     return { left: box.left - from.left, right: box.right - from.left, top: box.top - from.top, bottom: box.bottom - from.top };
   });
 }
 
+type Seen = { element: HTMLElement; body: PixelBox; rank: number };
+
+/** A station seen this much under something else is left out, px. */
+const CROWDED_PX = 3;
+
 function tidy(pane: HTMLElement): void {
-  const origin = pane.getBoundingClientRect();
-  const found = [...pane.querySelectorAll<HTMLElement>('.mark-label')].flatMap((label) => {
-    const mark = label.parentElement;
-    const drawing = mark?.querySelector('svg');
-    if (!mark || !drawing || label.offsetWidth === 0) return [];
+  const elements = [...pane.querySelectorAll<HTMLElement>('.leaflet-marker-icon')];
+  for (const element of elements) {
+    push(element, { x: 0, y: 0 });
+    element.classList.remove('is-crowded');
+  }
+  const marks = seenMarks(elements, pane.getBoundingClientRect());
+  const of = (className: string) => marks.filter(({ element }) => element.classList.contains(className));
+  const plates = of('receptor-mark');
+  const pushes = spreadPlates(plates.map(({ body }) => body), of('release-mark').map(({ body }) => body));
+  plates.forEach((plate, k) => {
+    push(plate.element, pushes[k]!);
+    plate.body = movedBox(plate.body, pushes[k]!);
+  });
+  const kept = [...of('release-mark'), ...plates];
+  for (const station of of('station-mark')) {
+    if (kept.some(({ body }) => overlapsBy(station.body, body, CROWDED_PX))) station.element.classList.add('is-crowded');
+    else kept.push(station);
+  }
+  tidyWords(marks.filter(({ element }) => !element.classList.contains('is-crowded')));
+}
+
+function seenMarks(elements: readonly HTMLElement[], origin: DOMRect): Seen[] {
+  const marks = elements.flatMap((element): Seen[] => {
+    const drawing = element.querySelector('svg');
+    if (!drawing || element.offsetWidth === 0) return [];
     const seen = drawing.getBoundingClientRect();
     const body = { left: seen.left - origin.left, top: seen.top - origin.top, right: seen.right - origin.left, bottom: seen.bottom - origin.top };
-    return [{ label, rank: Number(mark.style.zIndex) - body.top, body, labelWidth: label.offsetWidth, labelHeight: label.offsetHeight }];
+    return [{ element, body, rank: Number(element.style.zIndex) - body.top }];
   });
-  found.sort((a, b) => b.rank - a.rank);
+  return marks.sort((a, b) => b.rank - a.rank);
+}
+
+/** Moves what is drawn of a mark off its place and leads a thin line back to it. */
+function push(element: HTMLElement, { x, y }: Push): void {
+  element.classList.toggle('is-pushed', x !== 0 || y !== 0);
+  element.style.setProperty('--push-x', `${x}px`);
+  element.style.setProperty('--push-y', `${y}px`);
+  element.style.setProperty('--push-far', `${Math.hypot(x, y)}px`);
+  element.style.setProperty('--push-turn', `${Math.atan2(y, x)}rad`);
+}
+
+function tidyWords(marks: readonly Seen[]): void {
+  const found = marks.flatMap(({ element, body }) => {
+    const label = element.querySelector<HTMLElement>('.mark-label');
+    return label && label.offsetWidth > 0 ? [{ label, body, labelWidth: label.offsetWidth, labelHeight: label.offsetHeight }] : [];
+  });
   placeLabels(found).forEach((side, k) => {
     found[k]!.label.dataset['side'] = side ?? 'none';
   });

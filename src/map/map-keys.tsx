@@ -1,6 +1,7 @@
 import { useEffect, useState } from 'react';
 import { useMap } from 'react-leaflet';
 import type { LonLat } from '../../shared/schemas/basics';
+import { fitAll } from './fit';
 import { formatCoordinates } from './coordinates';
 import { useMapState } from './map-tools';
 import { lonLatOf } from './pointer-relay';
@@ -30,7 +31,7 @@ export function MapKeys({ onKeyboard, fitTo }: Props) {
       if (move) map.panBy([move[0] * (event.shiftKey ? FINE_STEP_PX : STEP_PX), move[1] * (event.shiftKey ? FINE_STEP_PX : STEP_PX)], { animate: false });
       else if (event.key === '+' || event.key === '=') map.zoomIn(1);
       else if (event.key === '-' || event.key === '_') map.zoomOut(1);
-      else if (event.key === 'Home' && fitTo) map.fitBounds([[fitTo[0][1], fitTo[0][0]], [fitTo[1][1], fitTo[1][0]]], { padding: [32, 32] });
+      else if (event.key === 'Home' && fitTo) fitAll(map, fitTo, true);
       else if (event.key === 'Enter' || event.key === ' ') map.fire('click', { latlng: map.getCenter() });
       else return false;
       return true;

@@ -1,6 +1,7 @@
 import { useState } from 'react';
 import { useMap, useMapEvents } from 'react-leaflet';
 import type { LonLat } from '../../shared/schemas/basics';
+import { fitAll } from './fit';
 import { GoTo } from './go-to';
 import { MapIcon, type MapIconName } from './map-icons';
 import { useMapState } from './map-tools';
@@ -26,7 +27,7 @@ export function MapToolbar({ fitTo }: { fitTo: [LonLat, LonLat] | null }) {
       <div className="map-tool-group" role="group" aria-label="Zoom">
         <Tool icon="plus" label="Zoom in" disabled={zoom >= map.getMaxZoom()} onClick={() => map.zoomIn(1)} />
         <Tool icon="minus" label="Zoom out" disabled={zoom <= map.getMinZoom()} onClick={() => map.zoomOut(1)} />
-        {fitTo && <Tool icon="fit" label="Show everything" onClick={() => map.fitBounds([[fitTo[0][1], fitTo[0][0]], [fitTo[1][1], fitTo[1][0]]], { padding: [32, 32], maxZoom: 15 })} />}
+        {fitTo && <Tool icon="fit" label="Show everything" onClick={() => fitAll(map, fitTo, true)} />}
       </div>
       <div className="map-tool-group" role="group" aria-label="Map tools">
         <Tool icon="measure" label="Measure a distance" pressed={tool === 'measure'} onClick={() => setTool(tool === 'measure' ? 'none' : 'measure')} />

@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { placeLabels, type Labelled } from './label-places';
+import type { PixelBox } from './mercator';
 import { bandColours, madder, ochre } from './palette';
+import { movedBox, overlapsBy, spreadPlates } from './plate-places';
 import { readFileSync } from 'node:fs';
 
 const mark = (left: number, top: number): Labelled => ({ body: { left, top, right: left + 30, bottom: top + 30 }, labelWidth: 50, labelHeight: 16 });
@@ -16,6 +18,23 @@ describe('labels of marks', () => {
     const placed = placeLabels(crowd);
     expect(new Set(placed.filter((side) => side !== null)).size).toBe(placed.filter((side) => side !== null).length);
     expect(placed[4]).toBeNull();
+  });
+});
+
+describe('plates', () => {
+  const plate = (left: number): PixelBox => ({ left, top: 100, right: left + 30, bottom: 130 });
+  const apart = (boxes: PixelBox[]) => boxes.every((a, i) => boxes.every((b, k) => i === k || !overlapsBy(a, b, 4)));
+
+  it('stay where they belong while there is room', () => {
+    expect(spreadPlates([plate(100), plate(140)], [])).toEqual([{ x: 0, y: 0 }, { x: 0, y: 0 }]);
+  });
+
+  it('give way to more important ones and to releases until each can be read', () => {
+    const plates = [plate(100), plate(104), plate(110), plate(96)];
+    const release = plate(120);
+    const pushes = spreadPlates(plates, [release]);
+    expect(apart([...plates.map((box, k) => movedBox(box, pushes[k]!)), release])).toBe(true);
+    for (const { x, y } of pushes) expect(Math.hypot(x, y)).toBeLessThan(73);
   });
 });
 

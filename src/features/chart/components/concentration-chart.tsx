@@ -6,6 +6,7 @@ import type { EstimateReceptor } from '../../../../shared/schemas/estimate';
 import type { ReceptorAnswer } from '../../../../shared/schemas/estimate-result';
 import { displayUnitOf, toConcentrationUnit, unitLabel } from '../../../../shared/units';
 import { CheckInput } from '../../../components/inputs';
+import { useDrawerRoom } from '../hooks/use-drawer-room';
 import { useWidth } from '../hooks/use-width';
 import { drawnSpan } from '../model/curve';
 import { decidingAnswer, earliestS } from '../model/rail-lanes';
@@ -16,7 +17,9 @@ const LEFT = 64;
 const RIGHT = 16;
 const TOP = 22;
 const BOTTOM = 40;
-const HEIGHT = 210;
+const LEAST_HEIGHT = 150;
+/** The line that names the receptor above the drawing, px. */
+const HEADING = 24;
 /** Decades shown on the logarithmic scale. */
 const DECADES = 1e4;
 
@@ -25,6 +28,7 @@ type Props = { receptor: EstimateReceptor; answer: ReceptorAnswer; measure: Meas
 /** Concentration against time at one receptor: likely line, low-to-high band, action values, arrival and end. */
 export function ConcentrationChart({ receptor, answer, measure, startMs, horizonS, offset, timeS, onTime }: Props) {
   const [ref, width] = useWidth(720);
+  const height = useDrawerRoom(HEADING, LEAST_HEIGHT);
   const [isLog, setLog] = useState(false);
   const deciding = decidingAnswer(answer);
   const { series } = answer;
@@ -32,7 +36,7 @@ export function ConcentrationChart({ receptor, answer, measure, startMs, horizon
   const top = Math.max(...(series.high ?? series.likely), ...answer.answers.map((one) => one.value)) * 1.08 || 1;
   const unit = displayUnitOf(top, measure);
   const x = scaleLinear([fromS, toS], [LEFT, Math.max(LEFT + 50, width - RIGHT)]);
-  const y = isLog ? scaleLog([top / DECADES, top], [HEIGHT - BOTTOM, TOP]).clamp(true) : scaleLinear([0, top], [HEIGHT - BOTTOM, TOP]);
+  const y = isLog ? scaleLog([top / DECADES, top], [height - BOTTOM, TOP]).clamp(true) : scaleLinear([0, top], [height - BOTTOM, TOP]);
   const points = series.timesS.map((t, i) => [t, series.likely[i]!, series.low?.[i] ?? null, series.high?.[i] ?? null] as const).filter(([t]) => t >= fromS && t <= toS);
   const likelyPath = line<(typeof points)[number]>((d) => x(d[0]), (d) => y(d[1]))(points) ?? '';
   const bandPath = series.low && series.high ? (area<(typeof points)[number]>((d) => x(d[0]), (d) => y(d[2] ?? d[1]), (d) => y(d[3] ?? d[1]))(points) ?? '') : '';
@@ -42,7 +46,7 @@ export function ConcentrationChart({ receptor, answer, measure, startMs, horizon
   return (
     <figure className="m-0">
       <div ref={ref} className="w-full">
-        <svg width={width} height={HEIGHT} role="img" aria-label={label} className="block cursor-pointer touch-pan-y" onClick={(event) => onTime(x.invert(event.clientX - event.currentTarget.getBoundingClientRect().left))}>
+        <svg width={width} height={height} role="img" aria-label={label} className="block cursor-pointer touch-pan-y" onClick={(event) => onTime(x.invert(event.clientX - event.currentTarget.getBoundingClientRect().left))}>
           {yTicks.map((tick) => {
             const value = isLog ? tick : (tick * top) / toConcentrationUnit(top, unit);
             return (
@@ -60,7 +64,7 @@ export function ConcentrationChart({ receptor, answer, measure, startMs, horizon
           {clockTicks(startMs + fromS * 1_000, toS - fromS, offset, Math.max(2, Math.floor((width - LEFT) / 90))).map((tick) => {
             const s = tick.atS + fromS;
             return (
-              <g key={s} transform={`translate(${x(s)} ${HEIGHT - BOTTOM})`}>
+              <g key={s} transform={`translate(${x(s)} ${height - BOTTOM})`}>
                 <line y2={5} className="stroke-ink" />
                 <text y={18} textAnchor="middle" className="fill-ink text-note">
                   {tick.isMidnight ? formatClock(startMs + s * 1_000, offset).slice(4) : formatTimeOfDay(startMs + s * 1_000, offset)}
@@ -71,14 +75,14 @@ export function ConcentrationChart({ receptor, answer, measure, startMs, horizon
               </g>
             );
           })}
-          <line x1={LEFT} x2={width - RIGHT} y1={HEIGHT - BOTTOM} y2={HEIGHT - BOTTOM} className="stroke-ink" />
+          <line x1={LEFT} x2={width - RIGHT} y1={height - BOTTOM} y2={height - BOTTOM} className="stroke-ink" />
           {bandPath && <path d={bandPath} className="fill-madder-2 opacity-70" />}
           <path d={likelyPath} fill="none" strokeWidth={2} className="stroke-madder-5" />
           {answer.answers.map((one) => (
             <ActionLine key={one.index} x1={LEFT} x2={width - RIGHT} y={y(one.value)} text={`action value ${text(one.value, measure)}`} />
           ))}
           {deciding && <ArrivalMarks x={x} early={earliestS(deciding)} likely={deciding.arrivalS.likely} end={deciding.endS.late ?? deciding.endS.likely} y={y(deciding.value)} />}
-          {timeS >= fromS && timeS <= toS && <line x1={x(timeS)} x2={x(timeS)} y1={TOP} y2={HEIGHT - BOTTOM} strokeWidth={2} className="stroke-kingfisher" />}
+          {timeS >= fromS && timeS <= toS && <line x1={x(timeS)} x2={x(timeS)} y1={TOP} y2={height - BOTTOM} strokeWidth={2} className="stroke-kingfisher" />}
         </svg>
       </div>
       <figcaption className="flex flex-wrap items-center gap-x-6 text-note text-ink2 print:block">

@@ -1,9 +1,11 @@
+import { ticks } from 'd3-array';
 import { scaleLinear } from 'd3-scale';
 import { useMemo } from 'react';
 import { formatClock, formatConcentration, formatElapsed, formatTimeOfDay, type Measure } from '../../../../shared/format';
 import type { EstimateReceptor, EstimateWater } from '../../../../shared/schemas/estimate';
 import type { Level } from '../../../../shared/schemas/estimate-result';
 import { bandColours } from '../../../map/palette';
+import { useDrawerRoom } from '../hooks/use-drawer-room';
 import { useWidth } from '../hooks/use-width';
 import { distancePaths, travelledKm, valueBetween, type DistanceTime } from '../model/distance-contours';
 import { clockTicks } from '../model/time-ticks';
@@ -12,7 +14,7 @@ const LEFT = 74;
 const RIGHT = 60;
 const TOP = 10;
 const BOTTOM = 40;
-const HEIGHT = 280;
+const LEAST_HEIGHT = 176;
 
 type Props = {
   field: DistanceTime;
@@ -31,10 +33,11 @@ type Props = {
 /** Section-mean concentration by time and place along the river, receptors as lines across. */
 export function DistanceTimeChart({ field, levels, water, receptors, measure, startMs, horizonS, offset, timeS, theme, onTime }: Props) {
   const [ref, width] = useWidth(720);
+  const height = useDrawerRoom(0, LEAST_HEIGHT);
   const km = useMemo(() => travelledKm(field), [field]);
   const drawn = useMemo(() => [...levels].filter((level) => level.value > 0).sort((a, b) => a.value - b.value), [levels]);
   const x = useMemo(() => scaleLinear([0, horizonS], [LEFT, Math.max(LEFT + 50, width - RIGHT)]), [horizonS, width]);
-  const y = useMemo(() => scaleLinear([0, km[km.length - 1] ?? 1], [TOP, HEIGHT - BOTTOM]), [km]);
+  const y = useMemo(() => scaleLinear([0, km[km.length - 1] ?? 1], [TOP, height - BOTTOM]), [km, height]);
   const paths = useMemo(() => distancePaths(field, drawn.map((level) => level.value), x, (column) => y(valueBetween(km, column))), [field, drawn, x, y, km]);
   const colours = bandColours(drawn.length, theme);
   const prefix = water.kind === 'river' ? (water.reaches.find((reach) => reach.id === field.reachIds[0])?.chainagePrefix ?? 'km') : 'km';
@@ -48,7 +51,7 @@ export function DistanceTimeChart({ field, levels, water, receptors, measure, st
       <div ref={ref} className="w-full">
         <svg
           width={width}
-          height={HEIGHT}
+          height={height}
           role="img"
           aria-label={`Concentration along ${water.name} over time, mean over the section. Receptors: ${lines.map((one) => one.receptor.code).join(', ') || 'none on this path'}`}
           className="block cursor-pointer"
@@ -57,11 +60,11 @@ export function DistanceTimeChart({ field, levels, water, receptors, measure, st
           {paths.map((path, i) => (
             <path key={drawn[i]!.value} d={path} fillRule="evenodd" fill={colours[i]} fillOpacity={0.85} strokeWidth={drawn[i]!.isActionValue ? 2 : 0.75} strokeDasharray={drawn[i]!.isActionValue ? '7 4' : undefined} className="stroke-ink" />
           ))}
-          {y.ticks(6).map((tick) => (
-            <g key={tick} transform={`translate(${LEFT} ${y(tick)})`}>
+          {chainageTicks(field, km, y, Math.max(3, Math.floor(height / 34))).map((tick) => (
+            <g key={tick.chainageKm} transform={`translate(${LEFT} ${y(tick.travelledKm)})`}>
               <line x2={-5} className="stroke-ink" />
               <text x={-9} dy="0.32em" textAnchor="end" className="fill-ink2 text-note">
-                {prefix} {chainageAt(field, km, tick).toFixed(1)}
+                {prefix} {Number(tick.chainageKm.toFixed(1))}
               </text>
             </g>
           ))}
@@ -74,7 +77,7 @@ export function DistanceTimeChart({ field, levels, water, receptors, measure, st
             </g>
           ))}
           {clockTicks(startMs, horizonS, offset, Math.max(2, Math.floor((width - LEFT - RIGHT) / 84))).map((tick) => (
-            <g key={tick.atS} transform={`translate(${x(tick.atS)} ${HEIGHT - BOTTOM})`}>
+            <g key={tick.atS} transform={`translate(${x(tick.atS)} ${height - BOTTOM})`}>
               <line y2={5} className="stroke-ink" />
               <text y={18} textAnchor="middle" className="fill-ink text-note">
                 {tick.isMidnight ? formatClock(startMs + tick.atS * 1_000, offset).slice(4, -6) : formatTimeOfDay(startMs + tick.atS * 1_000, offset)}
@@ -84,8 +87,8 @@ export function DistanceTimeChart({ field, levels, water, receptors, measure, st
               </text>
             </g>
           ))}
-          <path d={`M${LEFT} ${TOP}V${HEIGHT - BOTTOM}H${width - RIGHT}`} fill="none" className="stroke-ink" />
-          <line x1={x(timeS)} x2={x(timeS)} y1={TOP} y2={HEIGHT - BOTTOM} strokeWidth={2} className="stroke-kingfisher" />
+          <path d={`M${LEFT} ${TOP}V${height - BOTTOM}H${width - RIGHT}`} fill="none" className="stroke-ink" />
+          <line x1={x(timeS)} x2={x(timeS)} y1={TOP} y2={height - BOTTOM} strokeWidth={2} className="stroke-kingfisher" />
         </svg>
       </div>
       <figcaption className="text-note text-ink2">
@@ -106,10 +109,23 @@ function columnOf(field: DistanceTime, place: { reachId: string; chainageKm: num
   return null;
 }
 
-function chainageAt(field: DistanceTime, km: readonly number[], travelled: number): number {
-  const i = Math.max(1, km.findIndex((value) => value >= travelled));
-  const a = km[i - 1] ?? 0;
-  const b = km[i] ?? a;
-  const share = b === a ? 0 : (travelled - a) / (b - a);
-  return field.chainageKm[i - 1]! + ((field.chainageKm[i] ?? field.chainageKm[i - 1]!) - field.chainageKm[i - 1]!) * share;
+type Tick = { chainageKm: number; travelledKm: number };
+
+/** Round chainages down one river; where the path changes river, round distances with the chainage there. */
+function chainageTicks(field: DistanceTime, km: readonly number[], y: { ticks: (count: number) => number[] }, count: number): Tick[] {
+  const { chainageKm } = field;
+  const [first = 0, last = 0] = [chainageKm[0], chainageKm[chainageKm.length - 1]];
+  if (chainageKm.some((value, i) => i > 0 && value > chainageKm[i - 1]!)) return y.ticks(count).map((travelledKm) => ({ travelledKm, chainageKm: along(km, chainageKm, travelledKm) }));
+  const falling = [...chainageKm].reverse();
+  const travelled = [...km].reverse();
+  return ticks(last, first, count).map((chainage) => ({ chainageKm: chainage, travelledKm: along(falling, travelled, chainage) }));
+}
+
+/** The value in `to` at the place where the rising list `from` reaches a value. */
+function along(from: readonly number[], to: readonly number[], value: number): number {
+  const next = from.findIndex((one) => one >= value);
+  const i = next === -1 ? from.length - 1 : Math.max(1, next);
+  const [a, b] = [from[i - 1]!, from[i] ?? from[i - 1]!];
+  const share = b === a ? 0 : (value - a) / (b - a);
+  return to[i - 1]! + ((to[i] ?? to[i - 1]!) - to[i - 1]!) * share;
 }

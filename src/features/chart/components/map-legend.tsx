@@ -11,17 +11,18 @@ type Props = { levels: readonly Level[]; measure: Measure; theme: MapTheme; show
 export function MapLegend({ levels, measure, theme, showsEnvelope, onEnvelope }: Props) {
   const [isOpen, setOpen] = useState(() => window.matchMedia('(min-width: 48rem)').matches);
   return (
-    <section aria-label="Values on the map" className="absolute bottom-14 left-3 z-[1000] max-h-[calc(100%-4.5rem)] overflow-y-auto rounded-sm bg-sheet shadow-float max-md:top-3 max-md:bottom-auto print:shadow-none">
-      <button type="button" aria-expanded={isOpen} onClick={() => setOpen(!isOpen)} className="flex min-h-9 w-full items-center gap-2 px-3 font-semibold pointer-coarse:min-h-11 print:hidden">
+    <section aria-label="Values on the map" className="absolute bottom-10 left-2 z-[1000] max-h-[calc(100%-3rem)] overflow-y-auto rounded-sm bg-sheet shadow-float max-md:top-2 max-md:bottom-auto print:shadow-none">
+      <button type="button" aria-expanded={isOpen} onClick={() => setOpen(!isOpen)} className="flex min-h-9 w-full items-center gap-2 px-2 font-semibold -outline-offset-2 pointer-coarse:min-h-11 print:hidden">
         <Icon name={isOpen ? 'down' : 'right'} className="size-3.5 text-ink2" />
         Values
       </button>
       {isOpen && (
-        <div className="px-2 pb-2">
+        <div className="px-2 pb-1 print:pt-1">
           <ConcentrationGauge levels={levels} measure={measure} theme={theme} />
-          <label className="flex min-h-8 items-center gap-2 text-note print:hidden">
+          <label className="flex min-h-7 items-center gap-1.5 text-note pointer-coarse:min-h-11 print:hidden">
             <input type="checkbox" className="accent-kingfisher" checked={showsEnvelope} onChange={(event) => onEnvelope(event.target.checked)} />
-            Outline of all it reaches
+            <span className="flex-1">reached at any time</span>
+            <span aria-hidden="true" className="w-4 border-t-2 border-dotted border-ink2" />
           </label>
         </div>
       )}

@@ -4,6 +4,7 @@ import { speeds, type Player } from '../hooks/use-player';
 
 /** Play, step, speed, and the time shown in large figures. */
 export function RailControls({ player, startMs, offset, note }: { player: Player; startMs: number; offset: string; note: string }) {
+  const shownS = wholeMinutes(player.timeS);
   return (
     <div className="flex items-center gap-x-3 gap-y-1 px-3 pt-1.5 pb-1">
       <div className="flex gap-1 print:hidden">
@@ -13,7 +14,7 @@ export function RailControls({ player, startMs, offset, note }: { player: Player
       </div>
       <div className="flex min-w-0 flex-wrap items-baseline gap-x-3">
         <output aria-live="off" className="text-lead font-semibold whitespace-nowrap max-sm:text-body">
-          {formatClock(startMs + player.timeS * 1_000, offset)} <span className="font-normal text-ink2 max-sm:hidden">{formatOffset(offset)}</span> <span className="font-normal text-ink2">{formatElapsed(player.timeS)}</span>
+          {formatClock(startMs + shownS * 1_000, offset)} <span className="font-normal text-ink2 max-sm:text-note">{formatOffset(offset)}</span> <span className="font-normal text-ink2">{formatElapsed(shownS)}</span>
         </output>
         {note && (
           <p role="status" className="text-note text-ink2">
@@ -38,3 +39,6 @@ export function RailControls({ player, startMs, offset, note }: { player: Player
     </div>
   );
 }
+
+/** Clock and elapsed time are cut to the minute together: neither may say another minute than its neighbour. */
+export const wholeMinutes = (s: number): number => Math.round(s / 60) * 60;

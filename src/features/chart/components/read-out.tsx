@@ -1,4 +1,4 @@
-import { formatClock, formatElapsed, formatPosition, type Measure } from '../../../../shared/format';
+import { formatClock, formatElapsed, formatOffset, formatPosition, type Measure } from '../../../../shared/format';
 import { snapToReaches } from '../../../../shared/geo';
 import type { LonLat } from '../../../../shared/schemas/basics';
 import type { EstimateWater } from '../../../../shared/schemas/estimate';
@@ -7,6 +7,7 @@ import { readFrameAt } from '../../../map/read-frame';
 import { sayConcentration, type Clock } from '../model/arrival-words';
 import type { Envelope, Frame } from '../model/forecast';
 import { channelWords } from '../model/place';
+import { wholeMinutes } from './rail-controls';
 
 type Props = { position: LonLat; frame: Frame; envelope: Envelope | null; water: EstimateWater; ribbonM: number; timeS: number; clock: Clock; measure: Measure; onClose: () => void };
 
@@ -25,7 +26,7 @@ export function ReadOut({ position, frame, envelope, water, ribbonM, timeS, cloc
       </div>
       <p className="text-figure font-semibold">{say(now, measure)}</p>
       <p>
-        {formatClock(clock.startMs + timeS * 1_000, clock.offset)} <span className="text-ink2">{formatElapsed(timeS)}</span>
+        {formatClock(clock.startMs + wholeMinutes(timeS) * 1_000, clock.offset)} <span className="text-ink2">{formatOffset(clock.offset)} {formatElapsed(timeS)}</span>
       </p>
       {largest !== null && <p className="mt-1 text-ink2">Largest over all time {say(largest, measure)}</p>}
     </section>

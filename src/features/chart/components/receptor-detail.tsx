@@ -65,14 +65,14 @@ function ActionDetail({ one, receptor, clock, measure }: { one: ActionAnswer; re
 
 const At = ({ at, isLarge = false }: { at: Written; isLarge?: boolean }) => (
   <span className="whitespace-nowrap">
-    <span className={isLarge ? 'text-figure font-semibold' : 'font-semibold'}>{at.clock}</span> <span className="text-ink2">{at.elapsed}</span>
+    <span className={isLarge ? 'text-lead font-semibold @4xl:text-figure' : 'font-semibold'}>{at.clock}</span> <span className="text-ink2">{at.elapsed}</span>
   </span>
 );
 
 /** A list of names and figures; rows without a figure are left out. */
 function Figures({ rows }: { rows: [string, ReactNode][] }) {
   return (
-    <dl className="grid grid-cols-[minmax(9rem,auto)_1fr] gap-x-4">
+    <dl className="grid grid-cols-[minmax(6rem,auto)_1fr] gap-x-3 @4xl:grid-cols-[minmax(9rem,auto)_1fr]">
       {rows
         .filter(([, figure]) => figure !== null && figure !== false)
         .map(([name, figure]) => (

@@ -1,6 +1,7 @@
-import type { Measure } from '../../../../shared/format';
+import { formatOffset, type Measure } from '../../../../shared/format';
 import type { EstimateReceptor } from '../../../../shared/schemas/estimate';
 import type { ReceptorAnswer } from '../../../../shared/schemas/estimate-result';
+import { Icon } from '../../../components/icon';
 import { CheckInput } from '../../../components/inputs';
 import { classNames } from '../../../lib/class-names';
 import { ReceptorPlate } from '../../../map/receptor-plate';
@@ -21,6 +22,7 @@ export function ReceptorsPanel({ rows, clock, measure, selectedId, onSelect, isB
   const leftOut = draft.receptors.filter((receptor) => draft.leftOut.includes(receptor.id));
   return (
     <>
+      <p className="text-note text-ink2">Earliest to latest arrival above the action value, {formatOffset(clock.offset)}</p>
       <ol className={classNames('list-none', isBehind && 'opacity-55')} aria-label="Receptors, by arrival">
         {rows.map(({ receptor, answer, number }) => (
           <ReceptorRow key={receptor.id} receptor={receptor} answer={answer} number={number} clock={clock} measure={measure} isSelected={receptor.id === selectedId} onSelect={onSelect} />
@@ -53,8 +55,9 @@ function ReceptorRow({ receptor, answer, number, clock, measure, isSelected, onS
 function ReceptorChoice({ leftOutCount }: { leftOutCount: number }) {
   const { draft, change, isReadOnly } = useChart();
   return (
-    <details>
-      <summary className="min-h-9 py-1 font-semibold text-kingfisher">
+    <details className="group">
+      <summary className="flex min-h-11 items-center gap-2 font-semibold text-kingfisher">
+        <Icon name="right" className="size-3.5 group-open:rotate-90" />
         Receptors and action values{leftOutCount > 0 && `, ${leftOutCount} left out`}
       </summary>
       <fieldset disabled={isReadOnly} className="flex flex-col">

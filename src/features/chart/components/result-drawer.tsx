@@ -50,7 +50,7 @@ export function ResultDrawer(props: Props) {
         {tab && <Button kind="quiet" icon="close" className="ml-auto" aria-label="Close the drawer" onClick={() => onTab(null)} />}
       </div>
       {tab && (
-        <div className="h-[clamp(13rem,28dvh,26rem)] overflow-auto border-t border-rule p-4" tabIndex={-1}>
+        <div className="h-[clamp(13rem,28dvh,26rem)] @container overflow-auto border-t border-rule p-4" tabIndex={-1}>
           <DrawerLeaf {...props} tab={tab} />
         </div>
       )}
@@ -70,7 +70,7 @@ function DrawerLeaf({ tab, forecast, document, rows, clock, measure, selectedId,
   if (tab === 'working') return forecast.result ? <WorkingView result={forecast.result} receptor={row?.receptor ?? null} answer={row?.answer ?? null} /> : <p className="text-ink2">Comes with the whole solution.</p>;
   if (!row?.answer) return <p className="text-ink2">{row ? 'Not solved yet.' : 'No receptor on this water.'}</p>;
   return (
-    <div className="grid gap-6 lg:grid-cols-[minmax(0,1fr)_minmax(19rem,26rem)]">
+    <div className="grid gap-x-6 gap-y-4 @xl:grid-cols-[minmax(0,1fr)_16rem] @4xl:grid-cols-[minmax(0,1fr)_24rem]">
       <div className="min-w-0">
         <h2 className="font-semibold">
           {row.receptor.code} {row.receptor.name}

@@ -9,11 +9,11 @@ export function Section({ title, summary, isOpenFirst = false, hasError = false,
   return (
     <section className="border-b border-rule">
       <h2>
-        <button type="button" aria-expanded={isOpen} onClick={() => setOpen(!isOpen)} className="flex min-h-11 w-full items-baseline gap-2 px-4 py-2 text-left hover:bg-sheet">
-          <Icon name={isOpen ? 'down' : 'right'} className="size-3.5 self-center text-ink2 print:hidden" />
+        <button type="button" aria-expanded={isOpen} onClick={() => setOpen(!isOpen)} className="flex min-h-11 w-full items-center gap-2 px-4 py-2 text-left hover:bg-sheet">
+          <Icon name={isOpen ? 'down' : 'right'} className="size-3.5 text-ink2 print:hidden" />
           <span className="shrink-0 font-semibold">{title}</span>
           <span className="min-w-0 flex-1 truncate text-right text-ink2">{summary}</span>
-          {hasError && <Icon name="attention" className="size-4 self-center text-bad" />}
+          {hasError && <Icon name="attention" className="size-4 text-bad" />}
           {hasError && <span className="sr-only">needs something</span>}
         </button>
       </h2>

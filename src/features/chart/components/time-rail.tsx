@@ -6,7 +6,7 @@ import { useWidth } from '../hooks/use-width';
 import { flagsOf } from '../model/rail-lanes';
 import { nightSpans } from '../model/sun';
 import { clockTicks } from '../model/time-ticks';
-import { RailControls } from './rail-controls';
+import { RailControls, wholeMinutes } from './rail-controls';
 import { RailFlags } from './rail-flags';
 import type { Rows } from './receptors-panel';
 
@@ -48,7 +48,7 @@ export function TimeRail({ player, startMs, horizonS, offset, place, rows, selec
     const box = event.currentTarget.getBoundingClientRect();
     player.goTo(((event.clientX - box.left - SIDE_PX) / track) * horizonS);
   };
-  const spoken = `${formatClock(startMs + player.timeS * 1_000, offset)}, ${formatElapsed(player.timeS)}`;
+  const spoken = `${formatClock(startMs + wholeMinutes(player.timeS) * 1_000, offset)}, ${formatElapsed(player.timeS)}`;
 
   return (
     <section aria-label="Time" className="border-t border-rule bg-sheet print:break-inside-avoid">

@@ -3,6 +3,9 @@ import type { ActionAnswer, ReceptorAnswer } from '../../../../shared/schemas/es
 import { displayUnitOf } from '../../../../shared/units';
 import { decidingAnswer, latestEndS } from './rail-lanes';
 
+/** Keeps a figure on the line of its unit. */
+const NO_BREAK = '\u00a0';
+
 export type Clock = { startMs: number; offset: string };
 export type Written = { clock: string; elapsed: string };
 
@@ -46,7 +49,7 @@ export function arrivalSpan(clock: Clock, answer: ReceptorAnswer): string | null
 export const sayConcentration = (value: number | null, measure: Measure): string => {
   if (value === null) return '–';
   const { text, unit } = formatConcentration(value, measure);
-  return `${text} ${unit}`;
+  return `${text}${NO_BREAK}${unit}`;
 };
 
 /** "11 to 42 mg/l, likely 21 mg/l": one unit, that of the largest. */
@@ -56,8 +59,8 @@ export function sayRange({ low, likely, high }: { low: number | null; likely: nu
   if (low === null && high === null) return sayConcentration(likely, measure);
   const largest = formatConcentration(high ?? likely, measure);
   const inUnit = (value: number) => formatConcentration(value, measure, { unit: displayUnitOf(high ?? likely, measure) }).text;
-  if (largest.text.startsWith('below')) return `${largest.text} ${largest.unit}`;
-  return `${inUnit(low ?? likely)} to ${inUnit(high ?? likely)} ${largest.unit}, likely ${inUnit(likely)} ${largest.unit}`;
+  if (largest.text.startsWith('below')) return `${largest.text}${NO_BREAK}${largest.unit}`;
+  return `${inUnit(low ?? likely)} to ${inUnit(high ?? likely)}${NO_BREAK}${largest.unit}, likely ${inUnit(likely)}${NO_BREAK}${largest.unit}`;
 }
 
 /** Dose as concentration times hours: "86 mg/l·h". */
