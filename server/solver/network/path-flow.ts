@@ -31,6 +31,7 @@ export class PathFlow {
   readonly isTidal: boolean;
   readonly endM: number;
   private readonly omega: number;
+  private lastAsked = 0;
 
   constructor(first: ReachState, flowing: readonly FlowingReach[], states: readonly ReachState[]) {
     const line = lineThrough(first, states);
@@ -60,8 +61,11 @@ export class PathFlow {
   }
 
   reachAt(xM: number): number {
-    let r = 0;
+    // Neighbours ask one after another: begin where the last one was.
+    let r = this.lastAsked;
+    while (r > 0 && xM < this.reaches[r]!.x0) r--;
     while (r < this.reaches.length - 1 && xM >= this.reaches[r]!.x1) r++;
+    this.lastAsked = r;
     return r;
   }
 

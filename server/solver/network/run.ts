@@ -59,6 +59,7 @@ export class NetworkSimulation {
   private readonly evenShares: Float64Array;
   private readonly lost: Float64Array;
   private mostParcels = 0;
+  private inWater = 1;
 
   constructor(private readonly plan: RunPlan) {
     const { flow, resolution, release } = plan;
@@ -134,7 +135,7 @@ export class NetworkSimulation {
     const snapshots: Snapshot[] = [];
     this.start(timesS[0]!);
     for (let n = 0; n <= steps; n++) {
-      if (n > 0) this.step(timesS[n - 1]!, stepS, n);
+      if (n > 0 && !this.isOver(timesS[n - 1]!)) this.step(timesS[n - 1]!, stepS, n);
       const tS = timesS[n]!;
       stations.record(chains, n);
       envelope.record(chains);
@@ -156,6 +157,11 @@ export class NetworkSimulation {
       mostParcels: this.mostParcels,
       largestMixing: Math.max(...chains.map((chain) => chain.largestMixing)),
     };
+  }
+
+  /** Nothing worth naming is left, and nothing more comes. */
+  private isOver(tS: number): boolean {
+    return tS >= this.plan.release.profile.stopS && this.inWater < 1e-14;
   }
 
   private rows(steps: number): Float64Array[] {
@@ -269,5 +275,6 @@ export class NetworkSimulation {
       books.left[layer]![n] = last.left[layer]! + beyond;
     }
     books.lost[n] = this.lost[1] ?? 0;
+    this.inWater = books.inWater[0]![n]!;
   }
 }

@@ -1,4 +1,4 @@
-import type { Amounts, Chain } from './chain';
+import { DROP_SHARE, type Amounts, type Chain } from './chain';
 import type { PathFlow } from './path-flow';
 
 /**
@@ -60,7 +60,7 @@ export class Storage {
         if (this.face[k + 1]! >= b) break;
       }
     }
-    this.trim(peak * 1e-17);
+    this.trim(peak * DROP_SHARE);
   }
 
   /** One parcel and one cell over the length they share; gives the larger concentration of the first layer's tubes. */

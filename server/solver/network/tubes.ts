@@ -2,6 +2,9 @@ import { etaOf } from '../river/path';
 import type { Bank } from '../../../shared/schemas/basics';
 import { betweenWalls } from '../physics/two-walls';
 
+/** A step of more than this times the tubes squared leaves exp(-4 pi2) = 1e-17 of any difference. */
+const EVEN_AFTER = 4;
+
 /**
  * Stream tubes: nodes at even shares of the discharge from the left bank (0) to the right (1), each standing for the
  * tube half-way to its neighbours, so that the tubes at the banks are half as wide and end nodes lie on the banks.
@@ -11,9 +14,17 @@ export class Tubes {
   /** Share of the discharge in each tube; they add to 1. */
   readonly share: Float64Array;
   readonly spacing: number;
+  private strength = -1;
+  private implicit = 0.5;
+  private readonly upper: Float64Array;
+  private readonly pivot: Float64Array;
+  private readonly work: Float64Array;
 
   constructor(readonly count: number) {
     this.spacing = 1 / (count - 1);
+    this.upper = new Float64Array(count);
+    this.pivot = new Float64Array(count);
+    this.work = new Float64Array(count);
     this.share = new Float64Array(count).fill(this.spacing);
     this.share[0] = this.share[count - 1] = this.spacing / 2;
   }
@@ -70,27 +81,54 @@ export class Tubes {
    * where that keeps values positive, else as implicit as that needs. Keeps the sum of share times value.
    *
    * @param strength  (e/W2) dt / spacing^2
-   * @param scratch   2 * count numbers, overwritten
    */
-  mix(value: Float64Array, at: number, strength: number, scratch: Float64Array): void {
+  mix(value: Float64Array, at: number, strength: number): void {
     const n = this.count;
-    const implicit = Math.max(0.5, 1 - 1 / (2 * strength));
-    const [a, e] = [implicit * strength, (1 - implicit) * strength];
-    // Thomas algorithm; end rows carry the whole exchange of their half tube: 2 (C1 - C0).
+    if (isEven(value, at, n)) return;
+    if (strength > EVEN_AFTER * n * n) return this.level(value, at);
+    if (strength !== this.strength) this.factor(strength);
+    const { upper, pivot, work } = this;
+    const [a, e] = [this.implicit * strength, (1 - this.implicit) * strength];
     let before = value[at]!;
-    scratch[0] = (-2 * a) / (1 + 2 * a);
-    scratch[n] = (before + 2 * e * (value[at + 1]! - before)) / (1 + 2 * a);
-    for (let j = 1; j < n; j++) {
+    work[0] = (before + 2 * e * (value[at + 1]! - before)) * pivot[0]!;
+    for (let j = 1; j < n - 1; j++) {
       const now = value[at + j]!;
-      const isEnd = j === n - 1;
-      const right = isEnd ? before : value[at + j + 1]!;
-      const lower = isEnd ? 2 * a : a;
-      const pivot = 1 / (1 + 2 * a + lower * scratch[j - 1]!);
-      scratch[j] = -a * pivot;
-      scratch[n + j] = (now + e * (before - 2 * now + right) + lower * scratch[n + j - 1]!) * pivot;
+      work[j] = (now + e * (before - 2 * now + value[at + j + 1]!) + a * work[j - 1]!) * pivot[j]!;
       before = now;
     }
-    value[at + n - 1] = scratch[2 * n - 1]!;
-    for (let j = n - 2; j >= 0; j--) value[at + j] = scratch[n + j]! - scratch[j]! * value[at + j + 1]!;
+    const last = value[at + n - 1]!;
+    let next = (last + 2 * e * (before - last) + 2 * a * work[n - 2]!) * pivot[n - 1]!;
+    value[at + n - 1] = next;
+    for (let j = n - 2; j >= 0; j--) {
+      next = work[j]! - upper[j]! * next;
+      value[at + j] = next;
+    }
   }
+
+  private level(value: Float64Array, at: number): void {
+    let mean = 0;
+    for (let j = 0; j < this.count; j++) mean += this.share[j]! * value[at + j]!;
+    value.fill(mean, at, at + this.count);
+  }
+
+  /** Factors of the tridiagonal system; end rows carry the whole exchange of their half tube: 2 (C1 - C0). */
+  private factor(strength: number): void {
+    this.strength = strength;
+    this.implicit = Math.max(0.5, 1 - 1 / (2 * strength));
+    const a = this.implicit * strength;
+    this.pivot[0] = 1 / (1 + 2 * a);
+    this.upper[0] = -2 * a * this.pivot[0];
+    for (let j = 1; j < this.count; j++) {
+      const lower = j === this.count - 1 ? 2 * a : a;
+      this.pivot[j] = 1 / (1 + 2 * a + lower * this.upper[j - 1]!);
+      this.upper[j] = -a * this.pivot[j]!;
+    }
+  }
+}
+
+/** Nothing to mix: the section is even to rounding. */
+function isEven(value: Float64Array, at: number, count: number): boolean {
+  const first = value[at]!;
+  for (let j = at + 1; j < at + count; j++) if (Math.abs(value[j]! - first) > 1e-13 * first) return false;
+  return true;
 }
