@@ -13,6 +13,7 @@ import { envelopesUntil, isochroneTimes, reachedLevel, reachedOf } from './resul
 import { contourLevels } from './results/levels';
 import { receptorAnswer } from './results/receptor-answer';
 import { resolutionOf } from './results/resolution';
+import { secondOpinion, type Opinion } from './second-opinion/second-opinion';
 import { solverFor } from './solvers';
 import type { Books, EstimateSink, GriddedField, PreparedField, ReceptorSite, RunInput } from './types';
 
@@ -44,9 +45,11 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
   const unit = doc.substance.measure === 'count' ? 'counts/m3' : 'kg/m3';
   sink({ type: 'start', solver: solver.name, engineVersion: ENGINE_VERSION, unit, levels: frames.levels, frameTimesS });
   frames.write(0, Math.min(FIRST_FRAMES, doc.frameCount));
-  const { answers, sites } = answerReceptors(input, field, sink);
+  const first = answerReceptors(input, field, sink);
   frames.write(Math.min(FIRST_FRAMES, doc.frameCount), doc.frameCount);
   const reached = frames.writeEnvelope();
+  const opinion = input.isPreview ? null : secondOpinion(input, field, first.answers);
+  const { answers, sites } = opinion ? withOpinion(input, first, opinion, sink) : first;
   const books = field.books(doc.horizonS, input.weights.likely);
   const diagnostics = {
     ...diagnosticsOf(input, books, frames.cappedValues),
@@ -68,6 +71,8 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
     checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...field.checks, ...sites.flatMap((site) => site.checks)],
     diagnostics,
     working: [...amountWorking(input), ...field.working],
+    ...(opinion ? { secondOpinion: opinion.secondOpinion } : {}),
+    ...(opinion?.paths ? { paths: opinion.paths } : {}),
   };
   sink({ type: 'result', result });
   return result;
@@ -157,7 +162,9 @@ function countAt(values: Float64Array, cap: number | null): number {
   return count;
 }
 
-function answerReceptors(input: RunInput, field: PreparedField, sink: EstimateSink): { answers: ReceptorAnswer[]; sites: ReceptorSite[] } {
+type Answered = { answers: ReceptorAnswer[]; sites: ReceptorSite[] };
+
+function answerReceptors(input: RunInput, field: PreparedField, sink: EstimateSink): Answered {
   const { receptors } = input.doc;
   const sites: ReceptorSite[] = [];
   const answers = receptors.map((receptor, index) => {
@@ -170,6 +177,20 @@ function answerReceptors(input: RunInput, field: PreparedField, sink: EstimateSi
     return answer;
   });
   return { answers, sites };
+}
+
+/** Answers a receptor anew where a second method disagrees; the others stand. */
+function withOpinion(input: RunInput, { answers, sites }: Answered, { checks }: Opinion, sink: EstimateSink): Answered {
+  const out: Answered = { answers: [...answers], sites: [...sites] };
+  input.doc.receptors.forEach((receptor, index) => {
+    const against = checks.filter((check) => check.receptorId === receptor.id);
+    if (against.length === 0) return;
+    const site = { ...sites[index]!, checks: [...sites[index]!.checks, ...against] };
+    out.sites[index] = site;
+    out.answers[index] = receptorAnswer(input, receptor, site);
+    sink({ type: 'receptor', answer: out.answers[index]! });
+  });
+  return out;
 }
 
 const diagnosticsOf = (input: RunInput, books: Books, cappedValues: number): EstimateResult['diagnostics'] => ({
