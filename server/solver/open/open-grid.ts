@@ -55,8 +55,11 @@ export const clipBox = (box: Box, area: PlaneArea): Box | null => {
 export const unionBox = (a: Box | null, b: Box | null): Box | null =>
   !a || !b ? (a ?? b) : { x0: Math.min(a.x0, b.x0), y0: Math.min(a.y0, b.y0), x1: Math.max(a.x1, b.x1), y1: Math.max(a.y1, b.y1), sigmaM: Math.min(a.sigmaM, b.sigmaM) };
 
-/** Empty cells round the box, so that no isoline ends at the grid's border, not even at a source of no size at its very edge. */
-const MARGIN_CELLS = 3;
+/**
+ * Empty cells round the box, so that no isoline ends at the grid's border, not even at a source of no size at its very edge:
+ * a puff is drawn at least 0.7 cells wide, so five cells are seven of its standard deviations, 1e-11 of its middle.
+ */
+const MARGIN_CELLS = 5;
 
 /** Five nodes a standard deviation where `maxNodes` allows it, and never fewer than 24 a side, with a margin of empty cells. */
 export function gridFor(box: Box, origin: { originLon: number; originLat: number }, maxNodes: number): PlaneGrid {

@@ -57,9 +57,9 @@ export function ChartLayout({ head, forecast, document, isBehind, missing, note,
   const summary = missing && !forecast ? missing : first ? `${rows[0]!.receptor.code} ${first}` : `${rows.length} receptors`;
 
   return (
-    <div className="isolate flex h-full flex-col print:block print:h-auto">
+    <div className="isolate flex h-full flex-col overflow-y-auto print:block print:h-auto print:overflow-visible">
       {head}
-      <div className="relative grid min-h-0 flex-1 grid-cols-[auto_minmax(0,1fr)] grid-rows-[minmax(0,1fr)_auto_auto] [grid-template-areas:'page_stage''page_rail''page_drawer'] max-md:grid-cols-1 max-md:[grid-template-areas:'stage''rail''drawer'] print:block">
+      <div className={classNames(tab ? 'min-h-[38rem]' : 'min-h-[25rem]', "relative grid flex-1 grid-cols-[auto_minmax(0,1fr)] grid-rows-[minmax(0,1fr)_auto_auto] [grid-template-areas:'page_stage''page_rail''page_drawer'] max-md:grid-cols-1 max-md:[grid-template-areas:'stage''rail''drawer'] print:block")}>
         <aside
           aria-label="Scenario"
           className={classNames('relative flex min-h-0 flex-col border-r border-rule bg-paper [grid-area:page] max-md:z-[1100] max-md:w-full! max-md:self-end max-md:border-t max-md:border-r-0 max-md:border-ink max-md:[grid-area:stage] print:hidden', sheetClass[sheet])}

@@ -41,10 +41,10 @@ export function DistanceTimeChart({ field, levels, water, receptors, measure, st
   const paths = useMemo(() => distancePaths(field, drawn.map((level) => level.value), x, (column) => y(valueBetween(km, column))), [field, drawn, x, y, km]);
   const colours = bandColours(drawn.length, theme);
   const prefix = water.kind === 'river' ? (water.reaches.find((reach) => reach.id === field.reachIds[0])?.chainagePrefix ?? 'km') : 'km';
-  const lines = receptors.flatMap((receptor) => {
+  const lines = spaced(receptors.flatMap((receptor) => {
     const column = receptor.channel ? columnOf(field, receptor.channel) : null;
     return column === null ? [] : [{ receptor, at: y(valueBetween(km, column)) }];
-  });
+  }));
 
   return (
     <figure className="m-0">
@@ -68,10 +68,10 @@ export function DistanceTimeChart({ field, levels, water, receptors, measure, st
               </text>
             </g>
           ))}
-          {lines.map(({ receptor, at }) => (
+          {lines.map(({ receptor, at, labelY }) => (
             <g key={receptor.id}>
               <line x1={LEFT} x2={width - RIGHT} y1={at} y2={at} className="stroke-ink" strokeWidth={1} />
-              <text x={width - RIGHT + 5} y={at} dy="0.32em" className="fill-ink text-note font-semibold">
+              <text x={width - RIGHT + 5} y={labelY} dy="0.32em" className="fill-ink text-note font-semibold">
                 {receptor.code}
               </text>
             </g>
@@ -96,6 +96,17 @@ export function DistanceTimeChart({ field, levels, water, receptors, measure, st
       </figcaption>
     </figure>
   );
+}
+
+const LABEL_PX = 14;
+
+/** Codes stand beside their lines, or a little lower where two lines are closer than a line of text. */
+function spaced<Line extends { at: number }>(lines: readonly Line[]): (Line & { labelY: number })[] {
+  let last = -Infinity;
+  return lines.toSorted((a, b) => a.at - b.at).map((line) => {
+    last = Math.max(line.at, last + LABEL_PX);
+    return { ...line, labelY: last };
+  });
 }
 
 /** Column of a place in the field, between two of its columns; null when the path does not pass it. */

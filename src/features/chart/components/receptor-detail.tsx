@@ -2,6 +2,7 @@ import type { ReactNode } from 'react';
 import { formatDistance, formatDuration, formatRatio, type Measure } from '../../../../shared/format';
 import type { EstimateReceptor } from '../../../../shared/schemas/estimate';
 import type { ActionAnswer, ReceptorAnswer } from '../../../../shared/schemas/estimate-result';
+import { classNames } from '../../../lib/class-names';
 import { arrivalWords, sayConcentration, sayDose, sayRange, writeTime, type Clock, type Written } from '../model/arrival-words';
 
 type Props = { receptor: EstimateReceptor; answer: ReceptorAnswer; clock: Clock; measure: Measure };
@@ -64,8 +65,8 @@ function ActionDetail({ one, receptor, clock, measure }: { one: ActionAnswer; re
 }
 
 const At = ({ at, isLarge = false }: { at: Written; isLarge?: boolean }) => (
-  <span className="whitespace-nowrap">
-    <span className={isLarge ? 'text-lead font-semibold @4xl:text-figure' : 'font-semibold'}>{at.clock}</span> <span className="text-ink2">{at.elapsed}</span>
+  <span>
+    <span className={classNames('font-semibold whitespace-nowrap', isLarge && 'text-lead @4xl:text-figure')}>{at.clock}</span> <span className="text-ink2">{at.elapsed}</span>
   </span>
 );
 
