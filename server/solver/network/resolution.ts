@@ -15,7 +15,7 @@ export type Resolution = {
 };
 
 const FULL = { perSigma: 16, along: 3_000, steps: 8_000, fewest: 240, tubes: 17 } as const;
-const PREVIEW = { perSigma: 6, along: 260, steps: 420, fewest: 100, tubes: 9 } as const;
+const PREVIEW = { perSigma: 6, along: 200, steps: 300, fewest: 100, tubes: 9 } as const;
 
 /**
  * The step: a sixteenth of the standard deviation of the passage at the receptor where it is sharpest (a sixth in a

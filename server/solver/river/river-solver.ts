@@ -8,6 +8,7 @@ import { etaOf, placeOn, riverPath, type PathPlace, type RiverPath } from './pat
 import { reachStates, type ReachState } from './reach-state';
 import { riverDistanceTime, riverEnvelope, riverFieldAt, type RiverGridding } from './river-grid';
 import { forEachBirth, riverResponse, sectionDensity } from './river-response';
+import { riverTravelTimes } from './river-travel-times';
 import { riverReceptorWorking, riverRunWorking } from './river-working';
 
 /** Closed-form clouds in channel coordinates: along the river by travel time, across between both banks, reach by reach. */
@@ -43,6 +44,7 @@ function prepareRiver(input: RunInput): PreparedField {
     envelope: (timesS, weights) => riverEnvelope(gridding, weights, timesS[timesS.length - 1]!),
     distanceTime: (timesS, weights) => riverDistanceTime(gridding, weights, timesS, input.isPreview ? 80 : 160),
     books: (tS, weights) => booksAt(gridding, weights, tS),
+    travelTimes: (weights) => riverTravelTimes(gridding, weights, doc.horizonS),
     working: riverRunWorking(facts),
     checks: riverRunChecks(facts),
   };
