@@ -1,6 +1,9 @@
 import type { EstimateDocument } from '../../shared/schemas/estimate';
-import type { EstimateResult, Reached, ReceptorAnswer } from '../../shared/schemas/estimate-result';
+import type { Check, EstimateResult, Reached, ReceptorAnswer } from '../../shared/schemas/estimate-result';
+import { answerChecks } from './checks/answer-checks';
 import { commonChecks } from './checks/common-checks';
+import { conditionChecks } from './checks/condition-checks';
+import { waterAtPlaces } from './checks/place-water';
 import { checkDoor } from './door';
 import { ENGINE_VERSION } from './engine-version';
 import { combinedClock, lossParts } from './losses/loss-parts';
@@ -11,6 +14,7 @@ import { amountWorking } from './results/amount-working';
 import { packField, largestOf } from './results/frame-message';
 import { envelopesUntil, isochroneTimes, reachedLevel, reachedOf } from './results/isochrones';
 import { contourLevels } from './results/levels';
+import { hatched, noEstimateOf, type NoEstimate } from './results/no-estimate';
 import { receptorAnswer } from './results/receptor-answer';
 import { resolutionOf } from './results/resolution';
 import { secondOpinion, type Opinion } from './second-opinion/second-opinion';
@@ -41,11 +45,13 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
   const solver = solverFor(doc);
   const field = solver.prepare(input);
   const frameTimesS = Array.from({ length: doc.frameCount }, (_, k) => (doc.horizonS * (k + 1)) / doc.frameCount);
-  const frames = new FrameWriter(input, field, frameTimesS, sink);
+  const runChecks = [...conditionChecks({ input, water: waterAtPlaces(doc)(doc.releases[0]!.channel) }), ...field.checks];
+  const runStop = runChecks.find((check) => check.severity === 'stop' && check.receptorId === null) ?? null;
+  const frames = new FrameWriter(input, field, frameTimesS, sink, noEstimateOf(input, runStop !== null));
   const unit = doc.substance.measure === 'count' ? 'counts/m3' : 'kg/m3';
   sink({ type: 'start', solver: solver.name, engineVersion: ENGINE_VERSION, unit, levels: frames.levels, frameTimesS });
   frames.write(0, Math.min(FIRST_FRAMES, doc.frameCount));
-  const first = answerReceptors(input, field, sink);
+  const first = answerReceptors(input, field, sink, runStop);
   frames.write(Math.min(FIRST_FRAMES, doc.frameCount), doc.frameCount);
   const reached = frames.writeEnvelope();
   const opinion = input.isPreview ? null : secondOpinion(input, field, first.answers);
@@ -68,7 +74,7 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
     distanceTime: field.distanceTime(frameTimesS, input.weights.likely),
     ...(field.travelTimes && !input.isPreview ? { travelTimes: field.travelTimes(input.weights.likely) } : {}),
     reached,
-    checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...field.checks, ...sites.flatMap((site) => site.checks)],
+    checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...runChecks, ...sites.flatMap((site) => site.checks)],
     diagnostics,
     working: [...amountWorking(input), ...field.working],
     ...(opinion ? { secondOpinion: opinion.secondOpinion } : {}),
@@ -107,6 +113,7 @@ class FrameWriter {
     private readonly field: PreparedField,
     private readonly timesS: readonly number[],
     private readonly sink: EstimateSink,
+    private readonly noEstimate: NoEstimate,
   ) {
     const n = timesS.length;
     const probes = [...new Set([Math.floor(n / 6), Math.floor(n / 2), n - 1])].map((index) => largestOf(this.make(index).values)).sort((a, b) => a - b);
@@ -126,8 +133,8 @@ class FrameWriter {
       this.input.meter.assertWanted();
       const made = this.make(index);
       this.made.delete(index);
-      const { payload, ...head } = packField(made, this.levels);
-      this.largest[index] = head.max;
+      const { payload, ...head } = packField(hatched(made, this.noEstimate), this.levels);
+      this.largest[index] = largestOf(made.values);
       this.cappedValues += countAt(made.values, this.input.doc.substance.solubilityKgM3);
       this.sink({ type: 'frame', index, timeS: this.timesS[index]!, grid: made.grid, ...head }, payload);
       this.sink({ type: 'progress', stage: 'frames', done: index + 1, of: this.timesS.length });
@@ -142,7 +149,7 @@ class FrameWriter {
     const timesS = level ? this.arrivalTimes(level.value).filter((t) => t < horizonS) : [];
     const fields = envelopesUntil(this.field, [...timesS, horizonS], this.timesS, this.input);
     const whole = fields[timesS.length]!;
-    const { payload, ...head } = packField(whole, this.levels);
+    const { payload, ...head } = packField(hatched(whole, this.noEstimate), this.levels);
     this.sink({ type: 'envelope', grid: whole.grid, ...head }, payload);
     return level && reachedOf(this.input, level, timesS, fields.slice(0, -1), whole);
   }
@@ -164,14 +171,19 @@ function countAt(values: Float64Array, cap: number | null): number {
 
 type Answered = { answers: ReceptorAnswer[]; sites: ReceptorSite[] };
 
-function answerReceptors(input: RunInput, field: PreparedField, sink: EstimateSink): Answered {
+function answerReceptors(input: RunInput, field: PreparedField, sink: EstimateSink, runStop: Check | null): Answered {
   const { receptors } = input.doc;
   const sites: ReceptorSite[] = [];
+  const waterAt = waterAtPlaces(input.doc);
   const answers = receptors.map((receptor, index) => {
     input.meter.assertWanted();
     const site = field.receptor(index, receptor);
-    const answer = receptorAnswer(input, receptor, site);
-    sites.push(site);
+    const held: ReceptorSite = runStop ? { ...site, checks: [runStop, ...site.checks] } : site;
+    const first = receptorAnswer(input, receptor, held);
+    const late = answerChecks({ input, receptor, answer: first, water: waterAt(receptor.channel) });
+    const isStopped = late.some((check) => check.severity === 'stop');
+    const answer = isStopped ? receptorAnswer(input, receptor, { ...held, checks: [...held.checks, ...late] }) : first;
+    sites.push({ ...site, checks: [...site.checks, ...late] });
     sink({ type: 'receptor', answer });
     sink({ type: 'progress', stage: 'receptors', done: index + 1, of: receptors.length });
     return answer;

@@ -2,6 +2,9 @@ import type { EstimateReceptor } from '../../../shared/schemas/estimate';
 import type { Check } from '../../../shared/schemas/estimate-result';
 import { durationText, lengthText, sig } from '../format';
 import type { OpenFacts } from '../open/open-solver';
+import { firstSizeText } from './first-size';
+import { nearFieldOf } from './near-field';
+import { meanSpeedMps } from './place-water';
 import { checksBy, type Rule } from './rule';
 
 /** Below this a current is as good as unknown (common practice, no source). */
@@ -24,6 +27,16 @@ function speedsOf({ freeCurrent, input, shore }: OpenFacts): { mean: number; acr
   return { mean, across };
 }
 
+/** Net drift over the estimate and the standard deviation of the oldest cloud at its end, m. */
+function driftOf({ freeCurrent, motion, input }: OpenFacts): { net: number; sigmaM: number } {
+  const out = new Float64Array(2);
+  const startS = Math.min(...input.releases.map((release) => release.profile.startS));
+  freeCurrent.displacement(startS, out);
+  const [x, y] = [out[0]!, out[1]!];
+  freeCurrent.displacement(input.doc.horizonS, out);
+  return { net: Math.hypot(out[0]! - x, out[1]! - y), sigmaM: Math.sqrt(motion.spread.smallest(input.doc.horizonS - startS)) };
+}
+
 /** How much of a fixed tensor's difference lies askew to the shore, 0 to 1. */
 function askew({ water, shore }: OpenFacts): number {
   if (!shore || water.mixing.kind !== 'constant' || water.mixing.turnsWithCurrent || water.mixing.alongM2s === water.mixing.acrossM2s) return 0;
@@ -38,6 +51,9 @@ const runRules: readonly Rule<OpenFacts>[] = [
     title: 'Hardly any current',
     test(facts) {
       const { mean } = speedsOf(facts);
+      const drift = driftOf(facts);
+      if (mean >= WEAK_CURRENT_MPS * (1 - 1e-9) && drift.net < drift.sigmaM)
+        return { detail: `At the end the cloud has drifted ${lengthText(drift.net)}, less than its own size of ${lengthText(drift.sigmaM)} (one standard deviation).`, remedy: 'It spreads more than it goes: read it as a circle round the release.' };
       return mean < WEAK_CURRENT_MPS * (1 - 1e-9)
         ? { detail: `The mean current over the estimate is ${sig(mean, 2)} m/s, below ${WEAK_CURRENT_MPS} m/s.`, remedy: 'Direction and arrival are not known at this speed: read the cloud as a circle round the release, and measure the current.' }
         : null;
@@ -97,10 +113,8 @@ const receptorRules: readonly Rule<ReceptorFacts>[] = [
     title: 'Too near the release',
     test({ input, distanceM, water }) {
       const radius = Math.max(...input.releases.map((release) => release.release.initialRadiusM));
-      const least = Math.max(radius, 10 * water.mixingDepthM);
-      return distanceM < least
-        ? { detail: `${lengthText(distanceM)} from the release; jets, eddies and depth decide within ${lengthText(least)} (ten mixing depths, or the first cloud).`, remedy: 'Treat it as reached at once.' }
-        : null;
+      const { leastM, why } = nearFieldOf(input.doc, water.mixingDepthM, input.doc.conditions?.dischargeJet ? meanSpeedMps(input.doc) : 0, radius);
+      return distanceM < leastM ? { detail: `${lengthText(distanceM)} from the release; jets, eddies and depth decide within ${lengthText(leastM)} (${why}).`, remedy: 'Treat it as reached at once.' } : null;
     },
   },
   {
@@ -113,6 +127,15 @@ const receptorRules: readonly Rule<ReceptorFacts>[] = [
         : null,
   },
   {
+    code: 'first-size',
+    severity: 'warn',
+    title: 'The size of the first cloud decides',
+    test({ input, distanceM, water, motion }) {
+      const ageS = distanceM / Math.max(motion.current.maxSpeedMps, 1e-6);
+      return firstSizeText(input.releases, water.mixingDepthM, (release) => Math.sqrt(release.initialRadiusM ** 2 / 4 + motion.spread.smallest(ageS)));
+    },
+  },
+  {
     code: 'receptor-moved',
     severity: 'note',
     title: 'Moved onto the water',
@@ -122,9 +145,9 @@ const receptorRules: readonly Rule<ReceptorFacts>[] = [
     code: 'beach',
     severity: 'warn',
     title: 'Surf and shore eddies',
-    test: ({ receptor, water }) =>
-      receptor.kind === 'bathing' && (water.waterKind === 'coast' || water.waterKind === 'lake')
-        ? { detail: 'Waves, rips and eddies hold water at a beach for hours; the estimate knows none of them.', remedy: 'Expect it later, longer and patchier; sample at the beach before reopening.' }
+    test: ({ receptor, water, input, distanceM }) =>
+      input.doc.conditions?.isSurfZone || (receptor.kind === 'bathing' && (water.waterKind === 'coast' || water.waterKind === 'lake'))
+        ? { detail: `${input.doc.conditions?.isSurfZone ? 'Breaking waves are stated.' : 'It is a bathing water at an open shore.'} Waves, rips and eddies hold water there for hours, however the ${lengthText(distanceM)} from the release were covered.`, remedy: 'Expect it later, longer and patchier; sample at the beach before reopening.' }
         : null,
   },
   {

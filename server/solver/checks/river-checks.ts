@@ -6,6 +6,8 @@ import { acrossAt } from '../river/across';
 import { tauAt } from '../river/river-response';
 import type { PathPlace, RiverPath } from '../river/path';
 import type { RiverFacts } from '../river/river-solver';
+import { firstSizeText } from './first-size';
+import { nearFieldOf } from './near-field';
 import { checksBy, type Rule } from './rule';
 
 const usedStates = ({ states, paths }: RiverFacts) => states.filter((state) => paths.some((path) => path.bySegment.has(state.reach.id)));
@@ -78,10 +80,11 @@ const receptorRules: readonly Rule<ReceptorFacts>[] = [
     code: 'near-field',
     severity: 'stop',
     title: 'Too near the release',
-    test({ place, path }) {
-      const least = Math.max(path.release.release.initialRadiusM, 10 * path.segments[0]!.state.depthM);
-      return Math.abs(place.distanceM) < least
-        ? { detail: `${lengthText(Math.abs(place.distanceM))} from the release; eddies and depth decide within ${lengthText(least)} (ten depths, or the first cloud).`, remedy: 'Treat it as reached at once.' }
+    test({ place, path, input }) {
+      const { state } = path.segments[0]!;
+      const { leastM, why } = nearFieldOf(input.doc, state.depthM, state.speedMps, path.release.release.initialRadiusM);
+      return Math.abs(place.distanceM) < leastM
+        ? { detail: `${lengthText(Math.abs(place.distanceM))} from the release; eddies and depth decide within ${lengthText(leastM)} (${why}).`, remedy: 'Treat it as reached at once.' }
         : null;
     },
   },
@@ -97,7 +100,7 @@ const receptorRules: readonly Rule<ReceptorFacts>[] = [
   },
   {
     code: 'across-mixing',
-    severity: 'note',
+    severity: 'warn',
     title: 'Not mixed across',
     test(facts) {
       const { place } = facts;
@@ -123,12 +126,22 @@ const receptorRules: readonly Rule<ReceptorFacts>[] = [
     },
   },
   {
+    code: 'first-size',
+    severity: 'warn',
+    title: 'The size of the first cloud decides',
+    test({ input, place, path }) {
+      const { state } = path.segments[0]!;
+      const sigmaM = Math.sqrt(path.startVarianceS2 + 2 * place.kappaS * Math.max(0, place.travelS)) * place.segment.state.speedMps;
+      return place.travelS > 0 ? firstSizeText(input.releases.filter((release) => release === path.release), state.depthM, () => sigmaM) : null;
+    },
+  },
+  {
     code: 'tidal-reach',
     severity: 'warn',
     title: 'In tidal water',
     test: ({ place }) =>
       place.segment.state.reach.tidal
-        ? { detail: `${place.segment.state.reach.name} is tidal; the estimate uses the river's seaward flow only.`, remedy: 'Expect the water to come and go with the tide: estimate it as open water with a tidal current.' }
+        ? { detail: `${place.segment.state.reach.name} is tidal; the estimate uses the river's seaward flow of ${sig(place.segment.state.speedMps, 3)} m/s only.`, remedy: 'Expect the water to come and go with the tide: estimate it as open water with a tidal current.' }
         : null,
   },
   {
