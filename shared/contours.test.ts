@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { contourRings, contourRoom, fillRoom, ringsArea, runsAlongBorder } from './contours';
+import { contourBands, contourRings, contourRoom, fillRoom, ringsArea, runsAlongBorder } from './contours';
 
 function ringsOf(nx: number, ny: number, value: (x: number, y: number) => number, level: number) {
   const room = contourRoom(nx, ny);
@@ -72,7 +72,46 @@ describe('contour rings', () => {
     );
   });
 
-  it('refuse a grid without nodes', () => {
+  it('are the same for all levels at once as for each by itself, whatever kind of array holds the values', () => {
+    fc.assert(
+      fc.property(fc.integer({ min: 1, max: 9 }), fc.integer({ min: 1, max: 9 }), fc.array(fc.integer({ min: 0, max: 9 }), { minLength: 81, maxLength: 81 }), (nx, ny, all) => {
+        const values = all.slice(0, nx * ny);
+        const levels = [1, 3, 3, 6.5, 9];
+        const room = contourRoom(nx, ny);
+        const bands = [values, Uint16Array.from(values), Float64Array.from(values)].map((array) => contourBands(room, array, levels));
+        fillRoom(room, values);
+        levels.forEach((level, k) => {
+          const alone = contourRings(room, level);
+          for (const band of bands) expect(band[k]).toEqual(alone);
+        });
+      }),
+    );
+  });
+
+  it('count as many cells as a plain look at every node, whatever the level', () => {
+    // Between a node above and one below there is exactly one crossing: rings have one vertex for each such pair, border included.
+    fc.assert(
+      fc.property(fc.array(fc.integer({ min: 0, max: 9 }), { minLength: 35, maxLength: 35 }), fc.integer({ min: 1, max: 8 }), (values, level) => {
+        const room = contourRoom(7, 5);
+        const isHigh = (i: number, j: number) => i >= 0 && i < 7 && j >= 0 && j < 5 && values[j * 7 + i]! >= level;
+        let pairs = 0;
+        for (let j = -1; j < 5; j++) for (let i = -1; i < 7; i++) pairs += Number(isHigh(i, j) !== isHigh(i + 1, j)) + Number(isHigh(i, j) !== isHigh(i, j + 1));
+        expect(contourBands(room, values, [level])[0]!.points.length / 2).toBe(pairs);
+      }),
+    );
+  });
+
+  it('take values that are no number as below every level', () => {
+    const values = [1, Number.NaN, 1, 1, 1, 1, 1, 1, 1];
+    const [rings] = contourBands(contourRoom(3, 3), values, [0.5]);
+    expect([...rings!.points].every(Number.isFinite)).toBe(true);
+    // The notch reaches to the nodes beside it and below it.
+    expect(ringsArea(rings!)).toBe(3);
+  });
+
+  it('refuse a grid without nodes, values that do not fill it and levels out of order', () => {
     expect(() => contourRoom(0, 3)).toThrow(/needs nodes/);
+    expect(() => fillRoom(contourRoom(2, 3), [1, 2])).toThrow(/has 6 values, got 2/);
+    expect(() => contourBands(contourRoom(1, 1), [1], [2, 1])).toThrow(/must ascend/);
   });
 });

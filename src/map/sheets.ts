@@ -1,4 +1,4 @@
-import { contourRings, contourRoom, fillRoom, type ContourRoom, type Rings } from '../../shared/contours';
+import { contourBands, contourRoom, type ContourRoom, type Rings } from '../../shared/contours';
 import { NO_ESTIMATE, type ChannelGridPart, type PlaneGrid } from '../../shared/frames';
 import { fromPlane } from '../../shared/geo';
 import type { EstimateWater } from '../../shared/schemas/estimate';
@@ -38,11 +38,7 @@ function roomFor(nx: number, ny: number): ContourRoom {
   return room;
 }
 
-function bandsOf(codes: ArrayLike<number>, nx: number, ny: number, levelCodes: readonly number[]): Rings[] {
-  const room = roomFor(nx, ny);
-  fillRoom(room, codes);
-  return levelCodes.map((code) => contourRings(room, code));
-}
+const bandsOf = (codes: ArrayLike<number>, nx: number, ny: number, levelCodes: readonly number[]): Rings[] => contourBands(roomFor(nx, ny), codes, levelCodes);
 
 /** Runs of nodes without an estimate as boxes reaching half a step to all sides, kept inside the grid. */
 function blanksOf(codes: Uint16Array, nx: number, ny: number): [number, number, number, number][] {
