@@ -59,11 +59,19 @@ export function reachWave(hydraulics: Hydraulics, lengthM: number, inflow: Hydro
     values.set(face, level * faces);
     for (let k = 0; k < perLevel; k++, tS += stepS) {
       // The mean over the step, so that the water let in is the water of the series.
-      face[0] = (inflow(tS) + inflow(tS + stepS)) / 2;
+      face[0] = meanOver(inflow, tS, stepS);
       for (let i = 0; i < cells; i++) area[i]! += (stepS / cellM) * (face[i]! - face[i + 1]!);
       face[0] = inflow(tS + stepS);
       for (let i = 0; i < cells; i++) face[i + 1] = hydraulics.dischargeM3s(area[i]!);
     }
   }
   return new ReachWave(values, faces, fromS, levelS, lengthM);
+}
+
+const PARTS = 16;
+
+function meanOver(inflow: Hydrograph, fromS: number, stepS: number): number {
+  let sum = 0;
+  for (let i = 0; i < PARTS; i++) sum += inflow(fromS + (stepS * (i + 0.5)) / PARTS);
+  return sum / PARTS;
 }
