@@ -205,6 +205,8 @@ export const registerItemSchema = z.object({
 
 /** Days after which an unchecked entry is stale. Common practice, no source. */
 export const staleAfterDays: Record<RegisterName, number> = { waters: 1_095, receptors: 365, sources: 365, substances: 1_095, stations: 730 };
+/** "a year", "3 years": all the limits are whole years. */
+export const staleAfterWords = (register: RegisterName): string => (staleAfterDays[register] === 365 ? 'a year' : `${staleAfterDays[register] / 365} years`);
 
 /** What differs from the version before: path, and both values as short text ('' where there was none). */
 export const registerChangeSchema = z.object({ path: z.string(), from: z.string(), to: z.string() });

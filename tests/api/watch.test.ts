@@ -78,7 +78,7 @@ describe('the Watch', () => {
     const today = app.deps.now().toISOString().slice(0, 10);
     const before = (await watch(engineer)).waiting.find(({ text }) => text.includes('substance'))?.count ?? 0;
     await app.deps.db.write((tx) => tx.insert(RegisterItemEntity, [entry('stale-a', '2001-01-01'), entry('stale-b', null), entry('fresh', today), entry('gone', null, true)] as object[]));
-    expect((await watch(engineer)).waiting).toContainEqual({ kind: 'stale-register', text: expect.stringMatching(/substances not checked within 1095 days/), href: '/substances?stale=1', count: before + 2 });
+    expect((await watch(engineer)).waiting).toContainEqual({ kind: 'stale-register', text: expect.stringMatching(/substances not checked within 3 years/), href: '/substances?stale=1', count: before + 2 });
     expect((await watch(planner)).waiting.filter(({ text }) => text.includes('substance'))).toEqual([]);
   });
 

@@ -1,6 +1,6 @@
 import { allows, registerWriteActions } from '../../../shared/permissions';
 import { type Incident, type Watch, markings } from '../../../shared/schemas/incidents';
-import { type RegisterName, registerNames, staleAfterDays } from '../../../shared/schemas/registers';
+import { type RegisterName, registerNames, staleAfterDays, staleAfterWords } from '../../../shared/schemas/registers';
 import type { Deps } from '../../deps';
 import type { Actor } from '../../http/routes';
 import { IncidentService } from '../incidents/incident.service';
@@ -66,7 +66,7 @@ export class WatchService {
     return registers.flatMap((register, i): Waiting[] => {
       const count = counts[i]!;
       const [one, many] = entryWords[register];
-      return count === 0 ? [] : [{ kind: 'stale-register', text: `${count} ${count === 1 ? one : many} not checked within ${staleAfterDays[register]} days`, href: `/${register}?stale=1`, count }];
+      return count === 0 ? [] : [{ kind: 'stale-register', text: `${count} ${count === 1 ? one : many} not checked within ${staleAfterWords(register)}`, href: `/${register}?stale=1`, count }];
     });
   }
 

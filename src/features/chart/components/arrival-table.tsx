@@ -1,4 +1,4 @@
-import type { Measure } from '../../../../shared/format';
+import { formatOffset, type Measure } from '../../../../shared/format';
 import { DataTable, type Column } from '../../../components/data-table';
 import { ReceptorPlate } from '../../../map/receptor-plate';
 import { plateStateOf } from '../../../map/receptor-plates';
@@ -54,7 +54,7 @@ export function ArrivalTable({ rows, clock, measure, selectedId, onSelect, isPri
       ),
     },
     { key: 'verdict', header: 'Verdict', cell: (row) => row.answer?.verdict ?? 'not solved yet' },
-    { key: 'earliest', header: 'Earliest arrival', cell: (row) => <strong className="font-semibold"><At at={words(row)?.earliest ?? null} /></strong>, sortValue: (row) => (row.answer && decidingAnswer(row.answer) ? earliestS(decidingAnswer(row.answer)!) : null) },
+    { key: 'earliest', header: <span>Earliest arrival<span className="block font-normal">{formatOffset(clock.offset)}</span></span>, cell: (row) => <strong className="font-semibold"><At at={words(row)?.earliest ?? null} /></strong>, sortValue: (row) => (row.answer && decidingAnswer(row.answer) ? earliestS(decidingAnswer(row.answer)!) : null) },
     { key: 'likely', header: 'Likely', cell: (row) => <At at={words(row)?.likely ?? null} /> },
     { key: 'latest', header: 'Latest', cell: (row) => <At at={words(row)?.latest ?? null} /> },
     { key: 'peak', header: 'Peak', className: 'min-w-36 print:min-w-0', cell: (row) => (row.answer ? sayRange(row.answer.peak, measure) : '–'), sortValue: (row) => row.answer?.peak.likely ?? null },

@@ -16,6 +16,7 @@ type Props = { forecast: Forecast; document: EstimateDocument; rows: Rows; clock
 export function PrintedResults({ forecast, document, rows, clock, measure }: Props) {
   return (
     <div className="hidden flex-col gap-6 pt-4 print:flex">
+      <EstimateCaution />
       <section>
         <h2 className="text-lead font-semibold">Assumed</h2>
         <p>
@@ -36,7 +37,6 @@ export function PrintedResults({ forecast, document, rows, clock, measure }: Pro
         <ChecksPanel checks={forecast.result?.checks ?? null} />
       </section>
       {forecast.result && <WorkingView result={forecast.result} receptor={null} answer={null} />}
-      <EstimateCaution />
     </div>
   );
 }

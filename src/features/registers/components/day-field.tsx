@@ -3,6 +3,7 @@ import { Button } from '../../../components/button';
 import { Field } from '../../../components/field';
 import { TextInput } from '../../../components/inputs';
 import { isoWithOffset } from '../../../../shared/civil';
+import { formatDayYear } from '../../../../shared/format';
 import { parseDay } from '../../../lib/parse-instant';
 import { useDefaultOffset } from '../../../lib/session';
 import { Reading, useBound, useMessage } from './bound-fields';
@@ -20,7 +21,7 @@ export function DayField({ name, label, hint }: { name: string; label: string; h
   const stored = (value as string | null) ?? '';
   const [text, setText] = useState(stored);
   const [why, setWhy] = useState<string | null>(null);
-  if (!useIsWriting()) return <Reading label={label}>{stored || 'never'}</Reading>;
+  if (!useIsWriting()) return <Reading label={label}>{stored ? formatDayYear(Date.parse(stored), '+00:00') : 'never'}</Reading>;
   const settle = () => {
     leave();
     if (text.trim() === '') return setWhy(null);

@@ -2,7 +2,7 @@ import { useQuery } from '@tanstack/react-query';
 import { useEffect, useState } from 'react';
 import { useSearchParams } from 'react-router-dom';
 import { registerWriteActions } from '../../../../shared/permissions';
-import { staleAfterDays, type RegisterItem, type RegisterList, type RegisterName } from '../../../../shared/schemas/registers';
+import { staleAfterWords, type RegisterItem, type RegisterList, type RegisterName } from '../../../../shared/schemas/registers';
 import { Button, ButtonLink } from '../../../components/button';
 import { EmptyState } from '../../../components/empty-state';
 import { CheckInput, SearchInput } from '../../../components/inputs';
@@ -60,7 +60,7 @@ function ListTools({ register, wish, change, list }: ToolsProps) {
   return (
     <search className="no-print flex flex-wrap items-center gap-x-6 gap-y-1 border-b border-edge py-3">
       <SearchInput label={register === 'substances' ? 'Search by name, other names, CAS number' : 'Search by code, name, owner'} value={typed} onChange={setTyped} className="min-w-0 flex-1 basis-64" />
-      <CheckInput label={`Not checked within ${staleAfterDays[register]} days${list ? ` (${list.staleCount})` : ''}`} checked={wish.stale} onChange={(event) => change({ stale: event.target.checked })} />
+      <CheckInput label={`Not checked within ${staleAfterWords(register)}${list ? ` (${list.staleCount})` : ''}`} checked={wish.stale} onChange={(event) => change({ stale: event.target.checked })} />
       <CheckInput label="With archived ones" checked={wish.archived} onChange={(event) => change({ archived: event.target.checked })} />
     </search>
   );
@@ -90,7 +90,7 @@ function Entries({ register, list, wish, change, canAdd }: EntriesProps) {
 
 function EntryRow({ item, waters }: { item: RegisterItem; waters: readonly WaterItem[] }) {
   return (
-    <RuledRow to={`/${item.register}/${item.id}`} openLabel={`${item.code} ${item.name}`} lead={<span className="font-semibold text-ink">{item.code}</span>} trail={<span className="sm:w-60 sm:text-right"><CheckedText item={item} /></span>}>
+    <RuledRow to={`/${item.register}/${item.id}`} openLabel={`${item.code} ${item.name}`} lead={<span className="font-semibold text-ink">{item.code}</span>} trail={<span className="sm:w-66 sm:text-right"><CheckedText item={item} /></span>}>
       <div className="grid gap-x-6 lg:grid-cols-[minmax(12rem,1fr)_minmax(0,2fr)]">
         <span>
           <span className="font-semibold">{item.name}</span>
