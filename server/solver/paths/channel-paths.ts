@@ -9,7 +9,7 @@ import { birthsOf } from './births';
 import { channelReaches, walkChannel, type ChannelObserver, type ChannelPoint, type ChannelReach } from './channel-walk';
 import { ChannelKernel, ChannelWatch } from './channel-watch';
 import { arrivalFigures } from './passage';
-import { isDrawn, rounded, type CloudPlace, type PathCurve, type PathPlan, type PathRun, type WatchedReceptor } from './plan';
+import { isDrawn, rounded, type CloudPlace, type PathCurve, type PathPlan, type PathRun, type WatchedReceptor, watchStream } from './plan';
 import { KERNEL_SHARE } from './plane-watch';
 import { PathRandom } from './random';
 
@@ -24,7 +24,7 @@ export function channelPaths(input: RunInput, plan: PathPlan): PathRun {
   const places: CloudPlace[] = [];
   const lines: LonLat[][] = [];
   const watches = ways.map((way) => {
-    const watched = plan.watched.map((item) => watchFor(channel, way, item, plan, count));
+    const watched = plan.watched.map((item, w) => watchFor(channel, way, item, w, plan, count));
     const share = input.weights.likely[way.release.index]! / count;
     const scene: ChannelObserver = {
       seen(k, at, bornS) {
@@ -75,7 +75,7 @@ function positionOf(channel: Channel, at: Readonly<ChannelPoint>): LonLat {
 type Watched = { watch: ChannelWatch; kernel: ChannelKernel } | null;
 
 /** Null where this release's water does not come. */
-function watchFor(channel: Channel, way: RiverPath, { receptor }: WatchedReceptor, plan: PathPlan, count: number): Watched {
+function watchFor(channel: Channel, way: RiverPath, { receptor }: WatchedReceptor, w: number, plan: PathPlan, count: number): Watched {
   const { input, reaches } = channel;
   const place = receptor.channel && placeOn(way, receptor.channel.reachId, receptor.channel.chainageKm);
   if (!place) return null;
@@ -84,7 +84,7 @@ function watchFor(channel: Channel, way: RiverPath, { receptor }: WatchedRecepto
   const startTau = way.release.release.initialRadiusM ** 2 / (8 * way.segments[0]!.state.widthM ** 2);
   const across = Math.max(KERNEL_SHARE * Math.sqrt(2 * (startTau + tauAlong(way, place.travelS))), 1e-4);
   const kernel = new ChannelKernel(pointAt(channel, receptor.channel!.reachId, receptor.channel!.chainageKm, etaOf(receptor.channel!.bank)), reaches, alongS, across);
-  return { kernel, watch: new ChannelWatch(kernel, reaches, plan.timesS.length, count, (bornS, k) => survival(input, bornS, plan.timesS[k]!)) };
+  return { kernel, watch: new ChannelWatch(kernel, reaches, plan.timesS.length, count, (bornS, k) => survival(input, bornS, plan.timesS[k]!), new PathRandom(input.doc.seed, watchStream(way.release.index, w))) };
 }
 
 /** Spread across gathered over a travel time, in widths squared over two. */

@@ -54,15 +54,16 @@ export type ChannelWalkInput = {
 
 export type ChannelObserver = {
   begin?(path: number, at: Readonly<ChannelPoint>, bornS: number): void;
-  /** A step within one reach before any change of reach: travel time before and after, with its variance. */
-  step?(reach: number, fromAtS: number, toAtS: number, varianceS2: number, fromS: number, toS: number, random: PathRandom): void;
+  /** A step in the travel time of one reach, with its variance; a step over a joint is told in that of each reach it touches. */
+  step?(reach: number, fromAtS: number, toAtS: number, varianceS2: number, fromS: number, toS: number): void;
   seen?(k: number, at: Readonly<ChannelPoint>, bornS: number): void;
 };
 
 /** Past this scaled distance a joint of two reaches is not met within a step: exp(-2 * 4^2) = 1e-14. */
 const FAR_FROM_JOINT = 6;
-/** The shortest part of a step that ends at a joint. */
-const LEAST_PART = 1e-3;
+/** A step takes at most this share of the travel time of its reach, but not less than this part of the way between two times. */
+const STEP_SHARE = 0.25;
+const LEAST_PART = 1 / 32;
 
 /**
  * Walks paths down a network. Along: with travel time as coordinate the flux form A dC/dt + Q dC/dx = d/dx(A D dC/dx)
@@ -99,8 +100,9 @@ class ChannelWalker {
     let steps = 0;
     for (let k = 0; k < timesS.length; k++) {
       if (timesS[k]! < nowS) continue;
+      const leastS = (timesS[k]! - nowS) * LEAST_PART;
       while (nowS < timesS[k]!) {
-        nowS = this.stepFrom(nowS, timesS[k]!);
+        nowS = this.stepFrom(nowS, timesS[k]!, leastS);
         steps++;
       }
       for (const observer of this.observers) observer.seen?.(k, at, bornS);
@@ -108,25 +110,33 @@ class ChannelWalker {
     meter.count(steps);
   }
 
-  /** Drift as far as the next joint at most, then spread along and across with the coefficients of this reach. */
-  private stepFrom(fromS: number, goalS: number): number {
+  /**
+   * Half the drift, the spread along and across with the coefficients found there, the other half (Strang 1968, SIAM J.
+   * Numer. Anal. 5: 506): second order where coefficients jump, and each part keeps even water even.
+   */
+  private stepFrom(fromS: number, goalS: number, leastS: number): number {
     const { reaches, random } = this.input;
     const { at } = this;
-    const index = at.reach;
-    const reach = reaches[index]!;
-    const whole = goalS - fromS;
-    const toJoint = reach.down === null ? Infinity : Math.max(reach.lengthS - at.atS, LEAST_PART * whole);
-    const h = toJoint > 0.999 * whole ? whole : toJoint;
-    const toS = h === whole ? goalS : fromS + h;
-    const before = at.atS;
+    const longestS = Math.max(leastS, STEP_SHARE * reaches[at.reach]!.lengthS);
+    const toS = goalS - fromS <= longestS + leastS ? goalS : fromS + longestS;
+    const h = toS - fromS;
+    const [startReach, start] = [at.reach, at.atS];
+    at.atS += h / 2;
+    this.settle();
+    const [midReach, mid] = [at.reach, at.atS];
+    const reach = reaches[midReach]!;
     const variance = 2 * reach.kappaS * h;
     at.eta = fold(at.eta + Math.sqrt(2 * reach.tauPerS * h) * random.normal(), 0, 1);
-    const drifted = before + h;
-    const wanted = drifted + Math.sqrt(variance) * random.normal();
-    for (const observer of this.observers) observer.step?.(index, before, wanted, variance, fromS, toS, random);
-    at.atS = drifted;
+    const wanted = mid + Math.sqrt(variance) * random.normal();
     this.spreadAlong(wanted, Math.sqrt(variance));
+    at.atS += h / 2;
     this.settle();
+    const moved = wanted - mid + h;
+    for (const observer of this.observers) {
+      observer.step?.(startReach, start, start + moved, variance, fromS, toS);
+      if (midReach !== startReach) observer.step?.(midReach, mid - h / 2, mid - h / 2 + moved, variance, fromS, toS);
+      if (at.reach !== startReach && at.reach !== midReach) observer.step?.(at.reach, at.atS - moved, at.atS, variance, fromS, toS);
+    }
     return toS;
   }
 

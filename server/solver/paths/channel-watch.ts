@@ -1,6 +1,7 @@
 import type { ChannelObserver, ChannelPoint, ChannelReach } from './channel-walk';
 import { passageWithin } from './passage';
 import { Tally } from './plan';
+import type { PathRandom } from './random';
 
 /** Deviations beyond which a path counts nothing: exp(-8) = 3e-4 of the middle. */
 const CUT = 4;
@@ -74,6 +75,8 @@ export class ChannelWatch implements ChannelObserver {
     times: number,
     paths: number,
     private readonly weight: (bornS: number, k: number) => number,
+    /** A stream of its own, so that watching does not change the paths. */
+    private readonly random: PathRandom,
   ) {
     this.tally = new Tally(times);
     this.arrivalsS = new Float64Array(paths).fill(Number.NaN);
@@ -90,11 +93,12 @@ export class ChannelWatch implements ChannelObserver {
 
   begin(path: number, at: Readonly<ChannelPoint>): void {
     this.path = path;
+    this.random.start(path);
     const { place } = this.kernel;
     this.from = this.isAbove.has(at.reach) || (at.reach === place.reach && at.atS < place.atS) ? 1 : -1;
   }
 
-  step: NonNullable<ChannelObserver['step']> = (reach, fromAtS, toAtS, varianceS2, fromS, toS, random) => {
+  step: NonNullable<ChannelObserver['step']> = (reach, fromAtS, toAtS, varianceS2, fromS, toS) => {
     const { place } = this.kernel;
     if (reach !== place.reach || !Number.isNaN(this.arrivalsS[this.path]!)) return;
     const start = this.from * (place.atS - fromAtS);
@@ -103,7 +107,7 @@ export class ChannelWatch implements ChannelObserver {
       this.arrivalsS[this.path] = fromS;
       return;
     }
-    const after = passageWithin(start, this.from * (place.atS - toAtS), varianceS2, toS - fromS, random);
+    const after = passageWithin(start, this.from * (place.atS - toAtS), varianceS2, toS - fromS, this.random);
     if (after !== null) this.arrivalsS[this.path] = fromS + after;
   };
 

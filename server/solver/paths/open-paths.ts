@@ -7,7 +7,7 @@ import type { RunInput } from '../types';
 import { birthsOf } from './births';
 import { uniformMotion } from './motion';
 import { arrivalFigures } from './passage';
-import { isDrawn, rounded, type CloudPlace, type PathCurve, type PathPlan, type PathRun, type WatchedReceptor } from './plan';
+import { isDrawn, rounded, type CloudPlace, type PathCurve, type PathPlan, type PathRun, type WatchedReceptor, watchStream } from './plan';
 import { walkPlane, type PlaneObserver } from './plane-walk';
 import { PlaneKernel, PlaneWatch } from './plane-watch';
 import { PathRandom } from './random';
@@ -28,7 +28,7 @@ export function openPaths(input: RunInput, plan: PathPlan): PathRun {
   let ashore = 0;
   const watches = facts.sources.map((source) => {
     const share = (input.weights.likely[source.release.index]! * (1 / count));
-    const watched = plan.watched.map((item) => watchFor(facts, source, item, walls, plan, count, (position) => toPlane(plane, position)));
+    const watched = plan.watched.map((item, w) => watchFor(facts, source, item, w, walls, plan, count, (position) => toPlane(plane, position)));
     const scene: PlaneObserver = {
       ended: () => ashore++,
       seen(k, x, y, bornS) {
@@ -66,7 +66,7 @@ const survival = ({ input }: OpenFacts, bornS: number, tS: number): number => (i
 
 type Watched = { watch: PlaneWatch; kernel: PlaneKernel };
 
-function watchFor(facts: OpenFacts, source: OpenSource, item: WatchedReceptor, walls: Walls, plan: PathPlan, count: number, toXy: (position: LonLat) => [number, number]): Watched {
+function watchFor(facts: OpenFacts, source: OpenSource, item: WatchedReceptor, w: number, walls: Walls, plan: PathPlan, count: number, toXy: (position: LonLat) => [number, number]): Watched {
   const { profile } = source.release;
   const at = onWater(facts.area, ...toXy(item.receptor.position));
   const bornS = Math.min((profile.startS + profile.stopS) / 2, item.aboutS - LEAST_AGE_S);
@@ -76,7 +76,7 @@ function watchFor(facts: OpenFacts, source: OpenSource, item: WatchedReceptor, w
   covariance[2]! += source.startVarianceM2;
   const kernel = new PlaneKernel(at.x, at.y, covariance, walls);
   const perDepth = 1 / facts.motion.mixingDepthM;
-  return { kernel, watch: new PlaneWatch(kernel, plan.timesS.length, count, (born, k) => perDepth * survival(facts, born, plan.timesS[k]!)) };
+  return { kernel, watch: new PlaneWatch(kernel, plan.timesS.length, count, (born, k) => perDepth * survival(facts, born, plan.timesS[k]!), new PathRandom(facts.input.doc.seed, watchStream(source.release.index, w))) };
 }
 
 function curveOf(facts: OpenFacts, { receptor }: WatchedReceptor, watched: readonly Watched[], count: number, timesS: readonly number[]): PathCurve {

@@ -71,6 +71,9 @@ export class Tally {
   }
 }
 
+/** Watches draw from streams of their own: one for each release and receptor, after those of the paths. */
+export const watchStream = (release: number, watched: number): number => 1_000 * (release + 1) + watched;
+
 /** Five decimals are a metre: enough to draw, and small. Adding 0 turns -0, which JSON does not know, into 0. */
 export const rounded = ([lon, lat]: readonly [number, number]): LonLat => [Math.round(lon * 1e5) / 1e5 + 0, Math.round(lat * 1e5) / 1e5 + 0];
 

@@ -25,7 +25,7 @@ export type PlaneWalkInput = {
 export type PlaneObserver = {
   begin?(path: number, x: number, y: number, bornS: number): void;
   /** One step, with its covariance. Steps follow each other without gaps; they may be shorter than those of `timesS`. */
-  step?(fromX: number, fromY: number, fromS: number, x: number, y: number, toS: number, figures: Float64Array, random: PathRandom): void;
+  step?(fromX: number, fromY: number, fromS: number, x: number, y: number, toS: number, figures: Float64Array): void;
   /** Where a path stands at timesS[k]. */
   seen?(k: number, x: number, y: number, bornS: number): void;
   /** What the current carried onto land ends there. */
@@ -117,7 +117,7 @@ class PlaneWalker {
       const [dx, dy] = [figures[0]!, figures[1]!];
       this.spreadByCovariance(random, dx, dy);
     }
-    for (const observer of this.observers) observer.step?.(fromX, fromY, fromS, at[0]!, at[1]!, toS, figures, random);
+    for (const observer of this.observers) observer.step?.(fromX, fromY, fromS, at[0]!, at[1]!, toS, figures);
     return toS;
   }
 

@@ -1,6 +1,7 @@
 import type { PlaneObserver } from './plane-walk';
 import { passageWithin } from './passage';
 import { Tally } from './plan';
+import type { PathRandom } from './random';
 import type { Walls } from './walls';
 
 /**
@@ -83,6 +84,8 @@ export class PlaneWatch implements PlaneObserver {
     paths: number,
     /** 1 over the mixing depth, times what survives of matter born at the first time at the second (position). */
     private readonly weight: (bornS: number, k: number) => number,
+    /** A stream of its own, so that watching does not change the paths. */
+    private readonly random: PathRandom,
   ) {
     this.tally = new Tally(times);
     this.arrivalsS = new Float64Array(paths).fill(Number.NaN);
@@ -90,10 +93,11 @@ export class PlaneWatch implements PlaneObserver {
 
   begin(path: number, x: number, y: number, bornS: number): void {
     this.path = path;
+    this.random.start(path);
     if (this.off(x, y) <= 0) this.arrivalsS[path] = bornS;
   }
 
-  step: NonNullable<PlaneObserver['step']> = (fromX, fromY, fromS, x, y, toS, figures, random) => {
+  step: NonNullable<PlaneObserver['step']> = (fromX, fromY, fromS, x, y, toS, figures) => {
     if (!Number.isNaN(this.arrivalsS[this.path]!)) return;
     const from = this.off(fromX, fromY);
     const to = this.off(x, y);
@@ -103,7 +107,7 @@ export class PlaneWatch implements PlaneObserver {
     const nx = (fromX - this.kernel.x) / (from + this.kernel.radiusM);
     const ny = (fromY - this.kernel.y) / (from + this.kernel.radiusM);
     const variance = figures[2]! * nx * nx + 2 * figures[3]! * nx * ny + figures[4]! * ny * ny;
-    const after = from <= 0 ? 0 : passageWithin(from, to, Math.max(variance, 1e-12 * widest), toS - fromS, random);
+    const after = from <= 0 ? 0 : passageWithin(from, to, Math.max(variance, 1e-12 * widest), toS - fromS, this.random);
     if (after !== null) this.arrivalsS[this.path] = fromS + after;
   };
 
