@@ -11,6 +11,7 @@ import { useTheme } from '../../../lib/theme';
 import { DistrictMap } from '../../../map/district-map';
 import { EnvelopeLayer } from '../../../map/envelope-layer';
 import { FrameLayer } from '../../../map/frame-layer';
+import { PathsLayer } from '../../../map/paths-layer';
 import { ReceptorLayer } from '../../../map/receptor-layer';
 import { ReleaseLayer, type ReleaseMark } from '../../../map/release-layer';
 import { RiverLayer } from '../../../map/river-layer';
@@ -54,8 +55,10 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
   const [probe, setProbe] = useState<LonLat | null>(null);
   const [refused, setRefused] = useState<{ why: string; nearest: Place | null } | null>(null);
   const [showsEnvelope, setShowsEnvelope] = useState(true);
+  const [showsPaths, setShowsPaths] = useState(false);
   const [{ metresPerPixel, ribbonM }, setScale] = useState({ metresPerPixel: 50, ribbonM: 0 });
   const water = document?.water ?? null;
+  const paths = forecast?.result?.paths ?? null;
   const index = forecast ? frameIndexAt(forecast, timeS) : null;
   const frame = forecast && index !== null ? (forecast.frames[index] ?? null) : null;
   const isPlacing = !isReadOnly && (draft.releases.length === 0 || placing !== null);
@@ -115,6 +118,7 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
         <KeepInView position={receptors.find((receptor) => receptor.id === selectedId)?.position ?? null} />
         <RiverLayer reaches={reaches} />
         {water && forecast && <CloudLayers forecast={forecast} frame={frame} water={water} theme={theme} measure={measure} showsEnvelope={showsEnvelope} />}
+        {water && paths && showsPaths && <PathsLayer paths={paths} water={water} timeS={timeS} theme={theme} />}
         <StationMarks waterId={waterId} />
         {isPlacing && <PlacePreview snap={preview} />}
         <ReceptorLayer receptors={receptors} answers={answers} numbers={numbers} selectedId={selectedId} onSelect={onSelect} />
@@ -132,7 +136,7 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
           <Button kind="quiet" icon="close" aria-label="Close" onClick={() => setRefused(null)} />
         </div>
       )}
-      {forecast && forecast.levels.length > 0 && <MapLegend levels={forecast.levels} measure={measure} theme={theme} showsEnvelope={showsEnvelope} onEnvelope={setShowsEnvelope} />}
+      {forecast && forecast.levels.length > 0 && <MapLegend levels={forecast.levels} measure={measure} theme={theme} showsEnvelope={showsEnvelope} onEnvelope={setShowsEnvelope} showsPaths={showsPaths} onPaths={paths ? setShowsPaths : null} />}
       {probe && frame && water && <ReadOut position={probe} frame={frame} envelope={forecast?.envelope ?? null} water={water} ribbonM={ribbonM} timeS={frame.head.timeS} clock={clock} measure={measure} onClose={() => setProbe(null)} />}
       {(missing ? forecast !== null || draft.releases.length > 0 : isBehind) && (
         <p className={classNames('pointer-events-none absolute inset-x-0 bottom-0 z-[999] bg-sheet/85 px-4 py-1.5 text-center font-semibold print:hidden', !missing && 'transition-opacity delay-500 duration-150 starting:opacity-0')}>

@@ -10,6 +10,7 @@ import { ChecksPanel, checksSummary } from './checks-panel';
 import { CoefficientsPanel, coefficientSummary } from './coefficients-panel';
 import { ReceptorsPanel, type Rows } from './receptors-panel';
 import { ReleasePanel, releaseWords } from './release-panel';
+import { SecondOpinionView } from './second-opinion';
 import { Section } from './section';
 import { waterSummary, WaterPanel } from './water-panel';
 
@@ -37,6 +38,11 @@ export function RuledPage({ forecast, rows, clock, measure, isBehind, selectedId
       </Section>
       <Section title="Checks" summary={checksSummary(checks)}>
         <ChecksPanel checks={checks} />
+        {checks && (
+          <div className="mt-3 border-t border-rule pt-3">
+            <SecondOpinionView result={forecast?.result ?? null} receptors={rows.map((row) => row.receptor)} clock={clock} />
+          </div>
+        )}
       </Section>
       <Section title="Receptors by arrival" summary={rows.length > 0 ? `${rows.length} on the water` : ''} isOpenFirst hasError={has('receptors')}>
         <ReceptorsPanel rows={rows} clock={clock} measure={measure} selectedId={selectedId} onSelect={onSelect} isBehind={isBehind} />
