@@ -2,6 +2,7 @@
 import { spawnSync } from 'node:child_process';
 import { mkdirSync, readFileSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
+import { ensureKernels } from '../server/solver/kernels/build.mjs';
 import { runChecks } from './check.mjs';
 import { findChromium } from './find-chromium.mjs';
 
@@ -39,6 +40,7 @@ function runBrowser() {
   return counted('the browser tests', 'browser.json', ({ stats }) => ({ passed: stats.expected, failed: stats.unexpected + stats.flaky + (stats.expected + stats.unexpected === 0 ? 1 : 0) }));
 }
 
+await ensureKernels();
 const counts = [runChecks({ withImportRules: false }), runVitest(), runBrowser()];
 const sum = (key) => counts.reduce((total, count) => total + count[key], 0);
 console.log(`${sum('passed')} passed, ${sum('failed')} failed`);
