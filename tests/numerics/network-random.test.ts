@@ -106,6 +106,50 @@ describe('random trees of reaches', () => {
   });
 });
 
+describe('random estuaries', () => {
+  const estuary = fc.record({
+    amplitudes: fc.array(fc.double({ min: 0.02, max: 1.5, noNaN: true }), { minLength: 1, maxLength: 3 }),
+    widths: fc.array(fc.double({ min: 20, max: 900, noNaN: true }), { minLength: 3, maxLength: 3 }),
+    hasRiver: fc.boolean(),
+    hasBrook: fc.boolean(),
+    startsInRiver: fc.boolean(),
+    D: fc.double({ min: 5, max: 200, noNaN: true }),
+    maxEbbS: fc.double({ min: 0, max: 44_000, noNaN: true }),
+    durationS: fc.constantFrom(0, 5_000),
+  });
+
+  it('keep every gram and never go below zero, whatever the tide', () => {
+    fc.assert(
+      fc.property(estuary, ({ amplitudes, widths, hasRiver, hasBrook, startsInRiver, D, maxEbbS, durationS }) => {
+        const tidal = amplitudes.map((amplitudeMps, i) =>
+          reachOf(
+            { id: `t${i}`, lengthKm: 6, Q: hasBrook && i === amplitudes.length - 1 ? 14 : 10, W: widths[i]!, H: 4, U: (hasBrook && i === amplitudes.length - 1 ? 14 : 10) / (widths[i]! * 4), D, e: 0.2 },
+            { downstreamReachId: i === amplitudes.length - 1 ? null : `t${i + 1}`, tide: { amplitudeMps, periodS: 44_714, maxEbbS } },
+          ),
+        );
+        const river = hasRiver ? [reachOf({ id: 'river', lengthKm: 5, Q: 10, W: 15, H: 1.5, U: 0.44, D: 8, e: 0.05 }, { downstreamReachId: 't0' })] : [];
+        const brook = hasBrook && amplitudes.length > 1 ? [reachOf({ id: 'brook', lengthKm: 5, Q: 4, W: 10, H: 1, U: 0.4, D: 8, e: 0.05 }, { downstreamReachId: `t${amplitudes.length - 1}`, joinsOnBank: 'left' })] : [];
+        const at = hasRiver && startsInRiver ? channel('river', 3) : channel('t0', 3);
+        const doc = riverDocument([...river, ...brook, ...tidal], {
+          horizonS: 100_000,
+          frameCount: 4,
+          releases: [release({ channel: at, timing: durationS === 0 ? { kind: 'instantaneous' } : { kind: 'steady', durationS } })],
+          receptors: [receptor({ channel: channel(`t${amplitudes.length - 1}`, 1, 'left') })],
+        });
+        const field = networkField(doc, { isPreview: true });
+        const books = field.books(doc.horizonS, [1]);
+        expect(Math.abs(books.released - books.inWater - books.left)).toBeLessThan(1e-9);
+        const f = responseOf(doc, field);
+        for (let t = 0; t <= doc.horizonS; t += 1_000) {
+          expect(f(t)).toBeGreaterThanOrEqual(0);
+          expect(Number.isFinite(f(t))).toBe(true);
+        }
+      }),
+      { seed: 3, numRuns: 12 },
+    );
+  });
+});
+
 describe('a wave of discharge', () => {
   const water = riverDocument([reachOf({ id: 'r', lengthKm: 20, Q: 5, W: 14, H: 0.8, U: 0.446, D: 10, e: 0.05 })], { releases: [release({ channel: channel('r', 19) })] }).water as RiverWater;
   const state = reachStates(water)[0]!;

@@ -152,7 +152,7 @@ describe('a plating bath at low flow, 800 m above an offtake', () => {
 
 describe('hypochlorite in the Quillock, half gone in half an hour', () => {
   const doc = hypochlorite();
-  const field = networkField(doc, { isPreview: true });
+  const field = networkField(doc);
 
   it('stands at 3.3 mg/l at the hatchery from 1.4 h, and at 70 ug/l at the confluence', () => {
     const [hatchery, mouth] = [0, 1].map((i) => responseOf(doc, field, i, true));
@@ -179,7 +179,8 @@ describe('a barge hatch in the estuary at high-water slack', () => {
     const at7 = chainageKm.reduce((best, km, i) => (Math.abs(km - 7) < Math.abs(chainageKm[best]! - 7) ? i : best), 0);
     const means = values.map((row) => row[at7]!);
     const first = means.slice(0, 12).reduce((best, value, i) => (value > means[best]! ? i : best), 0);
-    expectClose(timesS[first]!, 1.8 * HOUR, 0.15);
+    // Frames stand 22 minutes apart: 25 %.
+    expectClose(timesS[first]!, 1.8 * HOUR, 0.25);
     // Mid-section of the figures by hand, a factor of 2.
     expect(means[first]!).toBeGreaterThan(3 * MICROGRAM_PER_LITRE);
     expect(means[first]!).toBeLessThan(12 * MICROGRAM_PER_LITRE);

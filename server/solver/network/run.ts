@@ -86,7 +86,7 @@ export class NetworkSimulation {
       const structure = cut === undefined ? null : flow.reaches[cut]!.state.reach.structure!;
       return {
         chain,
-        storage: holds ? new Storage(chain, flow, this.storageFaces(topM, Math.min(endM, flow.endM), i === 0)) : null,
+        storage: holds ? new Storage(chain, flow, this.storageFaces(topM, endM, i === 0)) : null,
         end: structure ? { water: new StirredWater(structure.volumeM3, structure.tanks, this.layers), reach: cut! } : null,
       };
     });
@@ -269,9 +269,9 @@ export class NetworkSimulation {
   private keepBooks(books: BookRows, n: number): void {
     const { endM } = this.plan.flow;
     for (let layer = 0; layer < this.layers; layer++) {
-      const last = this.stretches[this.stretches.length - 1]!.chain;
-      const beyond = last.isEmpty ? 0 : last.mass(layer, endM);
-      books.inWater[layer]![n] = this.stretches.reduce((sum, { chain, storage, end }) => sum + chain.mass(layer, -Infinity, endM) + (storage?.mass(layer) ?? 0) + (end?.water.total(layer) ?? 0), 0);
+      const { chain: last, storage: lastZones } = this.stretches[this.stretches.length - 1]!;
+      const beyond = last.mass(layer, endM) + (lastZones?.mass(layer, endM) ?? 0);
+      books.inWater[layer]![n] = this.stretches.reduce((sum, { chain, storage, end }) => sum + chain.mass(layer, -Infinity, endM) + (storage?.mass(layer, -Infinity, endM) ?? 0) + (end?.water.total(layer) ?? 0), 0);
       books.left[layer]![n] = last.left[layer]! + beyond;
     }
     books.lost[n] = this.lost[1] ?? 0;

@@ -121,9 +121,13 @@ export class Storage {
     return sum * this.volume[k]!;
   }
 
-  mass(layer: number): number {
+  /** Amount of a layer in the zones between two places. */
+  mass(layer: number, fromM = -Infinity, toM = Infinity): number {
     let sum = 0;
-    for (let k = this.low; k < this.high; k++) sum += this.massOf(k, layer);
+    for (let k = this.low; k < this.high; k++) {
+      const middle = (this.face[k]! + this.face[k + 1]!) / 2;
+      if (middle >= fromM && middle < toM) sum += this.massOf(k, layer);
+    }
     return sum;
   }
 
