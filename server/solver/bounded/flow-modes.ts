@@ -261,6 +261,14 @@ export class BoundedFlow {
     return now;
   }
 
+  /** What the modes east, north and rise count for at one moment (m/s). */
+  factorsAt(tS: number, out: Float64Array): void {
+    this.current.velocity(tS, out);
+    const { amplitudeM, periodS, highWaterS } = this.level;
+    const w = (2 * Math.PI) / periodS;
+    out[2] = amplitudeM === 0 ? 0 : -amplitudeM * w * Math.sin(w * (tS - highWaterS));
+  }
+
   /** Span over which the current hardly changes, s; Infinity where it never does. */
   get slowS(): number {
     if (this.isSteady) return Infinity;

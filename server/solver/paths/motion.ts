@@ -11,6 +11,8 @@ export type PathMotion = {
   readonly longestStepS: number;
   /** True where the current knows no shore: what it carries onto land ends there. False where it runs along the shores. */
   readonly endsAtShore: boolean;
+  /** Whether a place on the outline is open to other water: a path that comes there leaves. */
+  readonly leavesAt?: (x: number, y: number) => boolean;
 };
 
 /** Steps of a path over an estimate of many tides. */

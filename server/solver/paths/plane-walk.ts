@@ -28,8 +28,8 @@ export type PlaneObserver = {
   step?(fromX: number, fromY: number, fromS: number, x: number, y: number, toS: number, figures: Float64Array): void;
   /** Where a path stands at timesS[k]. */
   seen?(k: number, x: number, y: number, bornS: number): void;
-  /** What the current carried onto land ends there. */
-  ended?(x: number, y: number, atS: number): void;
+  /** A path ends: carried onto land by the current, or out through an opening of the water. */
+  ended?(x: number, y: number, atS: number, how: 'ashore' | 'left'): void;
 };
 
 /** Near a shore a step is halved until the room left is this share of its reach, but not below this share of the way between two times. */
@@ -86,7 +86,7 @@ class PlaneWalker {
     meter.count(steps);
   }
 
-  /** Takes one step toward `goalS`, shorter near a shore; gives its end, or null where the path ends on land. */
+  /** Takes one step toward `goalS`, shorter near a shore; gives its end, or null where the path ends. */
   private stepFrom(fromS: number, goalS: number, leastS: number): number | null {
     const { motion, walls, random } = this.input;
     const { figures, at } = this;
@@ -107,15 +107,18 @@ class PlaneWalker {
       if (hit <= 1) {
         // Just short of the shore, so that it is drawn in the water.
         const share = Math.max(0, hit - 1e-6);
-        for (const observer of this.observers) observer.ended?.(fromX + share * figures[0]!, fromY + share * figures[1]!, fromS + hit * (toS - fromS));
+        for (const observer of this.observers) observer.ended?.(fromX + share * figures[0]!, fromY + share * figures[1]!, fromS + hit * (toS - fromS), 'ashore');
         return null;
       }
       at[0] = fromX + figures[0]!;
       at[1] = fromY + figures[1]!;
       this.spreadByCovariance(random);
     } else {
-      const [dx, dy] = [figures[0]!, figures[1]!];
-      this.spreadByCovariance(random, dx, dy);
+      const left = this.spreadByCovariance(random, figures[0]!, figures[1]!);
+      if (left !== null) {
+        for (const observer of this.observers) observer.ended?.(at[0]!, at[1]!, fromS + left * (toS - fromS), 'left');
+        return null;
+      }
     }
     for (const observer of this.observers) observer.step?.(fromX, fromY, fromS, at[0]!, at[1]!, toS, figures);
     return toS;
@@ -127,13 +130,22 @@ class PlaneWalker {
     return Math.sqrt(figures[0]! * figures[0]! + figures[1]! * figures[1]!) + 3 * Math.sqrt(figures[2]! + figures[4]!);
   }
 
-  private spreadByCovariance(random: PathRandom, dx = 0, dy = 0): void {
+  /** Gives the share of the step after which the path left through an opening; null where it stays. */
+  private spreadByCovariance(random: PathRandom, dx = 0, dy = 0): number | null {
     const { figures } = this;
     const xx = Math.sqrt(Math.max(0, figures[2]!));
     const xy = xx > 0 ? figures[3]! / xx : 0;
     const yy = Math.sqrt(Math.max(0, figures[4]! - xy * xy));
     const first = random.normal();
-    this.spread(dx + xx * first, dy + xy * first + yy * random.normal());
+    const [stepX, stepY] = [dx + xx * first, dy + xy * first + yy * random.normal()];
+    const { walls, motion } = this.input;
+    if (walls && motion.leavesAt) {
+      const [x, y] = [this.at[0]!, this.at[1]!];
+      const hit = walls.firstHit(x, y, stepX, stepY);
+      if (hit <= 1 && motion.leavesAt(x + hit * stepX, y + hit * stepY)) return hit;
+    }
+    this.spread(stepX, stepY);
+    return null;
   }
 
   private spread(dx: number, dy: number): void {
