@@ -8,8 +8,13 @@ export type Prepared = {
   errorLimit: number;
   ours: () => void;
   peer: ((repetitions: number) => number | Promise<number>) | null;
-  /** Set where the figure is not a ratio of times: a count, a share of bytes. */
-  ratio?: number;
+  /** Set where the figure is not a ratio of times: a count, a share of bytes; null where nothing can be said. */
+  ratio?: number | null;
+  ms?: number;
+  /** `wall` where waiting counts, on both sides. */
+  clock?: 'wall';
+  /** The figure is ours as a share of the peer's: less is better. */
+  isShare?: true;
 };
 export type MakeCase = (peer: Peer | null) => Promise<Prepared>;
 
@@ -34,22 +39,29 @@ export function timeOurs(work: () => void, repetitions: number): number {
   return (user + system) / 1e3 / repetitions;
 }
 
+function timeWall(work: () => void, repetitions: number): number {
+  const start = performance.now();
+  for (let k = 0; k < repetitions; k++) work();
+  return (performance.now() - start) / repetitions;
+}
+
 const repetitionsFor = (ms: number): number => Math.max(1, Math.min(2_000, Math.ceil(ROUND_MS / Math.max(ms, 1e-4))));
 
 /** Interleaves ours and the peer's, A B A B, and takes the median of the paired ratios. */
-export async function measure(name: string, { peerName, error, errorLimit, ours, peer, ratio }: Prepared): Promise<Figure> {
+export async function measure(name: string, { peerName, error, errorLimit, ours, peer, ratio, ms, clock, isShare }: Prepared): Promise<Figure> {
   if (!(error <= errorLimit)) throw new Error(`${name}: error ${error} is above ${errorLimit}; nothing was timed`);
-  if (ratio !== undefined) return { case: name, ratio, peer: peerName, error, ms: null };
-  const own = repetitionsFor(Math.min(timeOurs(ours, 1), timeOurs(ours, 1)));
+  if (ratio !== undefined) return { case: name, ratio, peer: peerName, error, ms: ms ?? null };
+  const time = clock === 'wall' ? timeWall : timeOurs;
+  const own = repetitionsFor(Math.min(time(ours, 1), time(ours, 1)));
   const their = peer ? repetitionsFor(Math.min(await peer(1), await peer(1))) : 1;
   const ratios: number[] = [];
   const times: number[] = [];
   for (let round = -WARM_UPS; round < ROUNDS; round++) {
-    const ownMs = timeOurs(ours, own);
+    const ownMs = time(ours, own);
     const theirMs = peer ? await peer(their) : Number.NaN;
     if (round < 0) continue;
     times.push(ownMs);
-    ratios.push(theirMs / ownMs);
+    ratios.push(isShare ? ownMs / theirMs : theirMs / ownMs);
   }
   return { case: name, ratio: peer ? median(ratios) : null, peer: peer ? peerName : `absent (${peerName})`, error, ms: median(times) };
 }
