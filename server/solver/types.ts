@@ -4,6 +4,8 @@ import type { Check, TravelTime, WorkingLine } from '../../shared/schemas/estima
 import type { LossClock } from './loss';
 import type { LossPart } from './losses/loss-parts';
 import type { Meter } from './meter';
+import type { OpenSource } from './open/puffs';
+import type { PathMotion } from './paths/motion';
 import type { ResolvedRelease, WeightSet, Weights } from './release-profile';
 
 /** Takes messages as they are ready. A payload is handed over: the engine keeps no reference. */
@@ -66,9 +68,14 @@ export type PreparedField = {
   travelTimes?(weights: Weights): TravelTime[];
   readonly working: readonly WorkingLine[];
   readonly checks: readonly Check[];
+  /** Where the current differs from place to place: what random paths walk in. */
+  readonly pathWater?: PathWater;
   /** How a numeric solver stepped; a closed form leaves it out. */
   readonly numerics?: Numerics;
 };
+
+/** Motion of the paths of a release, and the thickness of the layer mixed over at a place, m. */
+export type PathWater = { motionOf(source: OpenSource): PathMotion; thicknessM(x: number, y: number): number };
 
 /** For the books: largest Courant number, values set to zero or cut, and how fine cells and steps were, in words. */
 export type Numerics = { readonly maxCourant: number | null; readonly clippedValues: number; readonly resolution: string };

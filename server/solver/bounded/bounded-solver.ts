@@ -3,7 +3,8 @@ import type { EstimateReceptor } from '../../../shared/schemas/estimate';
 import type { Check } from '../../../shared/schemas/estimate-result';
 import { lengthText } from '../format';
 import { onWater, openFacts, type OpenFacts } from '../open/open-solver';
-import type { PreparedField, ReceptorSite, RunInput, Solver } from '../types';
+import { boundedMotion } from '../paths/bounded-motion';
+import type { PathWater, PreparedField, ReceptorSite, RunInput, Solver } from '../types';
 import { boundedReceptorChecks, boundedRunChecks } from './bounded-checks';
 import { boundedPlan, type BoundedPlan } from './bounded-plan';
 import { recordedResponse } from './bounded-response';
@@ -63,10 +64,23 @@ function prepareBounded(input: RunInput): PreparedField {
     books: (tS, weights) => store.books(tS, weights),
     working: boundedRunWorking(facts),
     checks: boundedRunChecks(facts),
+    pathWater: pathWaterOf(facts),
     numerics: {
       maxCourant: run.figures.worstCourant,
       clippedValues: 0,
       resolution: `${wet} cells of ${lengthText(plan.water.grid.dxM)}, ${run.figures.steps} steps; cells of twice the side would start every cloud twice as wide and smear what is narrower than ${lengthText(6 * plan.water.grid.dxM)}`,
+    },
+  };
+}
+
+function pathWaterOf({ open, plan }: BoundedFacts): PathWater {
+  const { mixing } = open.water;
+  const turning = mixing.kind === 'constant' && mixing.turnsWithCurrent && mixing.alongM2s !== mixing.acrossM2s ? mixing : null;
+  return {
+    motionOf: () => boundedMotion(plan.flow, plan.fastestMps, open.motion.spread, turning, open.input.doc.horizonS),
+    thicknessM(x, y) {
+      const nearest = nearestCell(plan.water.grid, x, y);
+      return nearest ? plan.water.thicknessM[nearest.cell]! : open.water.mixingDepthM;
     },
   };
 }

@@ -1,5 +1,5 @@
-import type { BoundedFlow } from '../bounded/flow-modes';
 import { LAND } from '../bounded/cell-grid';
+import type { BoundedFlow } from '../bounded/flow-modes';
 import type { FaceFlow } from '../bounded/projection';
 import type { Spread } from '../open/spread';
 import type { PathMotion } from './motion';
@@ -8,6 +8,9 @@ import type { PathMotion } from './motion';
 const STEPS_A_CELL = 2;
 /** A stretch of outline this many cells from a face through which water leaves is open. */
 const OPEN_CELLS = 1.5;
+
+/** Steps of a path over an estimate, at most: a fast current on fine cells is followed less closely. */
+const MOST_STEPS = 1_500;
 
 /** Spread about the current of a place: constant along and across it; null where the spread does not turn. */
 export type TurningMixing = { readonly alongM2s: number; readonly acrossM2s: number };
@@ -52,9 +55,6 @@ export function boundedMotion(flow: BoundedFlow, fastestMps: number, spread: Spr
   };
 }
 
-/** Steps of a path over an estimate, at most: a fast current on fine cells is followed less closely. */
-const MOST_STEPS = 1_500;
-
 type Velocity = (x: number, y: number, tS: number, out: Float64Array) => void;
 
 function velocitySampler(flow: BoundedFlow): Velocity {
@@ -62,6 +62,7 @@ function velocitySampler(flow: BoundedFlow): Velocity {
   const { grid, thicknessM } = water;
   const { nx, ny, dxM, x0M, y0M, isWater } = grid;
   const factors = new Float64Array(3);
+  const land: number = LAND;
   let factorsS = Number.NaN;
   const through = (field: keyof FaceFlow, face: number): number =>
     modes.steady[field][face]! +
@@ -77,7 +78,7 @@ function velocitySampler(flow: BoundedFlow): Velocity {
     const j = Math.floor(fy);
     if (i < 0 || j < 0 || i >= nx || j >= ny) return;
     const cell = j * nx + i;
-    if (isWater[cell] === LAND) return;
+    if (isWater[cell] === land) return;
     if (tS !== factorsS) {
       flow.factorsAt(tS, factors);
       factorsS = tS;

@@ -3,7 +3,7 @@ import type { LonLat } from '../../../shared/schemas/basics';
 import { lengthText } from '../format';
 import { onWater, openFacts, type OpenFacts } from '../open/open-solver';
 import type { OpenSource } from '../open/puffs';
-import type { RunInput } from '../types';
+import type { PathWater, RunInput } from '../types';
 import { birthsOf } from './births';
 import { uniformMotion } from './motion';
 import { arrivalFigures } from './passage';
@@ -16,8 +16,11 @@ import { Walls } from './walls';
 /** Youngest cloud whose size may set a kernel, s. */
 const LEAST_AGE_S = 600;
 
-/** Random paths in open water: concentrations and arrivals at the watched receptors, the cloud at one time, lines to draw. */
-export function openPaths(input: RunInput, plan: PathPlan): PathRun {
+/**
+ * Random paths in open water: concentrations and arrivals at the watched receptors, the cloud at one time, lines to draw.
+ * `water` is the current between shores where one is known; without it the current is the same everywhere.
+ */
+export function openPaths(input: RunInput, plan: PathPlan, water: PathWater | null): PathRun {
   const facts = openFacts(input);
   const walls = new Walls(facts.area);
   const [originLon, originLat] = input.doc.releases[0]!.position;
@@ -28,9 +31,9 @@ export function openPaths(input: RunInput, plan: PathPlan): PathRun {
   let ashore = 0;
   const watches = facts.sources.map((source) => {
     const share = (input.weights.likely[source.release.index]! * (1 / count));
-    const watched = plan.watched.map((item, w) => watchFor(facts, source, item, w, walls, plan, count, (position) => toPlane(plane, position)));
+    const watched = plan.watched.map((item, w) => watchFor(facts, source, item, w, water, walls, plan, count, (position) => toPlane(plane, position)));
     const scene: PlaneObserver = {
-      ended: () => ashore++,
+      ended: (_x, _y, _atS, how) => void (how === 'ashore' && ashore++),
       seen(k, x, y, bornS) {
         if (k === plan.cloudAt) places.push({ amount: share * survival(facts, bornS, plan.timesS[k]!), position: fromPlane(plane, x, y), reachId: null, chainageKm: 0, eta: 0 });
       },
@@ -38,9 +41,9 @@ export function openPaths(input: RunInput, plan: PathPlan): PathRun {
     const drawn = linesOf(plan, count, Math.ceil(plan.drawn / facts.sources.length), (x, y) => rounded(fromPlane(plane, x, y)), lines);
     walkPlane(
       {
-        motion: uniformMotion(facts.motion, input.doc.horizonS),
+        motion: water ? water.motionOf(source) : uniformMotion(facts.motion, input.doc.horizonS),
         walls,
-        line: facts.shore,
+        line: water ? null : facts.shore,
         x: source.origins[0]!.x,
         y: source.origins[0]!.y,
         startVarianceM2: source.startVarianceM2,
@@ -64,9 +67,9 @@ export function openPaths(input: RunInput, plan: PathPlan): PathRun {
 
 const survival = ({ input }: OpenFacts, bornS: number, tS: number): number => (input.doc.substance.applyLoss ? Math.exp(input.loss.exposure(bornS) - input.loss.exposure(tS)) : 1);
 
-type Watched = { watch: PlaneWatch; kernel: PlaneKernel };
+type Watched = { watch: PlaneWatch; kernel: PlaneKernel; depthM: number };
 
-function watchFor(facts: OpenFacts, source: OpenSource, item: WatchedReceptor, w: number, walls: Walls, plan: PathPlan, count: number, toXy: (position: LonLat) => [number, number]): Watched {
+function watchFor(facts: OpenFacts, source: OpenSource, item: WatchedReceptor, w: number, water: PathWater | null, walls: Walls, plan: PathPlan, count: number, toXy: (position: LonLat) => [number, number]): Watched {
   const { profile } = source.release;
   const at = onWater(facts.area, ...toXy(item.receptor.position));
   const bornS = Math.min((profile.startS + profile.stopS) / 2, item.aboutS - LEAST_AGE_S);
@@ -75,22 +78,23 @@ function watchFor(facts: OpenFacts, source: OpenSource, item: WatchedReceptor, w
   covariance[0]! += source.startVarianceM2;
   covariance[2]! += source.startVarianceM2;
   const kernel = new PlaneKernel(at.x, at.y, covariance, walls);
-  const perDepth = 1 / facts.motion.mixingDepthM;
-  return { kernel, watch: new PlaneWatch(kernel, plan.timesS.length, count, (born, k) => perDepth * survival(facts, born, plan.timesS[k]!), new PathRandom(facts.input.doc.seed, watchStream(source.release.index, w))) };
+  const depthM = water ? water.thicknessM(at.x, at.y) : facts.motion.mixingDepthM;
+  const perDepth = 1 / depthM;
+  return { kernel, depthM, watch: new PlaneWatch(kernel, plan.timesS.length, count, (born, k) => perDepth * survival(facts, born, plan.timesS[k]!), new PathRandom(facts.input.doc.seed, watchStream(source.release.index, w))) };
 }
 
 function curveOf(facts: OpenFacts, { receptor }: WatchedReceptor, watched: readonly Watched[], count: number, timesS: readonly number[]): PathCurve {
-  const { input, sources, motion } = facts;
+  const { input, sources } = facts;
   const times = timesS.length;
   const values = new Float64Array(times);
   const variances = new Float64Array(times);
   const onePath = new Float64Array(times);
-  watched.forEach(({ watch, kernel }, i) => {
+  watched.forEach(({ watch, kernel, depthM }, i) => {
     const release = sources[i]!.release;
     const weight = input.weights.likely[release.index]!;
     watch.tally.addMeanTo(values, variances, count, weight, release.capPerKg);
     const bornS = (release.profile.startS + release.profile.stopS) / 2;
-    timesS.forEach((t, k) => (onePath[k] = Math.max(onePath[k]!, (weight * kernel.peak * survival(facts, Math.min(bornS, t), t)) / (motion.mixingDepthM * count))));
+    timesS.forEach((t, k) => (onePath[k] = Math.max(onePath[k]!, (weight * kernel.peak * survival(facts, Math.min(bornS, t), t)) / (depthM * count))));
   });
   const cap = input.doc.substance.solubilityKgM3 ?? Infinity;
   const arrivals = Float64Array.from(watched.flatMap(({ watch }) => [...watch.arrivalsS]));
@@ -106,7 +110,7 @@ function curveOf(facts: OpenFacts, { receptor }: WatchedReceptor, watched: reado
 
 type LineKeeper = PlaneObserver & { finish(): void };
 
-/** Keeps some paths for drawing; one that ends on land stays at the shore. */
+/** Keeps some paths for drawing; one that ends stays where it left or came ashore. */
 function linesOf(plan: PathPlan, count: number, wanted: number, toLonLat: (x: number, y: number) => LonLat, lines: LonLat[][]): LineKeeper {
   const isKept = new Set(plan.drawnAt);
   let line: LonLat[] | null = null;

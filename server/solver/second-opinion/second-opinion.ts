@@ -1,6 +1,5 @@
 import type { EstimateDocument, EstimateReceptor, RiverWater } from '../../../shared/schemas/estimate';
 import type { Check, Paths, ReceptorAnswer, SecondOpinion } from '../../../shared/schemas/estimate-result';
-import { boundedFeatures } from '../bounded/bounded-features';
 import { networkFeatures } from '../network/network-door';
 import { channelPaths } from '../paths/channel-paths';
 import { openPaths } from '../paths/open-paths';
@@ -41,7 +40,7 @@ export function secondOpinion(input: RunInput, field: PreparedField, answers: re
   if (why !== null) return none(why);
   const matter = receptorsThatMatter(doc.receptors, answers);
   const plan = planFor(input, matter);
-  const run = doc.water.kind === 'river' ? channelPaths(input, plan) : openPaths(input, plan);
+  const run = doc.water.kind === 'river' ? channelPaths(input, plan) : openPaths(input, plan, field.pathWater ?? null);
   const startS = Math.min(...input.releases.map((release) => release.profile.startS));
   const figures = matter.map(({ receptor, answer }, i): OpinionFigure => {
     const second = run.curves[i]!;
@@ -63,9 +62,9 @@ const bounds = (): SecondOpinion['bounds'] => ({ peakFactor: BOUNDS.peakFactor, 
 const none = (why: string): Opinion => ({ secondOpinion: { solver: '', agreement: 'none', words: why, bounds: bounds(), figures: [], field: null }, paths: null, checks: [] });
 
 /** What of the water random paths do not know, in words; null where they can be walked. */
-function whyNoPaths({ water, ...doc }: EstimateDocument): string | null {
+function whyNoPaths({ water }: EstimateDocument): string | null {
   if (water.kind === 'open' && water.box) return 'There is no second opinion: the basin is taken as stirred, and no other method does that. Compare it with samples.';
-  const features = water.kind === 'river' ? networkFeatures(water) : boundedFeatures({ ...doc, water }, water);
+  const features = water.kind === 'river' ? networkFeatures(water) : [];
   return features.length > 0 ? `There is no second opinion: ${features.join(' and ')} are known to one method only. Compare it with samples.` : null;
 }
 
