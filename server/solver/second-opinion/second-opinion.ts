@@ -38,7 +38,7 @@ export function secondOpinion(input: RunInput, field: PreparedField, answers: re
   const { doc } = input;
   const why = whyNoPaths(doc);
   if (why !== null) return none(why);
-  const matter = receptorsThatMatter(doc.receptors, answers);
+  const matter = receptorsThatMatter(input, answers);
   const plan = planFor(input, matter);
   const run = doc.water.kind === 'river' ? channelPaths(input, plan) : openPaths(input, plan, field.pathWater ?? null);
   const startS = Math.min(...input.releases.map((release) => release.profile.startS));
@@ -78,12 +78,14 @@ function idleBelow(receptor: EstimateReceptor, { peak }: ReceptorAnswer): number
 type Matter = { receptor: EstimateReceptor; answer: ReceptorAnswer };
 
 /** Receptors that something reaches, those nearest to or above their action value first. */
-function receptorsThatMatter(receptors: readonly EstimateReceptor[], answers: readonly ReceptorAnswer[]): Matter[] {
+function receptorsThatMatter({ doc, weights }: RunInput, answers: readonly ReceptorAnswer[]): Matter[] {
   const weight = ({ receptor, answer }: Matter): number => (answer.peak.likely ?? 0) / Math.min(Infinity, ...receptor.actionValues.map((value) => value.value));
   const isKnown = ({ receptor }: Matter): boolean => receptor.actionValues.length > 0;
-  return receptors
+  // Where a rule has withdrawn the answer already there is nothing to compare; without amounts every answer is withdrawn, and figures are per kilogram.
+  const isWithdrawn = ({ answer }: Matter): boolean => answer.verdict === 'cannot be estimated' && !weights.isPerUnit;
+  return doc.receptors
     .map((receptor, i) => ({ receptor, answer: answers[i]! }))
-    .filter(({ answer }) => (answer.peak.likely ?? 0) > 0)
+    .filter((one) => (one.answer.peak.likely ?? 0) > 0 && !isWithdrawn(one))
     .sort((a, b) => Number(isKnown(b)) - Number(isKnown(a)) || weight(b) - weight(a) || (b.answer.peak.likely ?? 0) - (a.answer.peak.likely ?? 0))
     .slice(0, MOST_RECEPTORS);
 }
