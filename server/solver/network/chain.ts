@@ -1,3 +1,4 @@
+import { ParcelRow, type Amounts } from './parcel-row';
 import type { PathFlow } from './path-flow';
 import { disperse } from './sweep';
 import type { Tubes } from './tubes';
@@ -9,6 +10,8 @@ export const DROP_SHARE = 1e-14;
 
 /** A step of dispersion is divided into no more parts than this. */
 const MOST_PARTS = 4;
+/** Into how many is asked again after so many steps. */
+const PARTS_EVERY = 16;
 
 /** Where a row of parcels may reach: between stirred waters, or beyond the ends of the river. */
 export type ChainLimits = {
@@ -18,60 +21,31 @@ export type ChainLimits = {
   readonly isCut: boolean;
 };
 
-export type Amounts = Float64Array;
-
 /**
  * A row of water parcels between two places, which keep their water and move with the flow: advection without numerical
  * diffusion, whatever the flow does. In steady flow all parcels are one time step long, so that after every step each
  * stands where the one before it stood: the shift of a unit Courant number. The row covers the cloud and grows at its
  * ends as the cloud spreads.
- *
- * Lanes of a parcel: tubes of the first layer, then of the second (the same cloud with losses).
  */
-export class Chain {
-  from = 0;
-  to = 0;
-  private capacity = 512;
-  /** Upper face of each parcel, m; `face[to]` is the lower face of the last. */
-  face: Float64Array = new Float64Array(this.capacity + 1);
-  volume: Float64Array = new Float64Array(this.capacity);
-  /** Reach whose discharge the volume of a parcel goes by. */
-  stage = new Int16Array(this.capacity);
-  value: Float64Array;
-  private rhs: Float64Array;
-  private upper = new Float64Array(this.capacity);
-  private conductance = new Float64Array(this.capacity + 1);
-  private explicit = new Float64Array(this.capacity + 1);
-  private readonly scratch: Float64Array;
-  readonly lanes: number;
-  /** What left over the end, and what was left out at the edges, by layer. */
+export class Chain extends ParcelRow {
+  private readonly joinedValue: Float64Array;
+  /** What left over the end, by layer. */
   readonly left: Amounts;
-  readonly dropped: Amounts;
-  largestMixing = 0;
   private margin = 8;
+  private parts = 1;
+  private spreads = 0;
 
   constructor(
     readonly flow: PathFlow,
-    readonly tubes: Tubes,
-    readonly layers: number,
+    tubes: Tubes,
+    layers: number,
     readonly limits: ChainLimits,
     /** Length of a new parcel, m, at a place. */
     private readonly lengthAt: (xM: number) => number,
   ) {
-    this.lanes = tubes.count * layers;
-    this.value = new Float64Array(this.capacity * this.lanes);
-    this.rhs = new Float64Array(this.capacity * this.lanes);
-    this.scratch = new Float64Array(tubes.count);
+    super(tubes, layers);
+    this.joinedValue = new Float64Array(tubes.count);
     this.left = new Float64Array(layers);
-    this.dropped = new Float64Array(layers);
-  }
-
-  get isEmpty(): boolean {
-    return this.to === this.from;
-  }
-
-  centre(p: number): number {
-    return (this.face[p]! + this.face[p + 1]!) / 2;
   }
 
   /** Starts the row with one clean parcel. */
@@ -137,8 +111,8 @@ export class Chain {
         // Its stretch of the joined river; what the discharges lack or have over goes evenly over the section.
         const share = this.flow.reaches.some((reach) => reach.wave) ? Math.min(0.9999, Math.max(1e-4, before / after)) : joined.share;
         const low = joined.low === 0 ? 0 : joined.low >= 1 - joined.share - 1e-9 ? 1 - share : (joined.low / (1 - joined.share)) * (1 - share);
-        this.tubes.join(this.scratch, this.value, start, low, share);
-        for (let j = 0; j < n; j++) this.value[start + j] = this.scratch[j]! / (grown * share);
+        this.tubes.join(this.joinedValue, this.value, start, low, share);
+        for (let j = 0; j < n; j++) this.value[start + j] = this.joinedValue[j]! / (grown * share);
       } else for (let j = start; j < start + n; j++) this.value[j]! /= grown;
     }
   }
@@ -201,14 +175,24 @@ export class Chain {
     let most = 0;
     for (let p = this.from + 1; p < this.to; p++) most = Math.max(most, (this.conductance[p]! * dtS) / this.volume[p]!);
     this.margin = Math.min(200, Math.ceil(6 + 8 * Math.sqrt(most)));
-    this.largestMixing = Math.max(this.largestMixing, most);
     if (this.to - this.from < 2) return;
     // Through the top only water comes in. In the frame of the parcels the top runs up one parcel in a step: on average
     // it stands at the lower face of the parcel that has just come in.
     if (this.face[this.from]! < this.limits.topM + 1e-6) this.conductance[this.from + 1] = 0;
-    // Crank-Nicolson keeps values positive up to a mixing number of 1: steps a little longer are divided.
-    const parts = Math.min(MOST_PARTS, Math.max(1, Math.ceil(most)));
+    if (this.spreads++ % PARTS_EVERY === 0) this.parts = this.partsNeeded(dtS);
+    const { parts } = this;
     for (let i = 0; i < parts; i++) disperse(this.value, this.rhs, this.upper, this.volume, this.conductance, this.explicit, this.from, this.to, this.lanes, dtS / parts);
+  }
+
+  /** Crank-Nicolson keeps values positive up to a mixing number of 1: where most of the amount stands, longer steps are divided. */
+  private partsNeeded(dtS: number): number {
+    let [mass, mixing] = [0, 0];
+    for (let p = this.from + 1; p < this.to; p++) {
+      const own = this.massOf(p, 0);
+      mass += own;
+      mixing += (own * this.conductance[p]! * dtS) / this.volume[p]!;
+    }
+    return mass > 0 ? Math.min(MOST_PARTS, Math.max(1, Math.ceil(mixing / mass))) : 1;
   }
 
   /** Conductance of the face above parcel p: area times dispersion over the distance of the centres. */
@@ -223,35 +207,6 @@ export class Chain {
     const areas = this.volume[p - 1]! / (x - this.face[p - 1]!) + this.volume[p]! / (this.face[p + 1]! - x);
     const area = flow.isTidal ? areas / 2 : flow.areaM2(r, x, tS);
     return (area * flow.dispersionM2s(r, x, tS)) / distanceM;
-  }
-
-  massOf(p: number, layer: number): number {
-    let sum = 0;
-    const at = p * this.lanes + layer * this.tubes.count;
-    for (let j = 0; j < this.tubes.count; j++) sum += this.tubes.share[j]! * this.value[at + j]!;
-    return sum * this.volume[p]!;
-  }
-
-  /** Amount of a layer between two places. */
-  mass(layer: number, fromM = -Infinity, toM = Infinity): number {
-    let sum = 0;
-    for (let p = this.from; p < this.to; p++) {
-      const x = this.centre(p);
-      if (x >= fromM && x < toM) sum += this.massOf(p, layer);
-    }
-    return sum;
-  }
-
-  /** Multiplies the layer with losses by what survives. */
-  lose(layer: number, survival: number): void {
-    const n = this.tubes.count;
-    for (let p = this.from; p < this.to; p++) for (let l = p * this.lanes + layer * n; l < p * this.lanes + (layer + 1) * n; l++) this.value[l]! *= survival;
-  }
-
-  private largestAt(p: number): number {
-    let most = 0;
-    for (let l = p * this.lanes; l < p * this.lanes + this.tubes.count; l++) if (this.value[l]! > most) most = this.value[l]!;
-    return most;
   }
 
   /**
@@ -283,37 +238,7 @@ export class Chain {
 
   private trim(least: number, coverFromM: number, coverToM: number): void {
     const room = 3 * this.margin;
-    while (this.to - this.from > room && this.face[this.from + 1]! < coverFromM && this.largestAt(this.from) <= least && this.largestAt(this.from + 1) <= least) this.drop(this.from++);
-    while (this.to - this.from > room && this.face[this.to - 1]! > coverToM && this.largestAt(this.to - 1) <= least && this.largestAt(this.to - 2) <= least) this.drop(--this.to);
-  }
-
-  private drop(p: number): void {
-    for (let layer = 0; layer < this.layers; layer++) this.dropped[layer]! += this.massOf(p, layer);
-  }
-
-  private recentre(): void {
-    const count = this.to - this.from;
-    const capacity = count * 3 > this.capacity ? 2 * this.capacity : this.capacity;
-    const start = (capacity - count) >> 1;
-    const moved = (array: Float64Array, length: number, per: number, extra = 0): Float64Array => {
-      const out = new Float64Array(length);
-      out.set(array.subarray(this.from * per, this.to * per + extra), start * per);
-      return out;
-    };
-    this.face = moved(this.face, capacity + 1, 1, 1);
-    this.volume = moved(this.volume, capacity, 1);
-    this.value = moved(this.value, capacity * this.lanes, this.lanes);
-    const stage = new Int16Array(capacity);
-    stage.set(this.stage.subarray(this.from, this.to), start);
-    this.stage = stage;
-    if (capacity !== this.capacity) {
-      this.rhs = new Float64Array(capacity * this.lanes);
-      this.upper = new Float64Array(capacity);
-      this.conductance = new Float64Array(capacity + 1);
-      this.explicit = new Float64Array(capacity + 1);
-    }
-    this.capacity = capacity;
-    this.from = start;
-    this.to = start + count;
+    while (this.to - this.from > room && this.face[this.from + 1]! < coverFromM && this.largestAt(this.from) <= least && this.largestAt(this.from + 1) <= least) this.from++;
+    while (this.to - this.from > room && this.face[this.to - 1]! > coverToM && this.largestAt(this.to - 1) <= least && this.largestAt(this.to - 2) <= least) this.to--;
   }
 }

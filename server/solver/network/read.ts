@@ -20,10 +20,9 @@ export class Reader {
       if (chain.centre(mid) <= xM) low = mid;
       else high = mid - 1;
     }
-    const like = (p: number): boolean => p >= chain.from && p < chain.to && isSameWater(chain, p, r);
-    if (!like(low)) return this.take(like(low + 1) ? low + 1 : like(low - 1) ? low - 1 : low);
-    if (!like(low + 1) || chain.centre(low) > xM) return this.take(low);
-    if (like(low - 1) && like(low + 2)) return this.cubic(chain, low - 1, xM);
+    if (!isSameWater(chain, low, r)) return this.take(isSameWater(chain, low + 1, r) ? low + 1 : isSameWater(chain, low - 1, r) ? low - 1 : low);
+    if (!isSameWater(chain, low + 1, r) || chain.centre(low) > xM) return this.take(low);
+    if (isSameWater(chain, low - 1, r) && isSameWater(chain, low + 2, r)) return this.cubic(chain, low - 1, xM);
     const share = (xM - chain.centre(low)) / (chain.centre(low + 1) - chain.centre(low));
     this.count = 2;
     [this.parcel[0], this.parcel[1]] = [low, low + 1];
@@ -53,9 +52,11 @@ export class Reader {
   }
 }
 
-/** Whether a parcel holds the water of reach r: no confluence or change of discharge between. */
+/** Whether a parcel of the chain holds the water of reach r: no confluence or change of discharge between. */
 function isSameWater(chain: Chain, p: number, r: number): boolean {
-  const [a, b] = [Math.min(chain.stage[p]!, r), Math.max(chain.stage[p]!, r)];
+  if (p < chain.from || p >= chain.to) return false;
+  const a = Math.min(chain.stage[p]!, r);
+  const b = Math.max(chain.stage[p]!, r);
   for (let i = a + 1; i <= b; i++) if (chain.flow.changesAt(i)) return false;
   return true;
 }

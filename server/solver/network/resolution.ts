@@ -17,9 +17,13 @@ export type Resolution = {
 const FULL = { perSigma: 16, along: 3_000, steps: 8_000, fewest: 240, tubes: 17 } as const;
 const PREVIEW = { perSigma: 6, along: 200, steps: 300, fewest: 100, tubes: 9 } as const;
 
+/** Values stepped for one estimate at most, all releases together: about ten seconds. */
+const MOST_WORK = 5e8;
+
 /**
  * The step: a sixteenth of the standard deviation of the passage at the receptor where it is sharpest (a sixth in a
- * preview), but no more than 3,000 parcels along the way and 8,000 steps. `refine` divides it, for convergence tests.
+ * preview), but no more than 3,000 parcels along the way, 8,000 steps, and
+ * 500 million values over all releases. `refine` divides it, for convergence tests.
  */
 export function resolutionFor(input: RunInput, release: ResolvedRelease, flow: PathFlow, sourceM: number, receptorsM: readonly number[], refine: number): Resolution {
   const limits = input.isPreview ? PREVIEW : FULL;
@@ -37,7 +41,9 @@ export function resolutionFor(input: RunInput, release: ResolvedRelease, flow: P
   const met = passages.filter(({ T, sigma }) => T - 4 * sigma < spanS && sigma > 0);
   const sharpest = met.length > 0 ? Math.min(...met.map(({ sigma }) => sigma)) : null;
   const longest = Math.min(spanS, flow.isTidal ? spanS : flow.travelS(sourceM, flow.endM));
-  const least = Math.max(longest / limits.along, spanS / limits.steps);
+  const layers = input.loss.kind === 'none' ? 1 : 2;
+  const byWork = Math.sqrt((spanS * longest * limits.tubes * layers * input.releases.length) / MOST_WORK);
+  const least = Math.max(longest / limits.along, spanS / limits.steps, byWork);
   const wanted = Math.min(spanS / limits.fewest, Math.max(least, sharpest === null ? longest / 600 : sharpest / limits.perSigma)) / refine;
   const steps = Math.ceil(spanS / wanted);
   const stepS = spanS / steps;

@@ -2,7 +2,8 @@ import { SolverDivergedError } from '../errors';
 import type { LossClock } from '../loss';
 import type { Meter } from '../meter';
 import type { ResolvedRelease } from '../release-profile';
-import { Chain, type Amounts } from './chain';
+import { Chain } from './chain';
+import type { Amounts } from './parcel-row';
 import type { PathFlow } from './path-flow';
 import { EnvelopeRecorder, snapshotOf, StationRecorder, type BookRows, type Snapshot, type Station, type StationSeries } from './recorder';
 import type { Resolution } from './resolution';
@@ -23,7 +24,6 @@ export type NetworkRun = {
   readonly envelope: EnvelopeRecorder;
   readonly books: BookRows;
   readonly mostParcels: number;
-  readonly largestMixing: number;
 };
 
 export type RunPlan = {
@@ -155,7 +155,6 @@ export class NetworkSimulation {
       envelope,
       books,
       mostParcels: this.mostParcels,
-      largestMixing: Math.max(...chains.map((chain) => chain.largestMixing)),
     };
   }
 

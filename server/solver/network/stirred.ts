@@ -1,4 +1,4 @@
-import type { Amounts } from './chain';
+import type { Amounts } from './parcel-row';
 
 /**
  * Stirred water of equal tanks in a row through which the whole flow passes: dM/dt = inflow - (Q/V) M, solved exactly

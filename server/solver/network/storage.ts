@@ -1,4 +1,4 @@
-import { DROP_SHARE, type Amounts, type Chain } from './chain';
+import { DROP_SHARE, type Chain } from './chain';
 import type { PathFlow } from './path-flow';
 
 /**
@@ -16,7 +16,6 @@ export class Storage {
   /** Cells that hold anything: [low, high). */
   private low = 0;
   private high = 0;
-  readonly dropped: Amounts;
 
   constructor(
     private readonly chain: Chain,
@@ -34,7 +33,6 @@ export class Storage {
     }
     this.face.push(faces[faces.length - 1] ?? 0);
     this.value = new Float64Array(this.volume.length * chain.lanes);
-    this.dropped = new Float64Array(chain.layers);
   }
 
   /** Where parcels have to stand for what the zones hold; null where they are empty. */
@@ -110,7 +108,6 @@ export class Storage {
   }
 
   private drop(k: number): void {
-    for (let layer = 0; layer < this.chain.layers; layer++) this.dropped[layer]! += this.massOf(k, layer);
     this.value.fill(0, k * this.chain.lanes, (k + 1) * this.chain.lanes);
   }
 
