@@ -1,7 +1,7 @@
 import { instantiate, Layout, type CompiledKernel } from './host';
 
 type PoissonCalls = {
-  sumFaces(level: number): void;
+  sumFaces(level: number): number;
   coarsenFaces(coarse: number, fine: number): void;
   weighInterpolation(fine: number, coarse: number): void;
   setSmoother(low: number): void;
@@ -21,7 +21,7 @@ const LEVEL_BYTES = 48;
 const GRIDS_PER_LEVEL = 8;
 
 /** The finest level as the caller fills it. */
-type Finest = { stride: number; kx: Float32Array; ky: Float32Array; diagonal: Float32Array; inverse: Float32Array };
+type Finest = { stride: number; kx: Float32Array; ky: Float32Array };
 
 /** The iteration did not reach the tolerance: the faces leave water without a way to p = 0 and b does not sum to 0 there. */
 export class PoissonNotSolved extends Error {
@@ -67,8 +67,8 @@ export class PoissonSolver {
       const first = 4 * (size.stride + MARGIN_CELLS);
       records.set([size.nx, size.ny, 4 * size.stride, ...addresses[l]!.map((address) => address + first)], (LEVEL_BYTES / 4) * l);
     });
-    const [kx, ky, diagonal, inverse] = addresses[0]!.map((address) => new Float32Array(buffer, address, stride * rows));
-    this.finest = { stride, kx: kx!, ky: ky!, diagonal: diagonal!, inverse: inverse! };
+    const [kx, ky] = addresses[0]!.map((address) => new Float32Array(buffer, address, stride * rows));
+    this.finest = { stride, kx: kx!, ky: ky! };
     const view = (address: number): Float64Array => new Float64Array(buffer, address - 8 * this.origin, stride * rows);
     this.fields = { x: view(this.at.x), r: view(this.at.r), p: view(this.at.p) };
     this.report = new Float64Array(buffer, this.at.report, 1);
@@ -81,33 +81,28 @@ export class PoissonSolver {
   setFaces(x: Float64Array, y: Float64Array): void {
     const { nx, ny } = this;
     if (x.length !== (nx + 1) * ny || y.length !== nx * (ny + 1)) throw new RangeError(`Faces of ${nx} x ${ny} cells are ${(nx + 1) * ny} and ${nx * (ny + 1)}, got ${x.length} and ${y.length}`);
-    checkFaces(x);
-    checkFaces(y);
     const { finest, calls, levelCount, origin } = this;
     for (let j = 0; j < ny; j++) finest.kx.set(x.subarray(j * (nx + 1), (j + 1) * (nx + 1)), origin + j * finest.stride - 1);
     for (let j = 0; j <= ny; j++) finest.ky.set(y.subarray(j * nx, (j + 1) * nx), origin + (j - 1) * finest.stride);
     const level = (l: number): number => this.at.levels + LEVEL_BYTES * l;
     for (let l = 0; l < levelCount; l++) {
       if (l > 0) calls.coarsenFaces(level(l), level(l - 1));
-      calls.sumFaces(level(l));
+      if (calls.sumFaces(level(l)) === 0) throw new RangeError('Faces must be finite and not negative');
       if (l > 0) calls.weighInterpolation(level(l - 1), level(l));
     }
   }
 
   /**
-   * Solves for p into `out` (nx*ny, x fastest; overwritten); `b` likewise, 0 where all faces are closed.
+   * Solves for p into `out` (nx*ny, x fastest; overwritten); `b` likewise, ignored where all faces are closed.
    * Answers the rounds taken. Throws PoissonNotSolved where |residual| stays above `tolerance` |b| (2-norms).
    */
   solve(out: Float64Array, b: Float64Array, tolerance = 1e-8): number {
     const { x, r, p } = this.fields;
     const { nx, ny } = this;
-    const { stride, inverse } = this.finest;
+    const { stride } = this.finest;
     x.fill(0);
     p.fill(0);
-    for (let j = 0; j < ny; j++) {
-      const row = this.origin + j * stride;
-      for (let i = 0; i < nx; i++) r[row + i] = inverse[row + i] === 0 ? 0 : b[j * nx + i]!;
-    }
+    for (let j = 0; j < ny; j++) r.set(b.subarray(j * nx, (j + 1) * nx), this.origin + j * stride);
     const rounds = this.calls.solve(this.at.levels, this.levelCount, this.at.x, this.at.r, this.at.p, this.at.q, tolerance, MOST_ROUNDS, this.at.report);
     if (rounds < 0) throw new PoissonNotSolved(this.report[0]!, MOST_ROUNDS);
     for (let j = 0; j < ny; j++) out.set(x.subarray(this.origin + j * stride, this.origin + j * stride + nx), j * nx);
@@ -122,11 +117,5 @@ function levelSizes(nx: number, ny: number): { nx: number; ny: number; stride: n
     if (Math.max(nx, ny) <= COARSEST) return sizes;
     nx = Math.ceil(nx / 2);
     ny = Math.ceil(ny / 2);
-  }
-}
-
-function checkFaces(values: Float64Array): void {
-  for (let k = 0; k < values.length; k++) {
-    if (!(values[k]! >= 0 && values[k]! < Infinity)) throw new RangeError(`Face ${k} is ${values[k]}; faces must be finite and not negative`);
   }
 }

@@ -241,8 +241,8 @@ function cycle(levels: usize, count: i32): void {
   for (let level = last - LEVEL_BYTES; level >= levels; level -= LEVEL_BYTES) smoothUp(level, level + LEVEL_BYTES);
 }
 
-/** Diagonals of a level from its faces. */
-export function sumFaces(level: usize): void {
+/** Diagonals of a level from its faces; answers whether all faces are finite and not negative. */
+export function sumFaces(level: usize): bool {
   const nx = <usize>field(level, 0);
   const ny = field(level, 1);
   const stride = <usize>field(level, 2);
@@ -253,9 +253,18 @@ export function sumFaces(level: usize): void {
   let inverse = <usize>field(level, 6);
   const one = f32x4.splat(1.0);
   const zero = f32x4.splat(0.0);
+  const most = f32x4.splat(f32.MAX_VALUE);
+  let good = i32x4.splat(-1);
   for (let j = 0; j < ny; j++) {
     for (let i: usize = 0; i < width; i += 16) {
-      const sum = f32x4.add(f32x4.add(v128.load(kx + i), v128.load(kx + i - 4)), f32x4.add(v128.load(ky + i), v128.load(ky + i - stride)));
+      const right = v128.load(kx + i);
+      const left = v128.load(kx + i - 4);
+      const up = v128.load(ky + i);
+      const down = v128.load(ky + i - stride);
+      const sum = f32x4.add(f32x4.add(right, left), f32x4.add(up, down));
+      const least = f32x4.pmin(f32x4.pmin(right, left), f32x4.pmin(up, down));
+      // No number compares: a face that is none spoils the sum.
+      good = v128.and(good, v128.and(f32x4.ge(least, zero), f32x4.le(sum, most)));
       v128.store(diagonal + i, sum);
       v128.store(inverse + i, v128.and(f32x4.div(one, sum), f32x4.gt(sum, zero)));
     }
@@ -269,6 +278,7 @@ export function sumFaces(level: usize): void {
     diagonal += stride;
     inverse += stride;
   }
+  return i32x4.all_true(good);
 }
 
 /** Coarse faces: half the sum of the two fine faces each covers, which is twice the length over twice the distance. */
@@ -461,6 +471,30 @@ function advance(level: usize, x: usize, r: usize, p: usize, q: usize, alphaOf: 
   return sumOf(sum);
 }
 
+/** r r of the right side, after clearing it where all faces are closed. */
+function clearAndMeasure(level: usize, r: usize): f64 {
+  const cells = ((<usize>field(level, 0) + 3) >> 2) << 2;
+  const ny = field(level, 1);
+  const stride = <usize>field(level, 2);
+  let inverse = <usize>field(level, 6);
+  const zero = f64x2.splat(0.0);
+  let sum = zero;
+  for (let j = 0; j < ny; j++) {
+    for (let i: usize = 0; i < cells; i += 4) {
+      const four = v128.load(inverse + (i << 2));
+      const at = r + (i << 3);
+      const first = v128.and(v128.load(at), f64x2.ne(low(four), zero));
+      const second = v128.and(v128.load(at, 16), f64x2.ne(high(four), zero));
+      v128.store(at, first);
+      v128.store(at, second, 16);
+      sum = f64x2.add(sum, f64x2.add(f64x2.mul(first, first), f64x2.mul(second, second)));
+    }
+    r += stride << 1;
+    inverse += stride;
+  }
+  return sumOf(sum);
+}
+
 /** r z, z being the finest level's x. */
 function dotWithCycle(level: usize, r: usize): f64 {
   const cells = ((<usize>field(level, 0) + 3) >> 2) << 2;
@@ -484,7 +518,7 @@ function dotWithCycle(level: usize, r: usize): f64 {
  * after `most` rounds. Answers the rounds taken, or -1 where the tolerance was not met. What |r| / |b| became stands at `report`.
  */
 export function solve(levels: usize, count: i32, x: usize, r: usize, p: usize, q: usize, tolerance: f64, most: i32, report: usize): i32 {
-  const start = sqrt(advance(levels, x, r, p, q, 0.0, 0.0));
+  const start = sqrt(clearAndMeasure(levels, r));
   store<f64>(report, 0.0);
   if (start === 0.0) return 0;
   // The cycle sees the residual as a share of what it was a round ago, safe from underflow in 32 bits.
