@@ -3,12 +3,14 @@ import type { Check, EstimateResult, Reached, ReceptorAnswer } from '../../share
 import { answerChecks } from './checks/answer-checks';
 import { commonChecks } from './checks/common-checks';
 import { conditionChecks } from './checks/condition-checks';
+import { hingeChecks } from './checks/hinge-checks';
 import { waterAtPlaces } from './checks/place-water';
 import { checkDoor } from './door';
 import { ENGINE_VERSION } from './engine-version';
 import { combinedClock, lossParts } from './losses/loss-parts';
 import { lostBy } from './losses/lost-by';
 import { Meter } from './meter';
+import { openWaterSolver } from './open/open-solver';
 import { resolveReleases, weightsOf } from './release-profile';
 import { amountWorking } from './results/amount-working';
 import { packField, largestOf } from './results/frame-message';
@@ -56,6 +58,7 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
   const reached = frames.writeEnvelope();
   const opinion = input.isPreview ? null : secondOpinion(input, field, first.answers);
   const { answers, sites } = opinion ? withOpinion(input, first, opinion, sink) : first;
+  const hinges = input.isPreview || solver !== openWaterSolver ? [] : hingeChecks(input, solver, answers);
   const books = field.books(doc.horizonS, input.weights.likely);
   const diagnostics = {
     ...diagnosticsOf(input, books, frames.cappedValues),
@@ -74,7 +77,7 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
     distanceTime: field.distanceTime(frameTimesS, input.weights.likely),
     ...(field.travelTimes && !input.isPreview ? { travelTimes: field.travelTimes(input.weights.likely) } : {}),
     reached,
-    checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...runChecks, ...sites.flatMap((site) => site.checks)],
+    checks: [...commonChecks({ input, answers, books, cappedValues: frames.cappedValues }), ...runChecks, ...sites.flatMap((site) => site.checks), ...hinges],
     diagnostics,
     working: [...amountWorking(input), ...field.working],
     ...(opinion ? { secondOpinion: opinion.secondOpinion } : {}),

@@ -38,19 +38,6 @@ function cutOut(line: Vertex[], fromKm: number, toKm: number): Vertex[] {
 
 export const areaOf = (id: keyof typeof shapes.areas): LonLat[][] => shapes.areas[id] as LonLat[][];
 
-/** Bay and estuary as one water: both outlines meet along the line across the river mouth. */
-export function mouthArea(): LonLat[][] {
-  const open = (ring: LonLat[]): LonLat[] => ring.slice(0, -1);
-  const coast = open(areaOf('coast')[0]!);
-  const estuary = open(areaOf('estuary')[0]!);
-  const isAt = ([lon, lat]: LonLat) => (p: LonLat) => p[0] === lon && p[1] === lat;
-  const north = coast.findIndex(isAt([-117.305, -44.492]));
-  const northInside = estuary.findIndex(isAt([-117.305, -44.492]));
-  const upAndDown = [...estuary.slice(northInside + 1), ...estuary.slice(0, northInside)];
-  const ring = [...coast.slice(0, north + 1), ...upAndDown, ...coast.slice(north + 2)];
-  return [[...ring, ring[0]!]];
-}
-
 /** A place on the network, with its position on the centreline; `line` names a river or the estuary as a whole. */
 export function onReach(line: LineId, chainageKm: number, bank: Bank): { waterId: 'river-ollemar'; position: LonLat; channel: { reachId: ReachId; chainageKm: number; bank: Bank } } {
   const reachId = line === 'ol-estuary' ? estuaryStretches.find(({ fromKm, toKm }) => chainageKm <= fromKm && chainageKm >= toKm)!.id : line;

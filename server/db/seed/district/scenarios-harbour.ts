@@ -1,4 +1,3 @@
-import { mouthArea } from './places';
 import { HOUR_S, maxFloodS, openWater, receptorsOf, scenario, source, substance, TIDE_S, type SeedScenario } from './scenarios-parts';
 
 const DAY_S = 24 * HOUR_S;
@@ -12,6 +11,7 @@ export const copperInBasin = scenario(
     startAt: '2031-03-21T09:00:00-08:00', horizonS: 18 * DAY_S, frameCount: 72,
     substance: substance('copper-sulfate'),
     water: openWater('kestovar-harbour', {
+      current: [{ kind: 'residual', speedMps: 0.03, towardDeg: 96 }],
       box: { ...BASIN, tidalRangeM: 2.3, periodS: TIDE_S, returnFraction: 0.5 },
       coefficientNote: 'Springs to neaps: mean range 2.3 m; half of what leaves comes back (invented)',
     }),
@@ -34,24 +34,25 @@ export const copperInBasin = scenario(
 const QUAY_AT = '2031-05-12T19:00:00-08:00';
 
 export const foamAtQuay = scenario(
-  'S08', 'Warehouse fire-water at the river quay, PFAS',
-  'Tide and residual: whether the desalination intake is reached hinges on the residual current. Its storage lasts 24 h.',
+  'S08', 'Warehouse fire-water at the river quay, PFAS, springs',
+  'Tide and residual: whether and when the desalination intake is reached hinges on the residual current. Its storage lasts 24 h.',
   {
     startAt: QUAY_AT, horizonS: 60 * HOUR_S, frameCount: 90,
     substance: substance('pfas-20'),
     water: openWater('branvell-bay', {
-      name: 'Branvell Bay and lower estuary', area: mouthArea(), depthM: 12, mixingDepthM: 6,
+      depthM: 12, mixingDepthM: 6,
       current: [
         { kind: 'tide', name: 'M2', majorMps: 0.25, minorMps: 0, floodTowardDeg: 10, periodS: TIDE_S, maxFloodS: maxFloodS(QUAY_AT) },
         { kind: 'residual', speedMps: 0.08, towardDeg: 350 },
       ],
-      coefficientNote: 'Springs in the bay, residual 0.08 m/s toward 350',
+      coefficientNote: 'Springs in the bay, residual 0.08 m/s toward 350; from 2 km off the bar on',
     }),
     releases: [
       {
-        id: 'release-1', ...source('quay-warehouse'), channel: null, timing: { kind: 'steady', startS: 0, durationS: 8 * HOUR_S },
+        // The estuary part is not reckoned: the spring ebb takes the quay's water past the bar within the hour.
+        id: 'release-1', ...source('quay-warehouse'), position: [-117.329, -44.497], timing: { kind: 'steady', startS: 0, durationS: 8 * HOUR_S },
         amount: { how: 'volume-strength', volumeM3: { low: 600, likely: 1_200, high: 1_200 }, strengthKgM3: 0.015 },
-        spilledVolumeM3: 1_200, evidence: 'Pump log of the fire service; strength of the run-off from one sample.',
+        spilledVolumeM3: 1_200, evidence: 'Pump log of the fire service; strength of the run-off from one sample. Taken from 2 km off the bar, where the ebb leaves it.',
       },
     ],
     receptors: receptorsOf('branvell-bay', 'pfas-20'),
@@ -60,25 +61,25 @@ export const foamAtQuay = scenario(
 
 const OVERFLOW_AT = { evening: '2031-01-15T20:00:00-08:00', morning: '2031-01-15T05:00:00-08:00' };
 
-/** Storm overflow at neaps with a south-easterly breeze behind it. */
+/** Storm overflow at neaps with a southerly breeze behind it. */
 const stormOverflow = (key: string, name: string, note: string, startAt: string, applyLoss: boolean): SeedScenario =>
   scenario(key, name, note, {
     startAt, horizonS: 36 * HOUR_S, frameCount: 72,
     substance: { ...substance('e-coli'), applyLoss },
     water: openWater('branvell-bay', {
-      name: 'Branvell Bay and lower estuary', area: mouthArea(), depthM: 12, mixingDepthM: 6,
+      depthM: 12, mixingDepthM: 6,
       current: [
         { kind: 'tide', name: 'M2', majorMps: 0.12, minorMps: 0, floodTowardDeg: 10, periodS: TIDE_S, maxFloodS: maxFloodS(startAt) },
         { kind: 'residual', speedMps: 0.08, towardDeg: 350 },
-        { kind: 'wind', windSpeedMps: 5, windFromDeg: 135, driftFraction: 0.02 },
+        { kind: 'wind', windSpeedMps: 5, windFromDeg: 180, driftFraction: 0.02 },
       ],
-      coefficientNote: 'Neaps in the bay, residual 0.08 m/s toward 350, south-easterly wind 5 m/s of which 2 % moves the upper 6 m (common practice, no source)',
+      coefficientNote: 'Neaps in the bay, residual 0.08 m/s toward 350, wind 5 m/s from 180 of which 2 % moves the upper 6 m (common practice, no source)',
     }),
     releases: [
       {
-        id: 'release-1', ...source('storm-overflow'), channel: null, timing: { kind: 'steady', startS: 0, durationS: 5 * HOUR_S },
+        id: 'release-1', ...source('storm-overflow'), channel: null, position: [-117.325, -44.497], timing: { kind: 'steady', startS: 0, durationS: 5 * HOUR_S },
         amount: { how: 'volume-count', volumeM3: { likely: 14_400 }, countPerM3: 2e10 },
-        spilledVolumeM3: 14_400, evidence: '0.8 m3/s for 5 h by the level in the chamber; strength from last winter.',
+        spilledVolumeM3: 14_400, evidence: '0.8 m3/s for 5 h by the level in the chamber; strength from last winter. Taken from 1.5 km off the bar, where the ebb leaves it.',
       },
     ],
     receptors: receptorsOf('branvell-bay', 'e-coli'),

@@ -33,20 +33,29 @@ export const source = (id: string) => {
   return { name, position: data.position, channel: data.channel };
 };
 
-/** The Ollemar with its tributaries at a named flow, or at discharges set for single reaches. */
-export const river = (flowName: string, flow: Partial<RiverInput['flow']> = {}, temperatureC: number | null = null): RiverInput => {
-  const water = assembleWater(item('waters', 'river-ollemar'), { flowName }) as RiverInput;
-  return { ...water, flow: { ...water.flow, ...flow }, temperatureC };
-};
+type Flow = { name: string } & Partial<RiverInput['flow']>;
+const isTidal = (reachId: string): boolean => estuaryStretches.some(({ id }) => id === reachId);
 
-/** The tide of the estuary at springs, strongest ebb `maxEbbS` after T0. */
-export const withSprings = (water: RiverInput, maxEbbS: number): RiverInput => ({
-  ...water,
-  reaches: water.reaches.map((reach) => {
-    const stretch = estuaryStretches.find(({ id }) => id === reach.id);
-    return stretch ? { ...reach, tide: { amplitudeMps: stretch.springsMps, periodS: TIDE_S, maxEbbS } } : reach;
-  }),
-});
+/** Reaches of the Ollemar, cut where the tide begins, at a flow: named, with discharges set for single reaches. */
+function ollemar(flow: Flow, isPart: (reachId: string) => boolean): RiverInput {
+  const water = assembleWater(item('waters', 'river-ollemar'), { flowName: flow.name }) as RiverInput;
+  const reaches = water.reaches.filter(({ id }) => isPart(id));
+  const kept = new Set(reaches.map(({ id }) => id));
+  return { ...water, reaches: reaches.map((reach) => ({ ...reach, downstreamReachId: kept.has(reach.downstreamReachId ?? '') ? reach.downstreamReachId : null })), flow: { ...water.flow, ...flow } };
+}
+
+/** The river and its tributaries down to Low Weir, where the tide begins and an estimate of its own with it. */
+export const river = (flow: Flow, temperatureC: number | null = null): RiverInput => ({ ...ollemar(flow, (id) => !isTidal(id)), temperatureC });
+
+/** The estuary from Low Weir to the bar with the tide at springs, strongest ebb `maxEbbS` after T0. */
+export function estuary(flow: Flow, maxEbbS: number): RiverInput {
+  const water = ollemar(flow, isTidal);
+  return { ...water, reaches: water.reaches.map((reach) => ({ ...reach, tide: { amplitudeMps: estuaryStretches.find(({ id }) => id === reach.id)!.springsMps, periodS: TIDE_S, maxEbbS } })) };
+}
+
+/** Receptors on the reaches of a river document. */
+export const receptorsOn = (water: RiverInput, substanceId: string): EstimateReceptor[] =>
+  receptorsOf('river-ollemar', substanceId).filter(({ channel }) => water.reaches.some(({ id }) => id === channel?.reachId));
 
 export const openWater = (id: string, over: Partial<OpenInput>): OpenInput => ({ ...(assembleWater(item('waters', id)) as OpenInput), ...over });
 

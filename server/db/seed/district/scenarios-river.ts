@@ -1,14 +1,15 @@
 import { onReach } from './places';
-import { HOUR_S, receptorsOf, river, scenario, source, substance, TIDE_S, withSprings, type SeedScenario } from './scenarios-parts';
+import { estuary, HOUR_S, receptorsOn, river, scenario, source, substance, TIDE_S, type SeedScenario } from './scenarios-parts';
 
-const OLLEMAR = 'river-ollemar';
+const USUAL = river({ name: 'Q50' }, 12);
+const LOW = river({ name: 'Q95' }, 18);
 
 /** 4 t of ammonia solution in ten minutes, usual flow. */
 export const tankerAtBridge = (key: string, name: string, note: string): SeedScenario =>
   scenario(key, name, note, {
     startAt: '2031-05-12T06:40:00-08:00', horizonS: 36 * HOUR_S, frameCount: 73,
     substance: substance('ammonia-solution'),
-    water: river('Q50', {}, 12),
+    water: USUAL,
     releases: [
       {
         id: 'release-1', ...source('v2-bridge'), timing: { kind: 'steady', startS: 0, durationS: 600 },
@@ -16,7 +17,7 @@ export const tankerAtBridge = (key: string, name: string, note: string): SeedSce
         evidence: 'Driver says about half the load of one chamber is gone; the other chambers hold.',
       },
     ],
-    receptors: receptorsOf(OLLEMAR, 'ammonia-solution'),
+    receptors: receptorsOn(USUAL, 'ammonia-solution'),
   });
 
 export const hypochloriteLeak = scenario(
@@ -25,7 +26,7 @@ export const hypochloriteLeak = scenario(
   {
     startAt: '2031-01-20T14:00:00-08:00', horizonS: 24 * HOUR_S, frameCount: 72,
     substance: { ...substance('sodium-hypochlorite'), applyLoss: true },
-    water: river('Q95', {}, 18),
+    water: LOW,
     releases: [
       {
         id: 'release-1', ...source('creamery'), timing: { kind: 'steady', startS: 0, durationS: 2 * HOUR_S },
@@ -33,18 +34,18 @@ export const hypochloriteLeak = scenario(
         spilledVolumeM3: 1.2, evidence: 'Day tank of 1,200 l empty; the shift saw it full two hours before.',
       },
     ],
-    receptors: receptorsOf(OLLEMAR, 'sodium-hypochlorite'),
+    receptors: receptorsOn(LOW, 'sodium-hypochlorite'),
   },
 );
 
-const ORCHARD = { startAt: '2031-11-03T22:15:00-08:00', horizonS: 48 * HOUR_S, frameCount: 96 };
+const ORCHARD = { startAt: '2031-11-03T22:15:00-08:00', horizonS: 36 * HOUR_S, frameCount: 72 };
 
 /** Fire-water from the orchard store with the flow of Evarrow as the dam lets it. */
-const orchardFire = (key: string, name: string, note: string, flow: Parameters<typeof river>[1]): SeedScenario =>
+const orchardFire = (key: string, name: string, note: string, flow: Omit<Parameters<typeof river>[0], 'name'>): SeedScenario =>
   scenario(key, name, note, {
     ...ORCHARD,
     substance: substance('chlorpyrifos'),
-    water: river('Q50', flow, 13),
+    water: river({ name: 'Q50', ...flow }, 13),
     releases: [
       {
         id: 'release-1', ...source('orchard-store'), timing: { kind: 'steady', startS: 0, durationS: 6 * HOUR_S },
@@ -52,7 +53,7 @@ const orchardFire = (key: string, name: string, note: string, flow: Parameters<t
         evidence: 'Store list of the growers; all of it taken as lost. Half-life not known: reckoned without loss.',
       },
     ],
-    receptors: receptorsOf(OLLEMAR, 'chlorpyrifos'),
+    receptors: receptorsOn(USUAL, 'chlorpyrifos'),
   });
 
 const set = (evarrow: number, middle: number, lower: number) => [
@@ -78,9 +79,9 @@ export const platingBath = scenario(
   'S04', 'Plating works, chromium(VI) bath in 45 minutes, low flow',
   'Bank side: the offtake 0.8 km below lies on the bank of the release, long before the river is mixed. Far above the action value at the first intake.',
   {
-    startAt: '2031-02-09T10:20:00-08:00', horizonS: 48 * HOUR_S, frameCount: 96,
+    startAt: '2031-02-09T10:20:00-08:00', horizonS: 42 * HOUR_S, frameCount: 84,
     substance: substance('chromium-vi'),
-    water: river('Q95', {}, 17),
+    water: LOW,
     releases: [
       {
         id: 'release-1', ...source('plating-works'), timing: { kind: 'steady', startS: 0, durationS: 45 * 60 },
@@ -93,10 +94,13 @@ export const platingBath = scenario(
         id: 'stk-1', code: 'STK-1', name: 'Stock water offtake, km 44.2', kind: 'other', ...withoutWater(onReach('ol-upper', 44.2, 'right')),
         actionValues: [{ value: 16e-6, basis: 'Cr(VI)', averagingS: HOUR_S, source: 'US EPA aquatic life, acute; no value for stock given' }],
       },
-      ...receptorsOf(OLLEMAR, 'chromium-vi'),
+      ...receptorsOn(LOW, 'chromium-vi'),
     ],
   },
 );
+
+// T0 is high water slack: the strongest ebb runs a quarter of a tide later.
+const ESTUARY = estuary({ name: 'Q50', source: 'Springs; high water at the bar 17:35' }, TIDE_S / 4);
 
 export const bargeHatch = scenario(
   'S09', 'Barge hatch in the estuary at high water, MCPA',
@@ -104,10 +108,9 @@ export const bargeHatch = scenario(
   {
     startAt: '2031-05-12T17:35:00-08:00', horizonS: 4 * TIDE_S, frameCount: 96,
     substance: substance('mcpa'),
-    // T0 is high water slack: the strongest ebb runs a quarter of a tide later.
-    water: withSprings(river('Q50', { source: 'Springs; high water at the bar 17:35' }), TIDE_S / 4),
+    water: ESTUARY,
     releases: [{ id: 'release-1', ...source('barge-berth'), timing: { kind: 'instantaneous' }, amount: { how: 'mass', massKg: { low: 10, likely: 25, high: 25 } }, evidence: 'One hatch opened; half of it may be left.' }],
-    receptors: receptorsOf(OLLEMAR, 'mcpa'),
+    receptors: receptorsOn(ESTUARY, 'mcpa'),
   },
 );
 

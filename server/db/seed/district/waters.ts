@@ -21,13 +21,15 @@ const tide = (majorMps: number, floodTowardDeg: number) => ({ kind: 'tide' as co
 const residual = (speedMps: number, towardDeg: number) => ({ kind: 'residual' as const, speedMps, towardDeg });
 /** The estuary as a channel: fresh water over a widening section. An estimate adds the tide of the day. */
 const estuaryReaches = () =>
-  estuaryStretches.map(({ id, fromKm, toKm, widthM, depthM }, i) => {
+  estuaryStretches.map(({ id, fromKm, toKm, widthM, depthM, springsMps }, i) => {
     const row = (dischargeM3s: number): Row => [dischargeM3s, widthM, depthM, dischargeM3s / (widthM * depthM)];
     return {
       ...reach(id, `Ollemar estuary, km ${fromKm} to ${toKm === 0 ? 'the bar' : toKm}`, 'OL', null, hydraulics(row(5.8), row(16.5), row(48)), { downstreamReachId: estuaryStretches[i + 1]?.id ?? null }),
       dispersionM2s: 80,
+      // H u* with u* a tenth of the strongest tidal current.
+      transverseM2s: Number((0.1 * depthM * springsMps).toPrecision(2)),
       tidal: true,
-      coefficientNote: 'Velocity is river flow over section, without the tide. Dispersion 80 m2/s averaged over the tide (invented; 30 to 300 is common, Fischer et al. 1979).',
+      coefficientNote: 'Velocity is river flow over section, without the tide. Dispersion 80 m2/s averaged over the tide (invented; 30 to 300 is common, Fischer et al. 1979). Across: H u* of the tide, u* a tenth of its speed (from memory: 0.4 to 1.6 H u* in estuaries).',
     };
   });
 
