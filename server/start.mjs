@@ -1,9 +1,8 @@
-/** `npm start`: builds kernels and client where their sources are newer than the last build, then runs the server. */
+/** `npm start`: builds the client when its sources are newer than the last build, then runs the server. */
 import { spawn, spawnSync } from 'node:child_process';
 import { existsSync, readdirSync, statSync } from 'node:fs';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { ensureKernels } from './solver/kernels/build.mjs';
 
 const root = join(dirname(fileURLToPath(import.meta.url)), '..');
 
@@ -13,7 +12,6 @@ function newest(path) {
   return Math.max(0, ...readdirSync(path).map((name) => newest(join(path, name))));
 }
 
-await ensureKernels();
 const built = join(root, 'dist', 'index.html');
 const sources = ['src', 'shared', 'index.html', 'vite.config.ts', 'package-lock.json'].map((name) => join(root, name));
 if (!existsSync(built) || Math.max(...sources.map(newest)) > statSync(built).mtimeMs) {
