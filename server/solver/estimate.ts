@@ -43,7 +43,7 @@ const PREVIEW_TOLERANCE = 1e-4;
  */
 export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options: SolveOptions = {}): EstimateResult {
   checkDoor(doc);
-  const input = runInput(doc, options);
+  const input = runInput(doc, options, sink);
   const solver = solverFor(doc);
   const field = solver.prepare(input);
   const frameTimesS = Array.from({ length: doc.frameCount }, (_, k) => (doc.horizonS * (k + 1)) / doc.frameCount);
@@ -87,7 +87,7 @@ export function solveEstimate(doc: EstimateDocument, sink: EstimateSink, options
   return result;
 }
 
-function runInput(doc: EstimateDocument, options: SolveOptions): RunInput {
+function runInput(doc: EstimateDocument, options: SolveOptions, sink: EstimateSink): RunInput {
   const releases = resolveReleases(doc);
   const isPreview = options.preview ?? false;
   const parts = lossParts(doc);
@@ -100,6 +100,7 @@ function runInput(doc: EstimateDocument, options: SolveOptions): RunInput {
     isPreview,
     tolerance: isPreview ? Math.max(doc.tolerance, PREVIEW_TOLERANCE) : doc.tolerance,
     meter: new Meter(options.isCancelled),
+    progress: isPreview ? undefined : (stage, done, of) => sink({ type: 'progress', stage, done, of }),
   };
 }
 

@@ -23,6 +23,8 @@ export type RunInput = {
   readonly isPreview: boolean;
   readonly tolerance: number;
   readonly meter: Meter;
+  /** How far a numeric solver has come; left out in previews. */
+  readonly progress?: ((stage: string, done: number, of: number) => void) | undefined;
 };
 
 /** A time around which a response may rise or fall within a few `scaleS`. */
