@@ -5,6 +5,7 @@ import { SolverInputError } from './errors';
 import { lengthText, sig } from './format';
 import { lossErrors } from './losses/loss-parts';
 import { networkErrors } from './network/network-door';
+import { gradientProblem } from './open/shear';
 import { isInPlaneArea, nearestShore, planeArea } from './open/area-mask';
 import { RECEPTOR_SNAP_M } from './open/open-solver';
 import { reachStates } from './river/reach-state';
@@ -36,7 +37,7 @@ function openErrors(doc: EstimateDocument, water: OpenWater): FieldError[] {
     if (off > RECEPTOR_SNAP_M)
       errors.push({ path: `receptors.${i}.position`, message: `${receptor.name} at ${positionText(receptor.position)} lies ${lengthText(off)} outside ${water.name}: move it onto the water, or choose the water it belongs to` });
   });
-  errors.push(...seriesErrors(doc, water), ...shoreErrors(doc, water));
+  errors.push(...seriesErrors(doc, water), ...shoreErrors(doc, water), ...formErrors(doc, water));
   return errors;
 }
 
@@ -52,6 +53,21 @@ function seriesErrors(doc: EstimateDocument, water: OpenWater): FieldError[] {
   });
 }
 
+/** Closed forms that cannot be joined, depths below the layer, and a path that does not cover its release. */
+function formErrors(doc: EstimateDocument, water: OpenWater): FieldError[] {
+  const profiles = doc.releases.map((release) => releaseProfile(release.timing));
+  const problem = gradientProblem(water, doc.horizonS - Math.min(0, ...profiles.map((profile) => profile.startS)));
+  const errors: FieldError[] = problem ? [{ path: `water.${problem.path}`, message: problem.message }] : [];
+  doc.releases.forEach(({ depthM, path, name }, i) => {
+    if (depthM !== undefined && depthM > water.mixingDepthM)
+      errors.push({ path: `releases.${i}.depthM`, message: `${name} at ${depthM} m lies below the mixing depth of ${water.mixingDepthM} m: raise it, or mix deeper` });
+    const { startS, stopS } = profiles[i]!;
+    if (path && (path[0]!.atS > startS || path[path.length - 1]!.atS < stopS))
+      errors.push({ path: `releases.${i}.path`, message: `The path runs from ${path[0]!.atS} s to ${path[path.length - 1]!.atS} s, the release from ${startS} s to ${stopS} s: let the path cover it` });
+  });
+  return errors;
+}
+
 function shoreErrors(doc: EstimateDocument, water: OpenWater): FieldError[] {
   const shore = water.straightShore;
   if (!shore) return [];
@@ -62,6 +78,15 @@ function shoreErrors(doc: EstimateDocument, water: OpenWater): FieldError[] {
     const [x, y] = toPlane(plane, release.position);
     return Math.sign(bx * y - by * x);
   });
+  if (shore.oppositeM !== undefined) {
+    const across = doc.releases.map((release) => {
+      const [x, y] = toPlane(plane, release.position);
+      return Math.abs(bx * y - by * x) / Math.hypot(bx, by);
+    });
+    const beyond = across.findIndex((off) => off > shore.oppositeM!);
+    if (beyond >= 0)
+      return [{ path: 'water.straightShore.oppositeM', message: `The opposite shore stands ${shore.oppositeM} m across, and ${doc.releases[beyond]!.name} lies ${lengthText(across[beyond]!)} off the first: move it farther` }];
+  }
   const odd = sides.findIndex((side) => side !== 0 && side !== sides[0]);
   return odd > 0 ? [{ path: `releases.${odd}.position`, message: 'This release lies on the other side of the straight shore from the first: move it, or leave the straight shore out' }] : [];
 }

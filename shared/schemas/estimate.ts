@@ -123,6 +123,21 @@ export const releaseSchema = z.object({
   /** Volume spilled, m3: caps the concentration at amount/volume. */
   spilledVolumeM3: positive('m3', 1e9).nullable().default(null),
   evidence: textSchema(2_000).default(''),
+  /** Below the surface, m; counts where mixing over depth is slow. */
+  depthM: notNegative('m', 12_000).optional(),
+  /** A release that moves, for example from a ship: straight and even between its rows. */
+  path: z
+    .array(z.object({ atS: z.number().min(-30 * 86_400).max(estimateLimits.horizonS), position: lonLatSchema }))
+    .min(2, 'A path needs at least two rows')
+    .max(500, 'At most 500 rows')
+    .superRefine((rows, ctx) => {
+      rows.forEach((row, i) => {
+        const before = rows[i - 1];
+        if (before && row.atS <= before.atS)
+          ctx.addIssue({ code: 'custom', path: [i, 'atS'], message: `Times must ascend: row ${i + 1} (${row.atS} s) is not after row ${i} (${before.atS} s)` });
+      });
+    })
+    .optional(),
 });
 export type Release = z.infer<typeof releaseSchema>;
 
@@ -269,6 +284,16 @@ export const mixingSchema = z.discriminatedUnion('kind', [
   }),
   /** Spread growing with the age of the cloud after Okubo 1971, times `varianceFactor`. */
   z.object({ kind: z.literal('okubo'), varianceFactor: positive('times', 100).default(1) }),
+  /**
+   * Diffusivity growing with the size l of the cloud, K = coefficient l^n: n 4/3 (Richardson 1926), 1.15 (Okubo 1971), or
+   * 1.1 in lakes (Lawrence et al. 1995). Null takes the published coefficient, and no upper limit.
+   */
+  z.object({
+    kind: z.literal('growing'),
+    law: z.enum(['four-thirds', 'okubo', 'lake']),
+    coefficient: positive('m^(2-n)/s', 1).nullable().default(null),
+    mostM2s: positive('m2/s', 1e5).nullable().default(null),
+  }),
 ]);
 export type Mixing = z.infer<typeof mixingSchema>;
 
@@ -306,6 +331,15 @@ export const boxSchema = z.object({
 });
 export type Box = z.infer<typeof boxSchema>;
 
+const gradientPart = z.number().min(-0.1, 'A velocity gradient lies between -0.1 and 0.1 1/s').max(0.1, 'A velocity gradient lies between -0.1 and 0.1 1/s').default(0);
+const velocityGradientSchema = z.object({
+  eastByEastPerS: gradientPart,
+  eastByNorthPerS: gradientPart,
+  northByEastPerS: gradientPart,
+  /** Where the stated currents hold; the first release where it is left out. */
+  at: lonLatSchema.optional(),
+});
+
 export const openWaterSchema = z.object({
   kind: z.literal('open'),
   registerId: z.string().max(64).nullable().default(null),
@@ -319,7 +353,12 @@ export const openWaterSchema = z.object({
   current: z.array(currentPartSchema).max(40).default([]),
   mixing: mixingSchema,
   /** Straight shore used by images: the line through two positions, water on the side of the release. */
-  straightShore: z.object({ from: lonLatSchema, to: lonLatSchema }).nullable().default(null),
+  /** `oppositeM`: a second shore, parallel, that far across the water. */
+  straightShore: z.object({ from: lonLatSchema, to: lonLatSchema, oppositeM: positive('m', 1e6).optional() }).nullable().default(null),
+  /** A current that changes evenly in space: east and north speed by distance east and north, 1/s. No divergence: north by north is minus east by east. */
+  velocityGradient: velocityGradientSchema.optional(),
+  /** Slow mixing over depth; without it the substance is mixed over the mixing depth at once. */
+  vertical: z.object({ kzM2s: positive('m2/s', 10, 1e-9) }).optional(),
   throughflows: z.array(throughflowSchema).max(60, 'At most 60 streams').optional(),
   openEdge: openEdgeSchema.optional(),
   /** Steady currents known at points, without the tide. */
@@ -415,6 +454,10 @@ export const estimateDocumentSchema = z
       doc.releases.forEach((release, i) => {
         if (!isInArea(release.position, area))
           ctx.addIssue({ code: 'custom', path: ['releases', i, 'position'], message: `Longitude ${release.position[0]}, latitude ${release.position[1]} lies on land or outside ${name}: move the release onto the water` });
+        release.path?.forEach(({ position }, k) => {
+          if (!isInArea(position, area))
+            ctx.addIssue({ code: 'custom', path: ['releases', i, 'path', k, 'position'], message: `Longitude ${position[0]}, latitude ${position[1]} lies on land or outside ${name}: lead the path over the water` });
+        });
       });
     }
     if (doc.water.kind === 'river') {

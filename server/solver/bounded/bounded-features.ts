@@ -2,7 +2,7 @@ import { toPlane } from '../../../shared/geo';
 import type { EstimateDocument, OpenWater } from '../../../shared/schemas/estimate';
 import { currentOf } from '../open/current';
 import { nearestShore, planeArea, type PlaneArea } from '../open/area-mask';
-import { okuboVarianceM2 } from '../physics/spreading';
+import { agedVariance } from '../open/spread';
 import { releaseProfile } from '../release-profile';
 
 /** An island nearer to the middle of a cloud than this many standard deviations splits or holds it. */
@@ -43,4 +43,4 @@ function hasIslandInTheWay(doc: EstimateDocument, water: OpenWater): boolean {
 }
 
 const varianceOf = ({ mixing }: OpenWater, ageS: number): number =>
-  mixing.kind === 'okubo' ? mixing.varianceFactor * okuboVarianceM2(ageS) : 2 * Math.max(mixing.alongM2s, mixing.acrossM2s) * ageS;
+  mixing.kind === 'constant' ? 2 * Math.max(mixing.alongM2s, mixing.acrossM2s) * ageS : agedVariance(mixing)!(ageS, 0);

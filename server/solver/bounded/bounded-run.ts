@@ -3,6 +3,7 @@ import { SolverDivergedError } from '../errors';
 import type { LossClock } from '../loss';
 import type { Meter } from '../meter';
 import type { ResolvedRelease } from '../release-profile';
+import { agedVariance } from '../open/spread';
 import { LAND } from './cell-grid';
 import { levelAt, type BoundedFlow } from './flow-modes';
 import { releaseCells } from './release-cells';
@@ -110,8 +111,9 @@ export class BoundedRun {
   }
 
   private coefficient(field: TracerField, fromS: number, toS: number): number {
-    const { mixing } = this.plan;
-    return mixing.kind === 'okubo' ? growingCoefficient(field.release.profile, mixing.varianceFactor, fromS, toS) : 1;
+    const varianceAt = agedVariance(this.plan.mixing);
+    const { profile, release } = field.release;
+    return varianceAt ? growingCoefficient(profile, (ageS) => varianceAt(ageS, release.initialRadiusM ** 2 / 4), fromS, toS) : 1;
   }
 
   private step(endS: number): void {

@@ -4,6 +4,7 @@ import { durationText, lengthText, sig } from '../format';
 import type { BoundedFacts, BoundedPlace } from './bounded-solver';
 import { nearestCell } from './cell-grid';
 import { velocityAt } from './flow-modes';
+import { spreadLine } from '../open/spread-working';
 
 /** Working common to all receptors: grid, current, streams, tide, spreading. */
 export function boundedRunWorking({ open, plan, figures }: BoundedFacts): WorkingLine[] {
@@ -28,16 +29,7 @@ export function boundedRunWorking({ open, plan, figures }: BoundedFacts): Workin
   if (plan.flow.modes.rise) lines.push(tideLine(plan));
   if (plan.flow.modes.fits.length > 0) lines.push(measuredLine(plan));
   lines.push(
-    water.mixing.kind === 'okubo'
-      ? { label: 'Spread', formula: 'K = ½ dσ²/dt, σ² = f · ½ · 0.0108 t^2.34 cm²', substituted: `f = ${sig(water.mixing.varianceFactor)}; the age is the mean of what has been released`, value: water.mixing.varianceFactor, unit: 'times', source: 'Okubo 1971' }
-      : {
-          label: 'Spread',
-          formula: 'K = R diag(K_L, K_T) Rᵀ as exchanges between cells',
-          substituted: `K_L = ${sig(water.mixing.alongM2s)} m²/s, K_T = ${sig(water.mixing.acrossM2s)} m²/s, ${water.mixing.turnsWithCurrent ? 'axes turning with the current of each cell' : `long axis toward ${sig(water.mixing.axisTowardDeg)}°`}`,
-          value: water.mixing.alongM2s,
-          unit: 'm²/s',
-          source: water.coefficientNote || 'stated in the water register',
-        },
+    spreadLine(water, { agedFormula: 'K = ½ dσ²/dt, σ² = f · ½ · 0.0108 t^2.34 cm²', agedNote: '; the age is the mean of what has been released', constantFormula: 'K = R diag(K_L, K_T) Rᵀ as exchanges between cells', turning: 'axes turning with the current of each cell' }),
   );
   return lines;
 }

@@ -1,5 +1,4 @@
 import type { Mixing } from '../../../shared/schemas/estimate';
-import { okuboVarianceM2 } from '../physics/spreading';
 import type { ReleaseProfile } from '../release-profile';
 import type { BoundedWater } from './bounded-water';
 import { LAND } from './cell-grid';
@@ -31,7 +30,7 @@ export class Spreading {
     const turns = mixing.kind === 'constant' && mixing.turnsWithCurrent && mixing.alongM2s !== mixing.acrossM2s;
     // 255: not yet set.
     this.directions = turns ? new Uint8Array(grid.isWater.length).fill(255) : null;
-    if (mixing.kind === 'okubo') this.setUniform([{ a: 1, b: 0, weight: 1 }, { a: 0, b: 1, weight: 1 }]);
+    if (mixing.kind !== 'constant') this.setUniform([{ a: 1, b: 0, weight: 1 }, { a: 0, b: 1, weight: 1 }]);
     else if (turns) for (let n = 0; n < DIRECTIONS; n++) this.shares.push(tensorShares(mixing.alongM2s, mixing.acrossM2s, (Math.PI * n) / DIRECTIONS));
     else this.setUniform(tensorShares(mixing.alongM2s, mixing.acrossM2s, Math.PI / 2 - mixing.axisTowardDeg * RAD));
   }
@@ -104,11 +103,11 @@ function tensorShares(alongM2s: number, acrossM2s: number, angle: number): Latti
 const AGES = 8;
 
 /**
- * Mean coefficient over a step of matter whose spread grows with its age after Okubo 1971, m2/s: half the growth of the
- * variance, averaged over what has been released by then in equal shares.
+ * Mean coefficient over a step of matter whose spread grows with its age or size, m2/s: half the growth of the variance,
+ * averaged over what has been released by then in equal shares.
  */
-export function growingCoefficient(profile: ReleaseProfile, varianceFactor: number, fromS: number, toS: number): number {
-  const gain = (releasedS: number): number => (varianceFactor * (okuboVarianceM2(Math.max(0, toS - releasedS)) - okuboVarianceM2(Math.max(0, fromS - releasedS)))) / (2 * (toS - fromS));
+export function growingCoefficient(profile: ReleaseProfile, varianceAt: (ageS: number) => number, fromS: number, toS: number): number {
+  const gain = (releasedS: number): number => (varianceAt(Math.max(0, toS - releasedS)) - varianceAt(Math.max(0, fromS - releasedS))) / (2 * (toS - fromS));
   if (profile.isInstant) return gain(profile.startS);
   const lastS = Math.min(toS, profile.stopS);
   let sum = 0;

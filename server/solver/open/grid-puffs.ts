@@ -1,5 +1,6 @@
 import { gaussLegendre } from '../math/quadrature';
-import { Puff, type OpenMotion, type OpenSource } from './puffs';
+import { motionFor, Puff, type OpenMotion, type OpenSource } from './puffs';
+import { alongAcross, drawnImages, leftOf } from './shores';
 
 /** Puffs whose sum stands for a release at one time: centre (m), covariance (m2), and kg/m that is mass over depth. */
 export type PuffList = { x: number[]; y: number[]; sxx: number[]; sxy: number[]; syy: number[]; amount: number[] };
@@ -16,7 +17,8 @@ const MAX_STRETCHES = 60;
  * in units of the puff's own size, with eight Gauss-Legendre points each; sizes below `smallestSigmaM` count as that,
  * because a grid cannot show them. The amounts are scaled so that they add up to what has been released.
  */
-export function gridPuffs(motion: OpenMotion, source: OpenSource, tS: number, weight: number, smallestSigmaM: number, withLoss: boolean): PuffList {
+export function gridPuffs(anyMotion: OpenMotion, source: OpenSource, tS: number, weight: number, smallestSigmaM: number, withLoss: boolean): PuffList {
+  const motion = motionFor(anyMotion, source);
   const list = emptyList();
   const { profile } = source.release;
   if (tS <= profile.startS || weight === 0) return list;
@@ -24,13 +26,11 @@ export function gridPuffs(motion: OpenMotion, source: OpenSource, tS: number, we
   const add = (releasedS: number, share: number): void => {
     puff.seen(releasedS, tS, withLoss);
     const [sxx, sxy, syy] = puff.covariance;
-    for (const origin of source.origins) {
-      list.x.push(origin.x + puff.shiftX);
-      list.y.push(origin.y + puff.shiftY);
-      list.sxx.push(sxx!);
-      list.sxy.push(sxy!);
-      list.syy.push(syy!);
-      list.amount.push((share * weight * puff.survival) / motion.mixingDepthM);
+    const amount = (share * weight * puff.survival) / motion.mixingDepthM;
+    if (typeof motion.shore?.oppositeM === 'number') return addBetweenShores(list, motion, puff, amount);
+    for (let image = 0; image < puff.images; image++) {
+      const { x, y } = puff.centre(image);
+      push(list, x, y, sxx!, sxy!, syy!, amount);
     }
   };
   if (profile.isInstant) {
@@ -58,6 +58,25 @@ export function gridPuffs(motion: OpenMotion, source: OpenSource, tS: number, we
   return list;
 }
 
+const push = (list: PuffList, x: number, y: number, sxx: number, sxy: number, syy: number, amount: number): void => {
+  list.x.push(x);
+  list.y.push(y);
+  list.sxx.push(sxx);
+  list.sxy.push(sxy);
+  list.syy.push(syy);
+  list.amount.push(amount);
+};
+
+function addBetweenShores(list: PuffList, { shore }: OpenMotion, puff: Puff, amount: number): void {
+  const { ex, ey, oppositeM } = shore!;
+  const { along, across } = alongAcross(shore!, puff.covariance);
+  const { x, y } = puff.centre(0);
+  const offM = leftOf(shore!, x, y);
+  const drawn = drawnImages(oppositeM!, offM, across);
+  const [sxx, sxy, syy] = [along * ex * ex + drawn.acrossM2 * ey * ey, (along - drawn.acrossM2) * ex * ey, along * ey * ey + drawn.acrossM2 * ex * ex];
+  for (const imageM of drawn.offsM) push(list, x - (imageM - offM) * ey, y + (imageM - offM) * ex, sxx, sxy, syy, amount * drawn.factor);
+}
+
 /** Release times between which a puff travels `STRETCH` of its own standard deviations or doubles its size. */
 function stretchEdges(motion: OpenMotion, source: OpenSource, tS: number, smallestSigmaM: number): number[] {
   const { profile } = source.release;
@@ -70,7 +89,9 @@ function stretchEdges(motion: OpenMotion, source: OpenSource, tS: number, smalle
     const at = profile.startS + ((stop - profile.startS) * (i + 0.5)) / steps;
     const h = (stop - profile.startS) / steps;
     motion.current.velocity(at, velocity);
-    const travel = (Math.hypot(velocity[0]!, velocity[1]!) * h) / size(tS - at);
+    const { x, y } = source.origins[0]!;
+    const speed = (motion.shear ? motion.shear.speedBound(tS - at, x, y) : Math.hypot(velocity[0]!, velocity[1]!)) + (source.track?.maxSpeedMps ?? 0);
+    const travel = (speed * h) / size(tS - at);
     const growth = Math.log(size(tS - at + h / 2) / size(tS - at - h / 2)) * STRETCH;
     sums[i + 1] = sums[i]! + travel + growth / Math.LN2;
   }

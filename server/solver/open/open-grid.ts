@@ -6,6 +6,7 @@ import { clearLand, type PlaneArea } from './area-mask';
 import { gridPuffs } from './grid-puffs';
 import { addPuffs } from './puff-kernel';
 import { Puff, type OpenMotion, type OpenSource } from './puffs';
+import { alongAcross, leftOf } from './shores';
 
 export type Box = { x0: number; y0: number; x1: number; y1: number; sigmaM: number };
 
@@ -36,15 +37,33 @@ export function cloudBox(motion: OpenMotion, sources: readonly OpenSource[], wei
       puff.seen(profile.startS + (samples === 1 ? 0 : ((last - profile.startS) * k) / (samples - 1)), tS, false);
       const [sxx, , syy] = puff.covariance;
       box.sigmaM = Math.min(box.sigmaM, Math.sqrt(Math.min(sxx!, syy!)));
-      for (const origin of source.origins) {
-        box.x0 = Math.min(box.x0, origin.x + puff.shiftX - 5 * Math.sqrt(sxx!));
-        box.x1 = Math.max(box.x1, origin.x + puff.shiftX + 5 * Math.sqrt(sxx!));
-        box.y0 = Math.min(box.y0, origin.y + puff.shiftY - 5 * Math.sqrt(syy!));
-        box.y1 = Math.max(box.y1, origin.y + puff.shiftY + 5 * Math.sqrt(syy!));
+      if (typeof motion.shore?.oppositeM === 'number') {
+        widenBetweenShores(box, motion, puff);
+        continue;
+      }
+      for (let image = 0; image < puff.images; image++) {
+        const { x, y } = puff.centre(image);
+        widen(box, x, y, 5 * Math.sqrt(sxx!), 5 * Math.sqrt(syy!));
       }
     }
   }
   return box.x1 > box.x0 ? box : null;
+}
+
+function widen(box: Box, x: number, y: number, halfX: number, halfY: number): void {
+  box.x0 = Math.min(box.x0, x - halfX);
+  box.x1 = Math.max(box.x1, x + halfX);
+  box.y0 = Math.min(box.y0, y - halfY);
+  box.y1 = Math.max(box.y1, y + halfY);
+}
+
+/** Five standard deviations along two shores, from one to the other. */
+function widenBetweenShores(box: Box, { shore }: OpenMotion, puff: Puff): void {
+  const { ex, ey, oppositeM } = shore!;
+  const reach = 5 * Math.sqrt(alongAcross(shore!, puff.covariance).along);
+  const { x, y } = puff.centre(0);
+  const off = leftOf(shore!, x, y);
+  for (const along of [-reach, reach]) for (const across of [-off, oppositeM! - off]) widen(box, x + along * ex - across * ey, y + along * ey + across * ex, 0, 0);
 }
 
 export const clipBox = (box: Box, area: PlaneArea): Box | null => {

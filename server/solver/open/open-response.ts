@@ -2,7 +2,9 @@ import type { Meter } from '../meter';
 import { AdaptiveQuadrature, type Triage } from '../math/quadrature';
 import { findMaximum } from '../math/roots';
 import type { Feature, UnitResponse } from '../types';
-import { Puff, type OpenMotion, type OpenSource } from './puffs';
+import type { NodeResponses } from './node-response';
+import { motionFor, Puff, type OpenMotion, type OpenSource } from './puffs';
+import type { DepthFactor } from './vertical';
 
 /** Farther than this many standard deviations a puff adds less than 1e-14 of its peak and is left out. */
 const FAR_SIGMA = 8;
@@ -14,11 +16,13 @@ const takeSigma = (tolerance: number): number => (tolerance < 1e-5 ? 4 : 6);
 /**
  * Concentration at a place against time per kilogram of one release: the puff solution, or for a release that lasts
  * its integral over the time of release, C(t) = integral m'(s) g(x, t; s) ds, by adaptive quadrature to `tolerance`.
- * Stretches of release time whose puffs cannot reach the place are left out by a bound on their motion.
+ * Stretches of release time whose puffs cannot reach the place are left out by a bound on their motion. With `nodes`
+ * a fixed rule takes the place of the adaptive one where it is fine enough.
  */
-export function openResponse(motion: OpenMotion, source: OpenSource, x: number, y: number, horizonS: number, tolerance: number, meter: Meter): UnitResponse {
+export function openResponse(anyMotion: OpenMotion, source: OpenSource, x: number, y: number, horizonS: number, tolerance: number, meter: Meter, depth: DepthFactor | null = null, nodes: NodeResponses | null = null): UnitResponse {
   const { profile, capPerKg } = source.release;
-  const puff = new Puff(motion, source);
+  const motion = motionFor(anyMotion, source);
+  const puff = new Puff(motion, source, depth);
   const features = passages(motion, source, x, y, horizonS);
   if (profile.isInstant) {
     return {
@@ -31,6 +35,8 @@ export function openResponse(motion: OpenMotion, source: OpenSource, x: number, 
       },
     };
   }
+  const quick = depth ? null : nodes?.at(x, y);
+  if (quick) return { features, at: (tS, withLoss) => Math.min(capPerKg, quick(tS, withLoss)) };
   const quadrature = new AdaptiveQuadrature(meter);
   const triageAt = triageFor(motion, source, puff, x, y, takeSigma(tolerance));
   const knots = knotsOf(motion, source, horizonS, tolerance);
@@ -57,30 +63,32 @@ function knotsOf(motion: OpenMotion, source: OpenSource, horizonS: number, toler
   const { startS, stopS, knotsS } = source.release.profile;
   const inside = motion.current.kinksS.filter((t) => t > startS && t < stopS);
   const rate = knotsS.length > MANY_KNOTS && tolerance >= 1e-5 ? [startS, stopS] : knotsS;
-  return [...rate, ...motion.loss.switches(startS, Math.min(stopS, horizonS)), ...(inside.length > MANY_KNOTS ? [] : inside)].sort((a, b) => a - b);
+  const track = (source.track?.knotsS ?? []).filter((t) => t > startS && t < stopS);
+  return [...rate, ...track, ...motion.loss.switches(startS, Math.min(stopS, horizonS)), ...(inside.length > MANY_KNOTS ? [] : inside)].sort((a, b) => a - b);
 }
 
 /** Bounds how near the puffs released between a and b can come, and how much they differ. */
 function triageFor(motion: OpenMotion, source: OpenSource, puff: Puff, x: number, y: number, take: number): (tS: number) => Triage {
   const { spread, current } = motion;
   const start = source.startVarianceM2;
+  const trackMps = source.track?.maxSpeedMps ?? 0;
+  const { x: x0, y: y0 } = source.origins[0]!;
   const velocity = new Float64Array(2);
   return (tS) => (a, b) => {
     // Over the stretch the speed differs from that in its middle by at most half its length times the acceleration.
     current.velocity((a + b) / 2, velocity);
-    const travelled = Math.min(current.maxSpeedMps, Math.hypot(velocity[0]!, velocity[1]!) + (current.maxAccelerationMps2 * (b - a)) / 2) * (b - a);
+    const carried = motion.shear ? motion.shear.speedBound(tS - a, x0, y0) : Math.min(current.maxSpeedMps, Math.hypot(velocity[0]!, velocity[1]!) + (current.maxAccelerationMps2 * (b - a)) / 2);
+    const travelled = (carried + trackMps) * (b - a);
     const widest = Math.sqrt(start + spread.largest(tS - a));
     puff.seen((a + b) / 2, tS, false);
-    let nearest = Infinity;
-    for (const origin of source.origins) nearest = Math.min(nearest, Math.hypot(x - origin.x - puff.shiftX, y - origin.y - puff.shiftY));
-    if (nearest - travelled / 2 > FAR_SIGMA * widest) return 'skip';
+    if (puff.nearestM(x, y) - travelled / 2 > FAR_SIGMA * widest) return 'skip';
     const narrowest = Math.sqrt(start + spread.smallest(tS - b));
     const growth = Math.sqrt(start + spread.smallest(tS - a)) / narrowest;
     const isNarrow = travelled <= take * narrowest && growth <= MOST_GROWTH;
     if (!isNarrow) return b - a < 1e-6 ? 'take' : 'split';
     // In standard deviations of the puff in the middle: tells more than metres where the puffs are long.
     let least = Infinity;
-    for (let origin = 0; origin < source.origins.length; origin++) least = Math.min(least, puff.distance2(x, y, origin));
+    for (let image = 0; image < puff.images; image++) least = Math.min(least, puff.distance2(x, y, image));
     return Math.sqrt(least) / growth - travelled / (2 * narrowest) > FAR_SIGMA ? 'skip' : 'take';
   };
 }

@@ -5,22 +5,27 @@ import { openReceptorChecks, openRunChecks } from '../checks/open-checks';
 import type { LonLat } from '../../../shared/schemas/basics';
 import type { Books, GriddedField, PreparedField, ReceptorSite, RunInput, Solver } from '../types';
 import type { Weights } from '../release-profile';
+import { massBetweenShores } from './channel-books';
 import { isInPlaneArea, nearestShore, planeArea, clearLand, type PlaneArea } from './area-mask';
 import { alongShore, currentOf, type Current } from './current';
 import { addField, cloudBox, envelopesOf, fieldAt, gridFor, type OpenGridding } from './open-grid';
 import { openResponse } from './open-response';
+import { NodeResponses } from './node-response';
 import { openReceptorWorking, openRunWorking } from './open-working';
 import type { OpenMotion, OpenSource } from './puffs';
 import { gridPuffs } from './grid-puffs';
+import { gradientOf, shearOf, spreadInShear } from './shear';
+import { mirrored, shoreFrame, type ShoreFrame } from './shores';
 import { spreadOf } from './spread';
+import { trackOf } from './track';
+import { depthFactor } from './vertical';
 
 /** A receptor no farther than this outside the water is taken as being at its edge, m. */
 export const RECEPTOR_SNAP_M = 300;
+const TRACK_SAMPLES = 400;
 
 /** Closed-form normal clouds in open water: lakes, harbours, estuaries and coasts with a current uniform in space. */
 export const openWaterSolver: Solver = { name: 'open water, closed form', prepare: prepareOpenWater };
-
-export type ShoreFrame = { ex: number; ey: number; x: number; y: number };
 
 /** All that the checks and the working of open water read. */
 export type OpenFacts = {
@@ -52,8 +57,9 @@ function prepareOpenWater(input: RunInput): PreparedField {
     meter: input.meter,
   };
   const envelopes = (untilS: readonly number[], weights: Weights): GriddedField[] => envelopesOf(gridding, weights, untilS, input.isPreview ? 60 : 300);
+  const nodes = sources.map((source) => (input.isPreview && NodeResponses.fits(motion, source) ? new NodeResponses(motion, source, doc.horizonS, input.meter) : null));
   return {
-    receptor: (_index, receptor) => siteOf(facts, receptor, (position) => toPlane(plane, position)),
+    receptor: (_index, receptor) => siteOf(facts, nodes, receptor, (position) => toPlane(plane, position)),
     gridAt: (tS, weights) => fieldAt(gridding, weights, tS),
     envelope: (timesS, weights) => envelopes(timesS.slice(-1), weights)[0]!,
     envelopes,
@@ -71,29 +77,27 @@ export function openFacts(input: RunInput): OpenFacts {
   const [originLon, originLat] = doc.releases[0]!.position;
   const plane = { originLon, originLat };
   const area = planeArea(water.area, originLon, originLat);
-  const shore = water.straightShore ? shoreFrame(toPlane(plane, water.straightShore.from), toPlane(plane, water.straightShore.to)) : null;
+  const starts = input.releases.map(({ release }) => toPlane(plane, release.path?.[0]?.position ?? release.position));
+  const drawn = water.straightShore;
+  const shore = drawn ? shoreFrame(toPlane(plane, drawn.from), toPlane(plane, drawn.to), ...starts[0]!, drawn.oppositeM ?? null) : null;
   const freeCurrent = currentOf(water.current);
   const current = shore ? alongShore(freeCurrent, shore.ex, shore.ey) : freeCurrent;
   const fromS = Math.min(0, ...input.releases.map((release) => release.profile.startS));
-  const motion: OpenMotion = { current, spread: spreadOf(water.mixing, current, fromS, doc.horizonS, shore), loss: input.loss, mixingDepthM: water.mixingDepthM };
-  const sources = input.releases.map((release): OpenSource => {
-    const [x, y] = toPlane(plane, release.release.position);
-    const at = { x, y };
-    return { release, origins: shore ? [at, mirrored(at, shore)] : [at], startVarianceM2: release.release.initialRadiusM ** 2 / 4 };
+  const base = { current, loss: input.loss, mixingDepthM: water.mixingDepthM, shore };
+  const gradient = gradientOf(water);
+  const motion: OpenMotion = gradient
+    ? { ...base, spread: spreadInShear(water.mixing, gradient, doc.horizonS - fromS), shear: shearOf(gradient, current, fromS, doc.horizonS, placeOf(toPlane(plane, water.velocityGradient?.at ?? doc.releases[0]!.position))) }
+    : { ...base, spread: spreadOf(water.mixing, current, fromS, doc.horizonS, shore) };
+  const sources = input.releases.map((release, index): OpenSource => {
+    const at = placeOf(starts[index]!);
+    const { path, initialRadiusM } = release.release;
+    const track = path && trackOf(path.map((row) => ({ atS: row.atS, ...placeOf(toPlane(plane, row.position)) })));
+    return { release, origins: shore && shore.oppositeM === null ? [at, mirrored(at, shore)] : [at], startVarianceM2: initialRadiusM ** 2 / 4, ...(track ? { track } : {}) };
   });
   return { input, water, motion, freeCurrent, shore, sources, area };
 }
 
-const shoreFrame = ([ax, ay]: [number, number], [bx, by]: [number, number]): ShoreFrame => {
-  const length = Math.hypot(bx - ax, by - ay);
-  return { ex: (bx - ax) / length, ey: (by - ay) / length, x: ax, y: ay };
-};
-
-/** Mirror image of a place beyond the shore's line. */
-const mirrored = (at: { x: number; y: number }, shore: ShoreFrame): { x: number; y: number } => {
-  const off = (at.x - shore.x) * -shore.ey + (at.y - shore.y) * shore.ex;
-  return { x: at.x + 2 * off * shore.ey, y: at.y - 2 * off * shore.ex };
-};
+const placeOf = ([x, y]: [number, number]): { x: number; y: number } => ({ x, y });
 
 /** A place as it stands on the water: itself, or the nearest point of the outline. */
 export const onWater = (area: PlaneArea, x: number, y: number): { x: number; y: number; movedM: number } => {
@@ -102,11 +106,24 @@ export const onWater = (area: PlaneArea, x: number, y: number): { x: number; y: 
   return { x: shore.x, y: shore.y, movedM: shore.distanceM };
 };
 
-function siteOf(facts: OpenFacts, receptor: EstimateReceptor, toXy: (position: LonLat) => [number, number]): ReceptorSite {
+/** Distance to the start of a release, or to the nearest place on the way of one that moves, m. */
+function nearestStartM(source: OpenSource, x: number, y: number): number {
+  if (!source.track) return Math.hypot(x - source.origins[0]!.x, y - source.origins[0]!.y);
+  const { startS, stopS } = source.release.profile;
+  const at = new Float64Array(2);
+  let least = Infinity;
+  for (let k = 0; k <= TRACK_SAMPLES; k++) {
+    source.track.place(startS + ((stopS - startS) * k) / TRACK_SAMPLES, at);
+    least = Math.min(least, Math.hypot(x - at[0]!, y - at[1]!));
+  }
+  return least;
+}
+
+function siteOf(facts: OpenFacts, nodes: readonly (NodeResponses | null)[], receptor: EstimateReceptor, toXy: (position: LonLat) => [number, number]): ReceptorSite {
   const { input, motion, sources, area } = facts;
   const at = onWater(area, ...toXy(receptor.position));
-  const distanceM = Math.min(...sources.map((source) => Math.hypot(at.x - source.origins[0]!.x, at.y - source.origins[0]!.y)));
-  const responses = sources.map((source) => openResponse(motion, source, at.x, at.y, input.doc.horizonS, input.tolerance, input.meter));
+  const distanceM = Math.min(...sources.map((source) => nearestStartM(source, at.x, at.y)));
+  const responses = sources.map((source, i) => openResponse(motion, source, at.x, at.y, input.doc.horizonS, input.tolerance, input.meter, depthFactor(facts.water, source.release.release.depthM ?? 0, receptor.depthM), nodes[i]));
   return {
     distanceM,
     responses,
@@ -118,25 +135,32 @@ function siteOf(facts: OpenFacts, receptor: EstimateReceptor, toXy: (position: L
 
 /** Books by summing a grid over the whole cloud: in the water, lost, and the part that the closed form lays over land. */
 function booksAt(gridding: OpenGridding, weights: Weights, tS: number): Books {
-  const { motion, sources, area } = gridding;
+  const { motion, sources } = gridding;
   const released = sources.reduce((sum, source) => sum + weights[source.release.index]! * source.release.profile.released(tS), 0);
-  const box = cloudBox(motion, sources, weights, tS);
-  if (!box) return { released: 0, inWater: 0, lost: 0, left: 0 };
+  if (released === 0) return { released: 0, inWater: 0, lost: 0, left: 0 };
+  const { all, overLand } = cloudMass(gridding, weights, tS);
+  const surviving = gridding.withLoss
+    ? sources.reduce((sum, source) => {
+        const alone = gridPuffs({ ...motion, shore: null }, { ...source, origins: source.origins.slice(0, 1) }, tS, weights[source.release.index]!, 1, true);
+        return sum + alone.amount.reduce((part, amount) => part + amount * motion.mixingDepthM, 0);
+      }, 0)
+    : released;
+  return { released, inWater: all - overLand, lost: released - surviving, left: overLand };
+}
+
+/** The amount of all clouds and the part laid over land, summed over a grid. */
+function cloudMass(gridding: OpenGridding, weights: Weights, tS: number): { all: number; overLand: number } {
+  const { motion, sources, area } = gridding;
+  const uncapped: OpenGridding = { ...gridding, sources: sources.map((source) => ({ ...source, release: { ...source.release, capPerKg: Infinity } })) };
+  if (typeof motion.shore?.oppositeM === 'number') return massBetweenShores(uncapped, motion.shore, weights, tS);
+  const box = cloudBox(motion, sources, weights, tS)!;
   const grid = gridFor(box, gridding, 160);
   const values = new Float64Array(grid.nx * grid.ny);
-  addField(values, grid, { ...gridding, sources: sources.map((source) => ({ ...source, release: { ...source.release, capPerKg: Infinity } })) }, weights, tS);
+  addField(values, grid, uncapped, weights, tS);
   const volume = grid.dxM * grid.dyM * motion.mixingDepthM;
   const all = values.reduce((sum, value) => sum + value, 0) * volume;
   const removed = clearLand(values, grid, area) * volume;
   // Behind a straight shore the grid holds the cloud twice: its mirror half lies over land by construction.
   const isMirrored = sources[0]!.origins.length > 1;
-  const cloud = isMirrored ? all / 2 : all;
-  const overLand = Math.max(0, isMirrored ? removed - all / 2 : removed);
-  const surviving = gridding.withLoss
-    ? sources.reduce((sum, source) => {
-        const puffs = gridPuffs(motion, source, tS, weights[source.release.index]!, 0.7 * Math.max(grid.dxM, grid.dyM), true);
-        return sum + puffs.amount.reduce((part, amount) => part + amount * motion.mixingDepthM, 0) / source.origins.length;
-      }, 0)
-    : released;
-  return { released, inWater: cloud - overLand, lost: released - surviving, left: overLand };
+  return isMirrored ? { all: all / 2, overLand: Math.max(0, removed - all / 2) } : { all, overLand: removed };
 }

@@ -4,6 +4,7 @@ import { durationText, lengthText, sig } from '../format';
 import { findMaximum } from '../math/roots';
 import type { OpenFacts } from './open-solver';
 import { Puff, type OpenSource } from './puffs';
+import { spreadLine } from './spread-working';
 
 /** Working common to all receptors: depth, current, spread, shore. */
 export function openRunWorking({ water, input, motion, shore }: OpenFacts): WorkingLine[] {
@@ -19,18 +20,23 @@ export function openRunWorking({ water, input, motion, shore }: OpenFacts): Work
       unit: 'm',
       source: water.current.map((part) => part.kind).join(' + ') || 'no current given',
     },
-    water.mixing.kind === 'okubo'
-      ? { label: 'Spread', formula: 'σ² per axis = f · ½ · 0.0108 t^2.34 cm²', substituted: `f = ${sig(water.mixing.varianceFactor)}`, value: water.mixing.varianceFactor, unit: 'times', source: 'Okubo 1971' }
-      : {
-          label: 'Spread',
-          formula: 'Σ = Σ₀ + 2 ∫ R diag(K_L, K_T) Rᵀ dt',
-          substituted: `K_L = ${sig(water.mixing.alongM2s)} m²/s, K_T = ${sig(water.mixing.acrossM2s)} m²/s, ${water.mixing.turnsWithCurrent ? 'axes turning with the current' : `long axis toward ${sig(water.mixing.axisTowardDeg)}°`}`,
-          value: water.mixing.alongM2s,
-          unit: 'm²/s',
-          source: water.coefficientNote || 'stated in the water register',
-        },
+    spreadLine(water, { agedFormula: 'σ² per axis = f · ½ · 0.0108 t^2.34 cm²', agedNote: '', constantFormula: 'Σ = Σ₀ + 2 ∫ R diag(K_L, K_T) Rᵀ dt', turning: 'axes turning with the current' }),
   ];
-  if (shore) lines.push({ label: 'Straight shore', formula: 'C = C(source) + C(mirror source)', substituted: 'no flow through the line; current along it only', value: null, unit: '', source: 'method of images, Fischer et al. 1979' });
+  if (shore)
+    lines.push({
+      label: shore.oppositeM === null ? 'Straight shore' : 'Two straight shores',
+      formula: shore.oppositeM === null ? 'C = C(source) + C(mirror source)' : 'images below σ²/(2W²) = 0.16, cosine series above',
+      substituted: `no flow through ${shore.oppositeM === null ? 'the line' : `either line, ${sig(shore.oppositeM)} m apart`}; current along it only`,
+      value: shore.oppositeM,
+      unit: shore.oppositeM === null ? '' : 'm',
+      source: 'method of images, Fischer et al. 1979',
+    });
+  if (motion.shear) {
+    const { ux, uy, vx } = motion.shear.gradient;
+    lines.push({ label: 'Velocity gradient', formula: 'dμ/dt = u₀ + G μ, dΣ/dt = G Σ + Σ Gᵀ + 2 K', substituted: `G = [${sig(ux)} ${sig(uy)}; ${sig(vx)} ${sig(-ux)}] 1/s`, value: null, unit: '1/s', source: 'Okubo & Carter 1966' });
+  }
+  if (water.vertical)
+    lines.push({ label: 'Mixing over depth', formula: 'r(z/h; z₀/h, τ), τ = K_z t / h²', substituted: `K_z = ${sig(water.vertical.kzM2s)} m²/s, h = ${sig(water.mixingDepthM)} m; even to 4 % after 0.4 h²/K_z = ${durationText((0.4 * water.mixingDepthM ** 2) / water.vertical.kzM2s)}; receptors without a depth read the mean`, value: water.vertical.kzM2s, unit: 'm²/s', source: 'images and cosine series, Fischer et al. 1979' });
   return lines;
 }
 

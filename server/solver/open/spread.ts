@@ -1,5 +1,6 @@
 import type { Mixing } from '../../../shared/schemas/estimate';
 import { IntegralTable } from '../math/function-table';
+import { fourThirdsLaw, grownVarianceM2, lakeSizeLaw, okuboSizeLaw, type GrowthLaw } from '../physics/growing-spread';
 import { okuboVarianceM2 } from '../physics/spreading';
 import type { Current } from './current';
 
@@ -9,6 +10,10 @@ export type Spread = {
   /** Largest and smallest variance along any axis after the given age, m2; bounds for the adaptive integral. */
   largest(ageS: number): number;
   smallest(ageS: number): number;
+  /** Where `gained` follows from the age and two running sums: the sums up to a time, and the covariance from their growth. */
+  readonly running?: { at(tS: number, out: Float64Array): void; gained(ageS: number, first: number, second: number, out: Float64Array): void };
+  /** The same for a first cloud of that variance along each axis, m2, where growth depends on it. */
+  from?(startVarianceM2: number): Spread;
 };
 
 /** Fixed-axes share of the along-axis direction: cos 2a and sin 2a, a anticlockwise from east. */
@@ -28,16 +33,21 @@ export function turningSpread(alongM2s: number, acrossM2s: number, direction: Ax
   const difference = alongM2s - acrossM2s;
   const start = new Float64Array(2);
   const end = new Float64Array(2);
+  let endS = Number.NaN;
+  const gained = (ageS: number, cos: number, sin: number, out: Float64Array): void => {
+    out[0] = sum * ageS + difference * cos;
+    out[1] = difference * sin;
+    out[2] = sum * ageS - difference * cos;
+  };
   return {
     gained(releasedS, atS, out) {
       table.at(releasedS, start);
-      table.at(atS, end);
-      const age = atS - releasedS;
-      const cos = difference * (end[0]! - start[0]!);
-      out[0] = sum * age + cos;
-      out[1] = difference * (end[1]! - start[1]!);
-      out[2] = sum * age - cos;
+      // An integral over release times asks for one moment many times.
+      if (atS !== endS) table.at(atS, end);
+      endS = atS;
+      gained(atS - releasedS, end[0]! - start[0]!, end[1]! - start[1]!, out);
     },
+    running: { at: (tS, out) => table.at(tS, out), gained },
     ...boundsOf(alongM2s, acrossM2s),
   };
 }
@@ -73,6 +83,42 @@ export function okuboSpread(varianceFactor: number): Spread {
   };
 }
 
+/** Spread that grows with the size of the cloud alike in all directions. */
+export function sizeSpread(law: GrowthLaw, startVarianceM2 = 0): Spread {
+  const variance = (ageS: number): number => grownVarianceM2(law, startVarianceM2, ageS) - startVarianceM2;
+  return {
+    gained(releasedS, atS, out) {
+      const v = variance(atS - releasedS);
+      out[0] = v;
+      out[1] = 0;
+      out[2] = v;
+    },
+    largest: variance,
+    smallest: variance,
+    from: (start) => sizeSpread(law, start),
+  };
+}
+
+/** Tensor of constant mixing about its stated axis, m2/s: xx, xy, yy. */
+export function mixingTensor(mixing: Mixing): [number, number, number] {
+  if (mixing.kind !== 'constant') return [0, 0, 0];
+  const axis = doubled(Math.sin(mixing.axisTowardDeg * RAD), Math.cos(mixing.axisTowardDeg * RAD));
+  const [mean, half] = [(mixing.alongM2s + mixing.acrossM2s) / 2, (mixing.alongM2s - mixing.acrossM2s) / 2];
+  return [mean + half * axis.cos, half * axis.sin, mean - half * axis.cos];
+}
+
+type Growing = Extract<Mixing, { kind: 'growing' }>;
+const sizeLaws = { 'four-thirds': fourThirdsLaw, okubo: okuboSizeLaw, lake: lakeSizeLaw };
+
+export const growthLawOf = ({ law, coefficient, mostM2s }: Growing): GrowthLaw => sizeLaws[law](coefficient ?? undefined, mostM2s ?? undefined);
+
+/** Variance along each axis at an age, m2, where mixing grows alike in all directions; null where it is constant. */
+export function agedVariance(mixing: Mixing): ((ageS: number, startM2: number) => number) | null {
+  if (mixing.kind === 'okubo') return (ageS, startM2) => startM2 + mixing.varianceFactor * okuboVarianceM2(ageS);
+  if (mixing.kind === 'growing') return (ageS, startM2) => grownVarianceM2(growthLawOf(mixing), startM2, ageS);
+  return null;
+}
+
 const boundsOf = (alongM2s: number, acrossM2s: number) => ({
   largest: (ageS: number): number => 2 * Math.max(alongM2s, acrossM2s) * ageS,
   smallest: (ageS: number): number => 2 * Math.min(alongM2s, acrossM2s) * ageS,
@@ -81,6 +127,7 @@ const boundsOf = (alongM2s: number, acrossM2s: number) => ({
 /** The spread of a document's mixing under its current; `shore` is the unit vector along a straight shore, or null. */
 export function spreadOf(mixing: Mixing, current: Current, fromS: number, toS: number, shore: { ex: number; ey: number } | null): Spread {
   if (mixing.kind === 'okubo') return okuboSpread(mixing.varianceFactor);
+  if (mixing.kind === 'growing') return sizeSpread(growthLawOf(mixing));
   const { alongM2s, acrossM2s } = mixing;
   const axis = doubled(Math.sin(mixing.axisTowardDeg * RAD), Math.cos(mixing.axisTowardDeg * RAD));
   if (!mixing.turnsWithCurrent || alongM2s === acrossM2s) return shore ? alignedWithShore(alongM2s, acrossM2s, axis, shore) : fixedSpread(alongM2s, acrossM2s, axis.cos, axis.sin);

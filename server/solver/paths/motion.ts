@@ -22,7 +22,7 @@ const MOST_STEPS = 400;
  * Open water with a current uniform in space: drift is the exact integral of the current, covariance the exact gain of
  * a cloud of that age, so that any step is exact away from shores, with constant, turning and age-grown spread alike.
  */
-export function uniformMotion({ current, spread }: OpenMotion, horizonS: number): PathMotion {
+export function uniformMotion({ current, spread, shear }: OpenMotion, horizonS: number): PathMotion {
   const before = new Float64Array(2);
   const after = new Float64Array(2);
   const gainedBefore = new Float64Array(3);
@@ -32,7 +32,16 @@ export function uniformMotion({ current, spread }: OpenMotion, horizonS: number)
     // A tide carries paths to and fro within a period: shores on that way would not be seen by longer steps.
     longestStepS: Math.max(current.shortestPeriodS / 12, horizonS / MOST_STEPS),
     endsAtShore: true,
-    step(_x, _y, bornS, fromS, toS, out) {
+    step(x, y, bornS, fromS, toS, out) {
+      if (shear) {
+        // A path stands anywhere in its cloud: it is carried from where it is, and gains what a point does in that time.
+        shear.place(fromS, toS, x, y, after);
+        spread.gained(fromS, toS, gained);
+        out[0] = after[0]! - x;
+        out[1] = after[1]! - y;
+        for (let k = 0; k < 3; k++) out[2 + k] = gained[k]!;
+        return;
+      }
       // A halved step asks again from the same time: the figures of its start are kept.
       if (fromS !== atS || bornS !== ofS) {
         current.displacement(fromS, before);

@@ -2,7 +2,7 @@ import { fromPlane, toPlane } from '../../../shared/geo';
 import type { LonLat } from '../../../shared/schemas/basics';
 import { lengthText } from '../format';
 import { onWater, openFacts, type OpenFacts } from '../open/open-solver';
-import type { OpenSource } from '../open/puffs';
+import { motionFor, type OpenSource } from '../open/puffs';
 import type { PathWater, RunInput } from '../types';
 import { birthsOf } from './births';
 import { uniformMotion } from './motion';
@@ -41,7 +41,7 @@ export function openPaths(input: RunInput, plan: PathPlan, water: PathWater | nu
     const drawn = linesOf(plan, count, Math.ceil(plan.drawn / facts.sources.length), (x, y) => rounded(fromPlane(plane, x, y)), lines);
     walkPlane(
       {
-        motion: water ? water.motionOf(source) : uniformMotion(facts.motion, input.doc.horizonS),
+        motion: water ? water.motionOf(source) : uniformMotion(facts.motion.shear ? facts.motion : motionFor(facts.motion, source), input.doc.horizonS),
         walls,
         line: water ? null : facts.shore,
         x: source.origins[0]!.x,
@@ -74,7 +74,7 @@ function watchFor(facts: OpenFacts, source: OpenSource, item: WatchedReceptor, w
   const at = onWater(facts.area, ...toXy(item.receptor.position));
   const bornS = Math.min((profile.startS + profile.stopS) / 2, item.aboutS - LEAST_AGE_S);
   const covariance = new Float64Array(3);
-  facts.motion.spread.gained(bornS, Math.max(item.aboutS, bornS + LEAST_AGE_S), covariance);
+  motionFor(facts.motion, source).spread.gained(bornS, Math.max(item.aboutS, bornS + LEAST_AGE_S), covariance);
   covariance[0]! += source.startVarianceM2;
   covariance[2]! += source.startVarianceM2;
   const kernel = new PlaneKernel(at.x, at.y, covariance, walls);

@@ -1,4 +1,4 @@
-import type { EstimateDocument, EstimateReceptor, RiverWater } from '../../../shared/schemas/estimate';
+import type { EstimateDocument, EstimateReceptor, OpenWater, RiverWater } from '../../../shared/schemas/estimate';
 import type { Check, Paths, ReceptorAnswer, SecondOpinion } from '../../../shared/schemas/estimate-result';
 import { networkFeatures } from '../network/network-door';
 import { channelPaths } from '../paths/channel-paths';
@@ -62,11 +62,18 @@ const bounds = (): SecondOpinion['bounds'] => ({ peakFactor: BOUNDS.peakFactor, 
 const none = (why: string): Opinion => ({ secondOpinion: { solver: '', agreement: 'none', words: why, bounds: bounds(), figures: [], field: null }, paths: null, checks: [] });
 
 /** What of the water random paths do not know, in words; null where they can be walked. */
-function whyNoPaths({ water }: EstimateDocument): string | null {
+function whyNoPaths({ water, ...doc }: EstimateDocument): string | null {
   if (water.kind === 'open' && water.box) return 'There is no second opinion: the basin is taken as stirred, and no other method does that. Compare it with samples.';
-  const features = water.kind === 'river' ? networkFeatures(water) : [];
+  const features = water.kind === 'river' ? networkFeatures(water) : closedOnly({ ...doc, water }, water);
   return features.length > 0 ? `There is no second opinion: ${features.join(' and ')} are known to one method only. Compare it with samples.` : null;
 }
+
+/** What the closed form of open water knows and random paths on a plane do not. */
+const closedOnly = ({ releases }: EstimateDocument, water: OpenWater): string[] => [
+  ...(water.straightShore?.oppositeM === undefined ? [] : ['two straight shores']),
+  ...(water.vertical ? ['mixing over depth'] : []),
+  ...(releases.some((release) => release.path) ? ['a release that moves'] : []),
+];
 
 /** Peaks below this leave every action value alone by the factor within which peaks are trusted, with the high amount too. */
 function idleBelow(receptor: EstimateReceptor, { peak }: ReceptorAnswer): number {

@@ -61,6 +61,12 @@ function reachesBelow(river: DraftRiver, from: readonly string[]): Reach[] {
   return [...passed.values()];
 }
 
+const emptyMixing: Record<DraftOpenWater['mixing']['kind'], DraftOpenWater['mixing']> = {
+  okubo: { kind: 'okubo', varianceFactor: 1 },
+  growing: { kind: 'growing', law: 'lake', coefficient: null, mostM2s: null },
+  constant: { kind: 'constant', alongM2s: null, acrossM2s: null, turnsWithCurrent: true, axisTowardDeg: 0 },
+};
+
 function OpenCoefficients({ water }: { water: DraftOpenWater }) {
   const { draft, change } = useChart();
   const set = (patch: Partial<DraftOpenWater>, key = '') => change((now) => (now.water?.kind === 'open' ? { ...now, water: { ...now.water, ...patch } } : now), key);
@@ -84,17 +90,33 @@ function OpenCoefficients({ water }: { water: DraftOpenWater }) {
       <Field label="Spreading">
         <SelectInput
           value={mixing.kind}
-          onChange={(event) => set({ mixing: event.target.value === 'okubo' ? { kind: 'okubo', varianceFactor: 1 } : { kind: 'constant', alongM2s: null, acrossM2s: null, turnsWithCurrent: true, axisTowardDeg: 0 } })}
+          onChange={(event) => set({ mixing: emptyMixing[event.target.value as keyof typeof emptyMixing] })}
         >
           <option value="okubo">grows with the age of the cloud (Okubo 1971)</option>
+          <option value="growing">grows with the size of the cloud</option>
           <option value="constant">constant along and across</option>
         </SelectInput>
       </Field>
-      {mixing.kind === 'okubo' ? (
+      {mixing.kind === 'growing' && (
+        <>
+          <Field label="Law of growth">
+            <SelectInput value={mixing.law} onChange={(event) => set({ mixing: { ...mixing, law: event.target.value as typeof mixing.law, coefficient: null } })}>
+              <option value="four-thirds">size to the power 4/3, open coast (Richardson 1926)</option>
+              <option value="okubo">size to the power 1.15, sea (Okubo 1971)</option>
+              <option value="lake">size to the power 1.1, lakes (Lawrence et al. 1995)</option>
+            </SelectInput>
+          </Field>
+          <Field label="At most" unit="m²/s" isOptional hint="The shores of a harbour or a small lake stop the growth">
+            <NumberInput value={mixing.mostM2s} min={0} onChange={(mostM2s) => set({ mixing: { ...mixing, mostM2s } }, 'most')} />
+          </Field>
+        </>
+      )}
+      {mixing.kind === 'okubo' && (
         <Field label="Times the variance of the relation" error={factorError} hint="1 is the published mean; sheltered water spreads less">
           <NumberInput value={mixing.varianceFactor} min={0} step={0.1} onChange={(varianceFactor) => set({ mixing: { ...mixing, varianceFactor } }, 'factor')} />
         </Field>
-      ) : (
+      )}
+      {mixing.kind === 'constant' && (
         <>
           <div className="grid grid-cols-2 gap-3">
             <Field label="Along" unit="m²/s" error={alongError}>

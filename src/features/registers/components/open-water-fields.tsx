@@ -12,12 +12,19 @@ import { NotesSection } from './notes-section';
 
 const mixings = [
   { value: 'okubo', label: 'Growing with the age of the cloud, after Okubo 1971' },
+  { value: 'growing', label: 'Growing with the size of the cloud' },
   { value: 'constant', label: 'Constant coefficients' },
 ];
 const emptyMixing: Record<string, Record<string, unknown>> = {
   okubo: { kind: 'okubo', varianceFactor: 1 },
+  growing: { kind: 'growing', law: 'lake', coefficient: null, mostM2s: null },
   constant: { kind: 'constant', alongM2s: null, acrossM2s: null, turnsWithCurrent: true, axisTowardDeg: 0 },
 };
+const growthLaws = [
+  { value: 'four-thirds', label: 'Power 4/3, open coast (Richardson 1926)' },
+  { value: 'okubo', label: 'Power 1.15, sea (Okubo 1971)' },
+  { value: 'lake', label: 'Power 1.1, lakes (Lawrence et al. 1995)' },
+];
 const noReaches: never[] = [];
 
 const ringWords = (rings: LonLat[][]): string =>
@@ -62,6 +69,12 @@ function MixingFields() {
     <FieldGrid>
       <SelectField name="data.mixing.kind" label="Spreading" choices={mixings} onChosen={(next) => setValue('data.mixing', emptyMixing[next ?? 'okubo'], { shouldDirty: true })} />
       {kind === 'okubo' && <NumberField name="data.mixing.varianceFactor" label="Factor on the variance" range="Above 0, at most 100; 1 is Okubo's own." />}
+      {kind === 'growing' && (
+        <>
+          <SelectField name="data.mixing.law" label="Law of growth" choices={growthLaws} />
+          <NumberField name="data.mixing.mostM2s" label="At most" unit="m²/s" isOptional range="Above 0, at most 100,000." />
+        </>
+      )}
       {kind === 'constant' && (
         <>
           <NumberField name="data.mixing.alongM2s" label="Mixing along" unit="m²/s" range="Above 0, at most 100,000." />
