@@ -51,10 +51,15 @@ export function tidyLabels(map: L.Map): void {
 /** Fired on a map after the labels of its marks have been placed. */
 export const LABELS_PLACED = 'labelsplaced';
 
-/** Boxes of all marks and shown labels, measured from the corner of an element. */
+const MARKS = ".leaflet-marker-icon:not(.is-crowded) > svg, .leaflet-marker-icon:not(.is-crowded) > .mark-label:not([data-side='none'])";
+/** What floats over a map, in it or beside it on the same stage. */
+const COVERS = '.map-toolbar, .map-foot > *, [data-covers-map]';
+
+/** Boxes of all marks, shown labels and what floats over the map, measured from the corner of an element. */
 export function markBoxes(map: L.Map, from: DOMRect): PixelBox[] {
-  const drawn = map.getPane('markerPane')?.querySelectorAll<HTMLElement>(".leaflet-marker-icon:not(.is-crowded) > svg, .leaflet-marker-icon:not(.is-crowded) > .mark-label:not([data-side='none'])") ?? [];
-  return [...drawn].map((element) => {
+  const stage = map.getContainer().closest('.district-map')?.parentElement;
+  const drawn = [...(map.getPane('markerPane')?.querySelectorAll(MARKS) ?? []), ...(stage?.querySelectorAll(COVERS) ?? [])];
+  return drawn.map((element) => {
     const box = element.getBoundingClientRect();
     return { left: box.left - from.left, right: box.right - from.left, top: box.top - from.top, bottom: box.bottom - from.top };
   });

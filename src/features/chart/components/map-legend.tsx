@@ -11,7 +11,7 @@ type Props = { levels: readonly Level[]; measure: Measure; theme: MapTheme; show
 export function MapLegend({ levels, measure, theme, showsEnvelope, onEnvelope, showsPaths, onPaths }: Props) {
   const [isOpen, setOpen] = useState(() => window.matchMedia('(min-width: 48rem)').matches);
   return (
-    <section aria-label="Values on the map" className="absolute bottom-10 left-2 z-[1000] max-h-[calc(100%-3rem)] overflow-y-auto rounded-sm bg-sheet shadow-float max-md:top-2 max-md:bottom-auto print:shadow-none">
+    <section data-covers-map aria-label="Values on the map" className="absolute bottom-10 left-2 z-[1000] max-h-[calc(100%-3rem)] overflow-y-auto rounded-sm bg-sheet shadow-float max-md:top-2 max-md:bottom-auto print:shadow-none">
       <button type="button" aria-expanded={isOpen} onClick={() => setOpen(!isOpen)} className="flex min-h-9 w-full items-center gap-2 px-2 font-semibold -outline-offset-2 pointer-coarse:min-h-11 print:hidden">
         <Icon name={isOpen ? 'down' : 'right'} className="size-3.5 text-ink2" />
         Values
