@@ -10,6 +10,7 @@ export class IntegralTable {
   private readonly ends: number[] = [];
   private readonly coefficients: Float64Array[] = [];
   private readonly sums: Float64Array;
+  private last = 0;
 
   /**
    * @param f          writes the K integrands at t into `out`
@@ -28,13 +29,7 @@ export class IntegralTable {
 
   /** Writes the K integrals up to t into `out`; t must lie between the first and last cut. */
   at(t: number, out: Float64Array): void {
-    let low = 0;
-    let high = this.starts.length - 1;
-    while (low < high) {
-      const mid = (low + high + 1) >> 1;
-      if (this.starts[mid]! <= t) low = mid;
-      else high = mid - 1;
-    }
+    const low = this.panelOf(t);
     const a = this.starts[low]!;
     const z = (t - a) / (this.ends[low]! - a);
     const c = this.coefficients[low]!;
@@ -42,6 +37,21 @@ export class IntegralTable {
       const o = 6 * k;
       out[k] = c[o]! + z * (c[o + 1]! + z * (c[o + 2]! + z * (c[o + 3]! + z * (c[o + 4]! + z * c[o + 5]!))));
     }
+  }
+
+  /** Calls come in runs of times close together: the panel of the last one is tried first. */
+  private panelOf(t: number): number {
+    const { starts, last } = this;
+    if (t >= starts[last]! && (last + 1 === starts.length || t < starts[last + 1]!)) return last;
+    let low = 0;
+    let high = starts.length - 1;
+    while (low < high) {
+      const mid = (low + high + 1) >> 1;
+      if (starts[mid]! <= t) low = mid;
+      else high = mid - 1;
+    }
+    this.last = low;
+    return low;
   }
 
   private addPanel(a: number, b: number, depth: number): void {

@@ -6,7 +6,7 @@ import type { ReceptorSite, RunInput } from '../types';
 import { curveOf, firstReach, meanCurveOf, pulsesAbove, scaledCurve, type Curve, type Pulse } from './curve';
 import { pulsesOf } from './pulses';
 import { RunningIntegral } from './running-integral';
-import { sampleSite, SiteResponse, type Samples } from './sampling';
+import { sampleSite, SiteResponse, type Samples, type SamplingEffort } from './sampling';
 import { thinned } from './series';
 
 /** Leading edge: this share of the peak. */
@@ -28,7 +28,7 @@ export function receptorAnswer(input: RunInput, receptor: EstimateReceptor, site
   const response = new SiteResponse(site, doc.substance.solubilityKgM3 ?? Infinity, doc.substance.applyLoss);
   const features = site.responses.flatMap((item) => item?.features ?? []);
   const isReached = site.responses.some((item) => item !== null);
-  const effort = !isReached ? { most: 3, even: 1 } : input.isPreview ? { most: 180, even: 16 } : { most: 300, even: 24 };
+  const effort = isReached ? effortOf(input) : { most: 3, even: 1 };
   const samples = sampleSite(response, features, weights.likely, doc.horizonS, effort);
   const sets: Triple<Weights> = { low: weights.low, likely: weights.likely, high: weights.high };
   const curves = curvesOf(response, samples, sets, doc.substance.solubilityKgM3 ?? Infinity);
@@ -65,6 +65,15 @@ function curvesOf(response: SiteResponse, samples: Samples, sets: Triple<Weights
     return isProportional && likely.peak < solubility ? scaledCurve(likely, ratio, solubility) : curveOf(response, samples, set);
   };
   return { low: other(sets.low), likely, high: other(sets.high) };
+}
+
+/** A preview has this many integrals over release time to spend; peaks and crossings are refined whatever the samples. */
+const PREVIEW_INTEGRALS = 9_000;
+
+function effortOf({ isPreview, doc, releases }: RunInput): SamplingEffort {
+  if (!isPreview) return { most: 300, even: 24 };
+  const lasting = releases.filter((release) => !release.profile.isInstant).length * doc.receptors.length;
+  return { most: Math.round(Math.min(180, Math.max(48, PREVIEW_INTEGRALS / Math.max(1, lasting)))), even: 16 };
 }
 
 /** The worst of the action answers. */

@@ -112,9 +112,14 @@ function fill(gridding: RiverGridding, grid: ChannelGrid, add: (out: Float64Arra
       add(values, at, part.reachId, km);
       at += n;
     }
-  if (gridding.solubility < Infinity) for (let i = 0; i < values.length; i++) if (values[i]! > gridding.solubility) values[i] = gridding.solubility;
+  capAt(values, gridding.solubility);
   return values;
 }
+
+const capAt = (values: Float64Array, cap: number): void => {
+  if (cap === Infinity) return;
+  for (let i = 0; i < values.length; i++) if (values[i]! > cap) values[i] = cap;
+};
 
 /** Times at which the concentration of a release is largest, or nearly so, at a travel time: the peak of an instantaneous release, seven times over the plateau of a longer one. */
 function peakTimes(path: RiverPath, reachId: string, km: number, horizonS: number): number[] {
@@ -140,8 +145,9 @@ function fewTimes(times: readonly number[]): number[] {
   return Array.from({ length: n }, (_, i) => distinct[Math.round((i * (distinct.length - 1)) / Math.max(1, n - 1))]!);
 }
 
-/** Largest value over all time on nodes over the whole way of the clouds. */
-export function riverEnvelope(gridding: RiverGridding, weights: Weights, horizonS: number): GriddedField {
+/** Largest value on nodes over the whole way of the clouds up to each of the times `untilS` (ascending), in one pass down the river. */
+export function riverEnvelopes(gridding: RiverGridding, weights: Weights, untilS: readonly number[]): GriddedField[] {
+  const horizonS = untilS[untilS.length - 1]!;
   const parts = gridding.states.flatMap((state) => {
     const part = partOf(gridding, state, ({ release: { profile } }) => ({ oldestS: horizonS - profile.startS, youngestS: 0 }));
     return part ? [part] : [];
@@ -149,14 +155,22 @@ export function riverEnvelope(gridding: RiverGridding, weights: Weights, horizon
   const grid: ChannelGrid = { kind: 'channel', parts };
   const n = gridding.across.count;
   const profile = new Float64Array(n);
-  const values = fill(gridding, grid, (out, at, reachId, km) => {
-    for (const tS of fewTimes(gridding.paths.flatMap((path) => peakTimes(path, reachId, km, horizonS)))) {
+  const most = new Float64Array(n);
+  const earlier = untilS.slice(0, -1).map(() => new Float64Array(parts.reduce((sum, part) => sum + part.chainageKm.length * n, 0)));
+  const whole = fill(gridding, grid, (out, at, reachId, km) => {
+    most.fill(0);
+    let next = 0;
+    const keep = (): void => (earlier[next++] ?? out).set(most, at);
+    // The cloud of every `untilS` counts too: before its peak it is the largest so far.
+    for (const tS of [...new Set([...fewTimes(gridding.paths.flatMap((path) => peakTimes(path, reachId, km, horizonS))), ...untilS])].sort((a, b) => a - b)) {
       profile.fill(0);
       addAll(gridding, profile, 0, reachId, km, weights, tS);
-      for (let j = 0; j < n; j++) if (profile[j]! > out[at + j]!) out[at + j] = profile[j]!;
+      for (let j = 0; j < n; j++) if (profile[j]! > most[j]!) most[j] = profile[j]!;
+      if (tS === untilS[next]) keep();
     }
   });
-  return { grid, values };
+  for (const values of earlier) capAt(values, gridding.solubility);
+  return [...earlier, whole].map((values) => ({ grid, values }));
 }
 
 /** Section-mean concentrations by time and chainage below the first release. */

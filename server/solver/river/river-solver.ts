@@ -6,7 +6,7 @@ import type { Books, PreparedField, ReceptorSite, RunInput, Solver } from '../ty
 import { AcrossNodes } from './across';
 import { etaOf, placeOn, riverPath, type PathPlace, type RiverPath } from './path';
 import { reachStates, type ReachState } from './reach-state';
-import { riverDistanceTime, riverEnvelope, riverFieldAt, type RiverGridding } from './river-grid';
+import { riverDistanceTime, riverEnvelopes, riverFieldAt, type RiverGridding } from './river-grid';
 import { forEachBirth, riverResponse, sectionDensity } from './river-response';
 import { riverTravelTimes } from './river-travel-times';
 import { riverReceptorWorking, riverRunWorking } from './river-working';
@@ -41,7 +41,8 @@ function prepareRiver(input: RunInput): PreparedField {
   return {
     receptor: (_index, receptor) => siteOf(facts, receptor),
     gridAt: (tS, weights) => riverFieldAt(gridding, weights, tS),
-    envelope: (timesS, weights) => riverEnvelope(gridding, weights, timesS[timesS.length - 1]!),
+    envelope: (timesS, weights) => riverEnvelopes(gridding, weights, timesS.slice(-1))[0]!,
+    envelopes: (untilS, weights) => riverEnvelopes(gridding, weights, untilS),
     distanceTime: (timesS, weights) => riverDistanceTime(gridding, weights, timesS, input.isPreview ? 80 : 160),
     books: (tS, weights) => booksAt(gridding, weights, tS),
     travelTimes: (weights) => riverTravelTimes(gridding, weights, doc.horizonS),
