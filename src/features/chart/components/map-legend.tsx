@@ -5,10 +5,10 @@ import { Icon } from '../../../components/icon';
 import { ConcentrationGauge } from '../../../map/concentration-gauge';
 import type { MapTheme } from '../../../map/palette';
 
-type Props = { levels: readonly Level[]; measure: Measure; theme: MapTheme; showsEnvelope: boolean; onEnvelope: (shows: boolean) => void; showsPaths: boolean; /** Null where the forecast has no paths. */ onPaths: ((shows: boolean) => void) | null };
+type Props = { levels: readonly Level[]; measure: Measure; theme: MapTheme; showsEnvelope: boolean; onEnvelope: (shows: boolean) => void; showsArrivals: boolean; /** Null where the forecast has no lines of first arrival. */ onArrivals: ((shows: boolean) => void) | null; showsPaths: boolean; /** Null where the forecast has no paths. */ onPaths: ((shows: boolean) => void) | null };
 
 /** The staff gauge over the map; folds away where it covers something. */
-export function MapLegend({ levels, measure, theme, showsEnvelope, onEnvelope, showsPaths, onPaths }: Props) {
+export function MapLegend({ levels, measure, theme, showsEnvelope, onEnvelope, showsArrivals, onArrivals, showsPaths, onPaths }: Props) {
   const [isOpen, setOpen] = useState(() => window.matchMedia('(min-width: 48rem)').matches);
   return (
     <section data-covers-map aria-label="Values on the map" className="absolute bottom-10 left-2 z-[1000] max-h-[calc(100%-3rem)] overflow-y-auto rounded-sm bg-sheet shadow-float max-md:top-2 max-md:bottom-auto print:shadow-none">
@@ -24,6 +24,13 @@ export function MapLegend({ levels, measure, theme, showsEnvelope, onEnvelope, s
             <span className="flex-1">reached at any time</span>
             <span aria-hidden="true" className="w-4 border-t-2 border-dotted border-ink2" />
           </label>
+          {onArrivals && (
+            <label className="flex min-h-7 items-center gap-1.5 text-note pointer-coarse:min-h-11 print:hidden">
+              <input type="checkbox" className="accent-kingfisher" checked={showsArrivals} onChange={(event) => onArrivals(event.target.checked)} />
+              <span className="flex-1">lines of first arrival</span>
+              <span aria-hidden="true" className="w-4 border-t-2 border-ink" />
+            </label>
+          )}
           {onPaths && (
             <label className="flex min-h-7 items-center gap-1.5 text-note pointer-coarse:min-h-11 print:hidden">
               <input type="checkbox" className="accent-kingfisher" checked={showsPaths} onChange={(event) => onPaths(event.target.checked)} />

@@ -25,6 +25,7 @@ import { placeRelease } from '../model/draft-actions';
 import { frameIndexAt, type Forecast } from '../model/forecast';
 import { NEAR_WATER_M, placeAt, type Place } from '../model/place';
 import { boundsOf } from '../model/bounds';
+import { ArrivalLines } from './arrival-lines';
 import { MapLegend } from './map-legend';
 import { ReadOut } from './read-out';
 import { StationMarks } from './station-marks';
@@ -56,9 +57,11 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
   const [refused, setRefused] = useState<{ why: string; nearest: Place | null } | null>(null);
   const [showsEnvelope, setShowsEnvelope] = useState(true);
   const [showsPaths, setShowsPaths] = useState(false);
+  const [showsArrivals, setShowsArrivals] = useState(false);
   const [{ metresPerPixel, ribbonM }, setScale] = useState({ metresPerPixel: 50, ribbonM: 0 });
   const water = document?.water ?? null;
   const paths = forecast?.result?.paths ?? null;
+  const reached = forecast?.result?.reached?.isochrones.length ? forecast.result.reached : null;
   const index = forecast ? frameIndexAt(forecast, timeS) : null;
   const frame = forecast && index !== null ? (forecast.frames[index] ?? null) : null;
   const isPlacing = !isReadOnly && (draft.releases.length === 0 || placing !== null);
@@ -118,6 +121,7 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
         <KeepInView position={receptors.find((receptor) => receptor.id === selectedId)?.position ?? null} />
         <RiverLayer reaches={reaches} />
         {water && forecast && <CloudLayers forecast={forecast} frame={frame} water={water} theme={theme} measure={measure} showsEnvelope={showsEnvelope} />}
+        {water && reached && showsArrivals && <ArrivalLines reached={reached} water={water} theme={theme} clock={clock} />}
         {water && paths && showsPaths && <PathsLayer paths={paths} water={water} timeS={timeS} theme={theme} />}
         <StationMarks waterId={waterId} />
         {isPlacing && <PlacePreview snap={preview} />}
@@ -136,7 +140,7 @@ export function MapStage({ forecast, document, isBehind, timeS, clock, measure, 
           <Button kind="quiet" icon="close" aria-label="Close" onClick={() => setRefused(null)} />
         </div>
       )}
-      {forecast && forecast.levels.length > 0 && <MapLegend levels={forecast.levels} measure={measure} theme={theme} showsEnvelope={showsEnvelope} onEnvelope={setShowsEnvelope} showsPaths={showsPaths} onPaths={paths ? setShowsPaths : null} />}
+      {forecast && forecast.levels.length > 0 && <MapLegend levels={forecast.levels} measure={measure} theme={theme} showsEnvelope={showsEnvelope} onEnvelope={setShowsEnvelope} showsArrivals={showsArrivals} onArrivals={reached ? setShowsArrivals : null} showsPaths={showsPaths} onPaths={paths ? setShowsPaths : null} />}
       {probe && frame && water && <ReadOut position={probe} frame={frame} envelope={forecast?.envelope ?? null} water={water} ribbonM={ribbonM} timeS={frame.head.timeS} clock={clock} measure={measure} onClose={() => setProbe(null)} />}
       {(missing ? forecast !== null || draft.releases.length > 0 : isBehind) && (
         <p className={classNames('pointer-events-none absolute inset-x-0 bottom-0 z-[999] bg-sheet/85 px-4 py-1.5 text-center font-semibold print:hidden', !missing && 'transition-opacity delay-500 duration-150 starting:opacity-0')}>
