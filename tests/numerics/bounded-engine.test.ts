@@ -75,6 +75,15 @@ describe('a lake with streams and an island', () => {
     again.forEach(({ payload }, n) => expect(Buffer.compare(payload, messages[n]!.payload)).toBe(0));
   });
 
+  it('tells how far it has come, percent by percent, before anything else', () => {
+    const { messages: told } = solve({ ...doc, horizonS: 7_200 });
+    const steps = told.flatMap(({ head }) => (head.type === 'progress' && head.stage === 'steps' ? [head.done] : []));
+    expect(steps.length).toBeGreaterThan(20);
+    expect(steps[steps.length - 1]).toBe(100);
+    expect([...steps].sort((a, b) => a - b)).toEqual(steps);
+    expect(told[0]!.head).toMatchObject({ type: 'progress', of: 100 });
+  });
+
   it('stops when the caller asks', () => {
     let asked = 0;
     expect(() => prepare(doc, { meter: new Meter(() => ++asked > 40) })).toThrow(SolverCancelled);

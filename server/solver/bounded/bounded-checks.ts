@@ -58,6 +58,16 @@ const runRules: readonly Rule<BoundedFacts>[] = [
         : null,
   },
   {
+    code: 'left-out-on-grid',
+    severity: 'note',
+    title: 'Left out on the grid',
+    test({ open }) {
+      const { velocityGradient, vertical, straightShore } = open.water;
+      const words = [...(velocityGradient ? ['the stated change of the current in space'] : []), ...(vertical ? ['slow mixing over depth'] : []), ...(straightShore ? ['the straight shore'] : [])];
+      return words.length > 0 ? { detail: `The current and the shore come from the outline; ${words.join(' and ')} of the document ${words.length > 1 ? 'are' : 'is'} not used.`, remedy: 'Ask for the closed form where that matters more than the shore.' } : null;
+    },
+  },
+  {
     code: 'cut-off-water',
     severity: 'note',
     title: 'Parts of the water are too narrow for the grid',

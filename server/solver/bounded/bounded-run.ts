@@ -4,9 +4,10 @@ import type { LossClock } from '../loss';
 import type { Meter } from '../meter';
 import type { ResolvedRelease } from '../release-profile';
 import { agedVariance } from '../open/spread';
+import type { Track } from '../open/track';
 import { LAND } from './cell-grid';
 import { levelAt, type BoundedFlow } from './flow-modes';
-import { releaseCells } from './release-cells';
+import { releaseCells, type ReleaseCells } from './release-cells';
 import { growingCoefficient, Spreading } from './spreading';
 import { TracerField } from './tracer-field';
 import { fastestLoss, Transport, volumesAfter } from './transport';
@@ -18,15 +19,21 @@ const STEPS_FOR_SPREADING = { full: 2_000, preview: 250 };
 /** A point release starts as a cloud of this many cells, one that lasts as a source this wide (standard deviations). */
 export const START_CELLS = { instant: 1.5, lasting: 1 };
 
+/** A release at its place, or on its way where it moves. */
+export type PlannedRelease = { readonly release: ResolvedRelease; readonly xM: number; readonly yM: number; readonly track?: Track | undefined };
+
 export type RunPlan = {
   readonly flow: BoundedFlow;
   readonly mixing: Mixing;
-  readonly releases: readonly { readonly release: ResolvedRelease; readonly xM: number; readonly yM: number }[];
+  readonly releases: readonly PlannedRelease[];
   readonly horizonS: number;
   readonly loss: LossClock;
   readonly isPreview: boolean;
   readonly meter: Meter;
 };
+
+/** Of both coefficients, m2/s: a cloud held for the excess over twice this has the right area once it is wide. */
+const harmonicMean = (mixing: Mixing): number => (mixing.kind === 'constant' ? 2 / (1 / mixing.alongM2s + 1 / mixing.acrossM2s) : 1);
 
 export type RunFigures = { steps: number; worstCourant: number };
 
@@ -65,10 +72,18 @@ export class BoundedRun {
   /** Fields of one kilogram for each release, starting as wide as the grid can carry. */
   static field(plan: RunPlan, index: number, loss: LossClock | null): TracerField {
     const { grid, thicknessM } = plan.flow.water;
-    const { release, xM, yM } = plan.releases[index]!;
+    const { release, xM, yM, track } = plan.releases[index]!;
     const cells = release.profile.isInstant ? START_CELLS.instant : START_CELLS.lasting;
     const sigmaM = Math.max(release.release.initialRadiusM / 2, cells * grid.dxM);
-    return new TracerField(release, releaseCells(grid, xM, yM, sigmaM, thicknessM), grid, loss);
+    const over = (x: number, y: number): ReleaseCells => releaseCells(grid, x, y, sigmaM, thicknessM);
+    const still = over(xM, yM);
+    const at = new Float64Array(2);
+    const into = (tS: number): ReleaseCells => {
+      if (!track) return still;
+      track.place(tS, at);
+      return over(at[0]!, at[1]!);
+    };
+    return new TracerField(release, into, grid, loss, sigmaM ** 2);
   }
 
   /** Steps up to a time, exactly; `afterStep` is called after each. */
@@ -87,7 +102,7 @@ export class BoundedRun {
   private longestStep(wantedS: number): number {
     const { flow, mixing } = this.plan;
     const { grid } = flow.water;
-    let dtS = Math.min(wantedS, flow.slowS, Math.max(this.strideS, this.exchangeS(mixing)));
+    let dtS = Math.min(wantedS, flow.slowS, Math.max(this.strideS, this.exchangeS(mixing)), this.movingS());
     for (let round = 0; round < 60; round++) {
       flow.meanOver(this.timeS, this.timeS + dtS);
       volumesAfter(grid, flow.now, this.volume, dtS, this.nextVolume);
@@ -103,6 +118,13 @@ export class BoundedRun {
     throw new SolverDivergedError(this.figures.steps, this.timeS, 'every cell', 'no step is short enough for the current');
   }
 
+  /** Time in which the fastest moving release crosses a cell, s, while any is let go from it. */
+  private movingS(): number {
+    const { releases, flow } = this.plan;
+    const speeds = releases.map(({ track, release }) => (track && release.profile.stopS > this.timeS ? track.maxSpeedMps : 0));
+    return flow.water.grid.dxM / Math.max(0, ...speeds);
+  }
+
   /** Time in which the strongest spreading exchanges a cell once, s. */
   private exchangeS(mixing: Mixing): number {
     const strongest = mixing.kind === 'constant' ? this.spreading.strongestM2s : Math.max(...this.fields.map((field) => this.coefficient(field, this.timeS, this.timeS + this.strideS)));
@@ -110,10 +132,18 @@ export class BoundedRun {
     return strongest > 0 ? (0.9 * side * side) / strongest : Infinity;
   }
 
+  /**
+   * What multiplies all weights over a step: 1, or a coefficient that grows, m2/s. A cloud that the grid made start too
+   * wide spreads no further until it would have grown to that width, so that from then on it is as wide as it should be.
+   */
   private coefficient(field: TracerField, fromS: number, toS: number): number {
-    const varianceAt = agedVariance(this.plan.mixing);
+    const { mixing } = this.plan;
     const { profile, release } = field.release;
-    return varianceAt ? growingCoefficient(profile, (ageS) => varianceAt(ageS, release.initialRadiusM ** 2 / 4), fromS, toS) : 1;
+    const startM2 = release.initialRadiusM ** 2 / 4;
+    const varianceAt = agedVariance(mixing);
+    if (varianceAt) return growingCoefficient(profile, (ageS) => Math.max(field.startVarianceM2, varianceAt(ageS, startM2)), fromS, toS);
+    const heldS = Math.max(0, field.startVarianceM2 - startM2) / (2 * harmonicMean(mixing));
+    return growingCoefficient(profile, (ageS) => 2 * Math.max(0, ageS - heldS), fromS, toS);
   }
 
   private step(endS: number): void {

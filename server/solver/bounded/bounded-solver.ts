@@ -3,6 +3,7 @@ import type { EstimateReceptor } from '../../../shared/schemas/estimate';
 import type { Check } from '../../../shared/schemas/estimate-result';
 import { lengthText } from '../format';
 import { onWater, openFacts, type OpenFacts } from '../open/open-solver';
+import { motionFor, type OpenSource } from '../open/puffs';
 import { boundedMotion } from '../paths/bounded-motion';
 import type { PathWater, PreparedField, ReceptorSite, RunInput, Solver } from '../types';
 import { boundedReceptorChecks, boundedRunChecks } from './bounded-checks';
@@ -24,6 +25,7 @@ export type BoundedFacts = {
   readonly open: OpenFacts;
   readonly plan: BoundedPlan;
   readonly figures: RunFigures;
+  /** Places of all releases; of one that moves, places all along its way. */
   readonly releases: readonly PlanePoint[];
 };
 
@@ -32,6 +34,7 @@ export type BoundedPlace = { readonly xM: number; readonly yM: number; readonly 
 
 /** A receptor may lie this many cells from the nearest water of the grid. */
 const SITE_CELLS = 2.5;
+const WAY_SAMPLES = 200;
 
 function prepareBounded(input: RunInput): PreparedField {
   const { doc } = input;
@@ -42,10 +45,11 @@ function prepareBounded(input: RunInput): PreparedField {
     const [xM, yM] = toPlane(origin, [position[0], position[1]]);
     return { xM, yM };
   };
-  const releases = input.releases.map(({ release }) => toXy(release.position));
+  const starts = open.sources.map(wayOf);
+  const releases = starts.flat();
   const besides = input.releases.map(({ profile }) => !doc.substance.applyLoss && input.loss.kind !== 'none' && !profile.isInstant);
   const plan = boundedPlan(open, toXy, releases, input.releases.length + besides.filter(Boolean).length);
-  const runPlan: RunPlan = { flow: plan.flow, mixing: open.water.mixing, releases: input.releases.map((release, r) => ({ release, ...releases[r]! })), horizonS: doc.horizonS, loss: input.loss, isPreview: input.isPreview, meter: input.meter };
+  const runPlan: RunPlan = { flow: plan.flow, mixing: open.water.mixing, releases: input.releases.map((release, r) => ({ release, ...starts[r]![0]!, track: open.sources[r]!.track })), horizonS: doc.horizonS, loss: input.loss, isPreview: input.isPreview, meter: input.meter };
   const fields = input.releases.map((_, r) => BoundedRun.field(runPlan, r, doc.substance.applyLoss ? input.loss : null));
   const lossy = besides.map((isMeant, r) => (isMeant ? BoundedRun.field(runPlan, r, input.loss) : null));
   const all = [...fields, ...lossy.filter((field) => field !== null)];
@@ -73,11 +77,22 @@ function prepareBounded(input: RunInput): PreparedField {
   };
 }
 
+/** Where a release is let go: its place, or places along its way while it lasts. */
+function wayOf({ origins, track, release }: OpenSource): PlanePoint[] {
+  if (!track) return [{ xM: origins[0]!.x, yM: origins[0]!.y }];
+  const { startS, stopS } = release.profile;
+  const at = new Float64Array(2);
+  return Array.from({ length: WAY_SAMPLES + 1 }, (_, k) => {
+    track.place(startS + ((stopS - startS) * k) / WAY_SAMPLES, at);
+    return { xM: at[0]!, yM: at[1]! };
+  });
+}
+
 function pathWaterOf({ open, plan }: BoundedFacts): PathWater {
   const { mixing } = open.water;
   const turning = mixing.kind === 'constant' && mixing.turnsWithCurrent && mixing.alongM2s !== mixing.acrossM2s ? mixing : null;
   return {
-    motionOf: () => boundedMotion(plan.flow, plan.fastestMps, open.motion.spread, turning, open.input.doc.horizonS),
+    motionOf: (source) => boundedMotion(plan.flow, plan.fastestMps, motionFor(open.motion, source).spread, turning, open.input.doc.horizonS),
     thicknessM(x, y) {
       const nearest = nearestCell(plan.water.grid, x, y);
       return nearest ? plan.water.thicknessM[nearest.cell]! : open.water.mixingDepthM;
@@ -85,15 +100,19 @@ function pathWaterOf({ open, plan }: BoundedFacts): PathWater {
   };
 }
 
-function stepThrough({ doc, releases }: RunInput, run: BoundedRun, all: readonly TracerField[], fields: readonly TracerField[], recorder: SiteRecorder, store: FrameStore): void {
+function stepThrough({ doc, releases, progress, isPreview }: RunInput, run: BoundedRun, all: readonly TracerField[], fields: readonly TracerField[], recorder: SiteRecorder, store: FrameStore): void {
   const frames = new Set(Array.from({ length: doc.frameCount }, (_, k) => (doc.horizonS * (k + 1)) / doc.frameCount));
   const stops = releases.flatMap(({ profile }) => [profile.startS, profile.stopS]);
   const events = [...new Set([...frames, ...stops, doc.horizonS])].filter((tS) => tS > run.startS && tS <= doc.horizonS).sort((a, b) => a - b);
   recorder.record(run.timeS, true);
+  let percent = 0;
   for (const eventS of events) {
     run.advance(eventS, () => {
       recorder.record(run.timeS, run.timeS === doc.horizonS);
       if (run.figures.steps % 2 === 0) store.raise(fields);
+      const now = Math.floor((100 * (run.timeS - run.startS)) / (doc.horizonS - run.startS));
+      if (now > percent && !isPreview) progress?.('steps', now, 100);
+      percent = now;
     });
     store.raise(fields);
     if (!frames.has(eventS) && eventS !== doc.horizonS) continue;

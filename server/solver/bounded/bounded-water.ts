@@ -35,7 +35,7 @@ export type BoundedWater = {
 /** A stream or a place farther from the water than this (and than three cells) belongs elsewhere, m. */
 const REACH_M = 300;
 /** Streams are spread over as many faces as keep them below this, m/s: a jet is not modelled. */
-const STREAM_SPEED_MPS = 0.5;
+const STREAM_SPEED_MPS = 0.15;
 const MOST_STREAM_FACES = 24;
 /** Least depth at mean level in tide ranges: low water must leave something. */
 const LEAST_DEPTH_RANGES = 0.75;

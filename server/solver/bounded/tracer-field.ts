@@ -13,9 +13,12 @@ export class TracerField {
 
   constructor(
     readonly release: ResolvedRelease,
-    private readonly into: ReleaseCells,
+    /** Where what is released at a time goes. */
+    private readonly into: (tS: number) => ReleaseCells,
     private readonly grid: CellGrid,
     private readonly loss: LossClock | null,
+    /** Of the cloud as the grid lets it start, along each axis, m2. */
+    readonly startVarianceM2: number,
   ) {
     this.c = new Float64Array(grid.isWater.length);
   }
@@ -32,7 +35,7 @@ export class TracerField {
     const from = Math.max(fromS, profile.startS);
     const to = Math.min(toS, profile.stopS);
     const kept = amount * ((this.survival(from, toS) + 4 * this.survival((from + to) / 2, toS) + this.survival(to, toS)) / 6);
-    const { cells, shares } = this.into;
+    const { cells, shares } = this.into((from + to) / 2);
     for (let n = 0; n < cells.length; n++) this.c[cells[n]!]! += (kept * shares[n]!) / volume[cells[n]!]!;
     this.released += amount;
     this.lost += amount - kept;
