@@ -12,7 +12,7 @@ import { addField, cloudBox, envelopesOf, fieldAt, gridFor, type OpenGridding } 
 import { openResponse } from './open-response';
 import { NodeResponses } from './node-response';
 import { openReceptorWorking, openRunWorking } from './open-working';
-import type { OpenMotion, OpenSource } from './puffs';
+import { motionFor, type OpenMotion, type OpenSource } from './puffs';
 import { gridPuffs } from './grid-puffs';
 import { gradientOf, shearOf, spreadInShear } from './shear';
 import { mirrored, shoreFrame, type ShoreFrame } from './shores';
@@ -57,7 +57,7 @@ function prepareOpenWater(input: RunInput): PreparedField {
     meter: input.meter,
   };
   const envelopes = (untilS: readonly number[], weights: Weights): GriddedField[] => envelopesOf(gridding, weights, untilS, input.isPreview ? 60 : 300);
-  const nodes = sources.map((source) => (input.isPreview && NodeResponses.fits(motion, source) ? new NodeResponses(motion, source, doc.horizonS, input.meter) : null));
+  const nodes = sources.map((source) => (input.isPreview && NodeResponses.fits(motion, source) ? new NodeResponses(motionFor(motion, source), source, doc.horizonS, input.meter) : null));
   return {
     receptor: (_index, receptor) => siteOf(facts, nodes, receptor, (position) => toPlane(plane, position)),
     gridAt: (tS, weights) => fieldAt(gridding, weights, tS),

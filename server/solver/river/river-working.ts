@@ -1,8 +1,10 @@
 import type { EstimateReceptor } from '../../../shared/schemas/estimate';
 import type { WorkingLine } from '../../../shared/schemas/estimate-result';
+import { adviseDispersion } from '../coefficients/longitudinal';
 import { durationText, lengthText, sig } from '../format';
 import { acrossAt } from './across';
 import type { PathPlace, RiverPath } from './path';
+import type { ReachState } from './reach-state';
 import type { RiverFacts } from './river-solver';
 import { sectionDensity, tauAt } from './river-response';
 
@@ -32,11 +34,25 @@ export function riverRunWorking({ states, paths, water }: RiverFacts): WorkingLi
             source: 'Fischer et al. 1979, eq. 5.19; a factor of 3 either way',
           }
         : { label: `${name}: dispersion along`, formula: 'D as stated', substituted: `${sig(reach.dispersionM2s)} m²/s`, value: reach.dispersionM2s, unit: 'm²/s', source: reach.coefficientNote || 'water register' },
+      otherFormulas(state),
       reach.transverseM2s === null
         ? { label: `${name}: mixing across`, formula: 'e = 0.6 H u*', substituted: `0.6 · ${sig(state.depthM)} · ${sig(state.shearMps)}`, value: state.transverseM2s, unit: 'm²/s', source: 'Fischer et al. 1979, section 5.1; ± 50 %' }
         : { label: `${name}: mixing across`, formula: 'e as stated', substituted: `${sig(reach.transverseM2s)} m²/s`, value: reach.transverseM2s, unit: 'm²/s', source: reach.coefficientNote || 'water register' },
     ];
   });
+}
+
+/** What other published regressions give, to be set beside the dispersion in use. */
+function otherFormulas(state: ReachState): WorkingLine {
+  const advice = adviseDispersion(state);
+  return {
+    label: `${state.reach.name}: dispersion by other formulas`,
+    formula: 'median of five regressions',
+    substituted: `from ${sig(advice.least, 3)} to ${sig(advice.most, 3)} m²/s; data lie between ${sig(advice.lowM2s, 3)} and ${sig(advice.highM2s, 3)} m²/s${advice.isInRange ? '' : '; outside the range of their rivers'}. The peak goes with D^(−1/2)`,
+    value: advice.medianM2s,
+    unit: 'm²/s',
+    source: 'Seo & Cheong 1998, Kashefipour & Falconer 2002, Sahay & Dutta 2009, Zeng & Huai 2014, Disley et al. 2015',
+  };
 }
 
 /** How the likely peak at a receptor came about, for each release that reaches it. */
