@@ -40,6 +40,7 @@ export const apiPaths = {
   run: (id: string) => `/api/runs/${id}`,
   runCancel: (id: string) => `/api/runs/${id}/cancel`,
   runFrames: (id: string) => `/api/runs/${id}/frames`,
+  runExport: (id: string) => `/api/runs/${id}/export.geojson`,
   /** POST an estimate document: answers with the stream of shared/frames.ts, nothing is stored. */
   estimates: '/api/estimates',
   /** Server-sent events, ChangeEvent as JSON. */

@@ -11,7 +11,7 @@ const headColumns = {
 } as const;
 
 /** The scenario and incident a run belongs to. */
-export type RunScope = { scenario: Pick<ScenarioRow, 'id' | 'name' | 'incidentId'>; incident: Pick<IncidentRow, 'id' | 'state' | 'utcOffset'> };
+export type RunScope = { scenario: Pick<ScenarioRow, 'id' | 'name' | 'incidentId'>; incident: Pick<IncidentRow, 'id' | 'state' | 'utcOffset' | 'marking'> };
 
 export class RunRepository {
   constructor(private readonly db: Database) {}

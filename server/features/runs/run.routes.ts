@@ -1,9 +1,12 @@
 import { z } from 'zod';
 import { apiPaths } from '../../../shared/api-paths';
+import { estimateLimits } from '../../../shared/schemas/estimate';
 import { runCreateSchema, runSchema, runSummarySchema } from '../../../shared/schemas/incidents';
 import type { Deps } from '../../deps';
 import { STREAM_TYPE, goneSignal, sendMessages } from '../../http/message-stream';
+import { AppError } from '../../http/problems';
 import { type Route, route } from '../../http/routes';
+import { exportRun, GEOJSON_TYPE } from './run-export';
 import { runMessages } from './run-stream';
 import { RunService } from './run.service';
 
@@ -48,6 +51,18 @@ export function runRoutes(deps: Deps): Route[] {
         res.set({ 'content-type': STREAM_TYPE, 'cache-control': state === 'done' ? 'private, max-age=31536000, immutable' : 'no-store' });
         res.flushHeaders();
         await sendMessages(res, runMessages(params.runId, runs.repository, deps.changes, gone), gone);
+      },
+    }),
+    route({
+      method: 'get', path: apiPaths.runExport(id), action: 'incident:read', tag, summary: 'Gives a solved run as GeoJSON: places, outline of all it reaches, lines of first arrival, contours of every frame or of the one named',
+      params, query: z.object({ frame: z.coerce.number().int().min(0).max(estimateLimits.frames - 1).optional() }), produces: GEOJSON_TYPE,
+      handle: async ({ params, query, res }) => {
+        const run = await runs.getSolved(params.runId);
+        const frame = query.frame ?? null;
+        if (frame !== null && frame >= run.document.frameCount) throw new AppError('bad-input', `Frame ${frame}: this run has frames 0 to ${run.document.frameCount - 1}`, { errors: [{ path: 'frame', message: `Must be at most ${run.document.frameCount - 1}` }] });
+        const gone = goneSignal(res);
+        res.set({ 'content-type': GEOJSON_TYPE, 'content-disposition': `attachment; filename="run-${run.id}.geojson"`, 'cache-control': 'private, no-cache' });
+        await sendMessages(res, exportRun(run, runs.repository, frame, gone), gone);
       },
     }),
   ];

@@ -6,6 +6,7 @@ import type { Deps } from '../../deps';
 import { AppError } from '../../http/problems';
 import type { Actor } from '../../http/routes';
 import { ENGINE_VERSION } from '../../solver/engine-version';
+import type { ExportInput } from './run-export';
 import { isActive, presentRun, presentRunSummary } from './run.presenter';
 import { type RunHead, RunRepository, type RunScope } from './run.repository';
 
@@ -81,6 +82,14 @@ export class RunService {
     const revision = await this.repository.findRevision({ id: run.revisionId });
     if (!revision) throw new Error(`Run ${run.id} has lost its revision`);
     return revision.document;
+  }
+
+  /** A solved run with what an export needs. */
+  async getSolved(id: string): Promise<ExportInput> {
+    const { run, document } = await this.getWithDocument(id);
+    if (!run.result) throw new AppError('wrong-state', `This run is ${run.state}: only a solved run can be exported`);
+    const { incident } = await this.getScope(run.scenarioId);
+    return { id, revisionNumber: run.revisionNumber, marking: incident.marking, document, result: run.result };
   }
 
   async list(actor: Actor, scenarioId: string): Promise<RunSummary[]> {

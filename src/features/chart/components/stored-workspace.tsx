@@ -1,5 +1,6 @@
 import { useMemo, useState } from 'react';
 import { useNavigate } from 'react-router-dom';
+import { apiPaths } from '../../../../shared/api-paths';
 import { instantMs } from '../../../../shared/civil';
 import { formatClock } from '../../../../shared/format';
 import type { EstimateDocument } from '../../../../shared/schemas/estimate';
@@ -44,6 +45,11 @@ export function StoredWorkspace({ scenario, registers, document, revisionNumber,
                   <Button isBusy={cancel.isPending} onClick={() => cancel.mutate(run.id)}>
                     Cancel run
                   </Button>
+                )}
+                {run?.state === 'done' && (
+                  <a className="inline-flex min-h-9 items-center px-2 text-kingfisher underline underline-offset-2 pointer-coarse:min-h-11" href={apiPaths.runExport(run.id)} download>
+                    GeoJSON
+                  </a>
                 )}
                 <Button kind="quiet" icon="print" aria-label="Print" onClick={() => window.print()} />
                 {scenario.abilities.edit && (
