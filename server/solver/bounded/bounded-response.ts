@@ -1,6 +1,6 @@
 import type { Feature, UnitResponse } from '../types';
 import type { LossClock } from '../loss';
-import { MonotoneSeries } from './monotone-series';
+import type { MonotoneSeries } from './monotone-series';
 
 const MOST_FEATURES = 24;
 /** Humps below this share of the highest are left to the even samples. */
