@@ -37,7 +37,7 @@ export function pixelLines({ world, fronts }: IsochroneLine, view: MapView): num
   return [...open, ...across];
 }
 
-/** Strokes the lines thin and whole, and prints each time once on each line where there is room; answers where the words stand. */
+/** Strokes the lines thin and whole, and prints each time where there is room; answers where the words stand. */
 export function paintIsochrones(context: CanvasRenderingContext2D, lines: readonly IsochroneLine[], view: MapView, theme: MapTheme, labelOf: (timeS: number) => string): readonly PixelBox[] {
   const ink = mapInk[theme];
   const book = new LabelBook(context, theme, view, view.seen);
@@ -54,8 +54,11 @@ export function paintIsochrones(context: CanvasRenderingContext2D, lines: readon
     context.stroke();
   }
   context.restore();
-  // The last lines lie outermost and have the most room; they matter as much as the first.
-  for (const { line, pixels } of drawn) for (const points of pixels) book.print(labelOf(line.timeS), labelPlaces(points, line.fronts.length > 0), 12, 600);
+  for (const { line, pixels } of drawn) {
+    // Across rivers every line has its time; on open water only the longest piece of each.
+    const labelled = line.fronts.length > 0 ? pixels : pixels.filter((points) => pixels.every((other) => other.length <= points.length)).slice(0, 1);
+    for (const points of labelled) book.print(labelOf(line.timeS), labelPlaces(points, line.fronts.length > 0), 12, 600);
+  }
   return book.printed;
 }
 
