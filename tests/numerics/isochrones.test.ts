@@ -84,6 +84,13 @@ describe('lines of first arrival in a river', () => {
     });
   });
 
+  it('stand at the same places by parcels of water as by the closed form', () => {
+    const [closed, parcels] = (['closed-form', 'network'] as const).map((solver) => solve({ ...doc([{ km: 40 }]), solver }).result.reached!.isochrones);
+    expect(parcels!.map(({ timeS }) => timeS)).toEqual(closed!.map(({ timeS }) => timeS));
+    // A tenth of a kilometre is four minutes of way, half a section of the parcels' envelope.
+    closed!.forEach(({ fronts: [front] }, i) => expect(Math.abs(parcels![i]!.fronts[0]!.chainageKm - front!.chainageKm)).toBeLessThan(0.1));
+  });
+
   it('have polygons as long as the reached stretch and as wide as the river', () => {
     const last = solve(doc([{ km: 40 }])).result.reached!.isochrones.at(-1)!;
     const lengthM = (59 - last.fronts[0]!.chainageKm) * 1_000;

@@ -89,16 +89,18 @@ function nodesOf(strips: readonly Strip[]): number[] {
 }
 
 /**
- * Largest value over all time at the fixed sections of every path. One release: over all steps. Several: no less than
+ * Largest value up to the last of the times at the fixed sections of every path. One release: over all steps. Several: no less than
  * each alone at any time, and than their sum at the times of the frames.
  */
 export function networkEnvelope(gridding: NetworkGridding, frameTimesS: readonly number[], weights: Weights): GriddedField {
   const { runs, solubility } = gridding;
   const n = runs[0]!.tubes.count;
+  const untilS = frameTimesS[frameTimesS.length - 1]!;
+  const highest = new Map(runs.map((run) => [run, run.envelope.upTo(untilS)] as const));
   const sections = new Map<string, Set<number>>();
   for (const run of runs)
     run.envelope.stations.forEach(({ xM, reach }, i) => {
-      if (run.envelope.values.subarray(i * n, (i + 1) * n).every((value) => value === 0)) return;
+      if (highest.get(run)!.subarray(i * n, (i + 1) * n).every((value) => value === 0)) return;
       const { state, x0 } = run.flow.reaches[reach]!;
       sections.set(state.reach.id, (sections.get(state.reach.id) ?? new Set()).add(xM - x0));
     });
@@ -107,7 +109,7 @@ export function networkEnvelope(gridding: NetworkGridding, frameTimesS: readonly
   let at = 0;
   for (const { reachId, xs } of parts)
     for (const x of xs) {
-      for (let j = 0; j < n; j++) for (const run of runs) values[at + j] = Math.max(values[at + j]!, weights[run.release.index]! * Math.min(run.release.capPerKg, envelopeValue(run, reachId, x, j)));
+      for (let j = 0; j < n; j++) for (const run of runs) values[at + j] = Math.max(values[at + j]!, weights[run.release.index]! * Math.min(run.release.capPerKg, envelopeValue(run, highest.get(run)!, reachId, x, j)));
       at += n;
     }
   if (runs.length > 1) for (const tS of frameTimesS) addSums(values, parts, stripsByReach(runs, tS), weights, n);
@@ -129,8 +131,8 @@ function addSums(values: Float64Array, parts: readonly { reachId: string; xs: nu
 }
 
 /** The envelope of one run at x in a reach, straight between its sections. */
-function envelopeValue(run: NetworkRun, reachId: string, xM: number, tube: number): number {
-  const { stations, values } = run.envelope;
+function envelopeValue(run: NetworkRun, values: Float64Array, reachId: string, xM: number, tube: number): number {
+  const { stations } = run.envelope;
   const n = run.tubes.count;
   const r = run.flow.reaches.findIndex((reach) => reach.state.reach.id === reachId);
   if (r < 0) return 0;

@@ -3,6 +3,7 @@ import type { Check, TravelTime } from '../../../shared/schemas/estimate-result'
 import { riverReceptorChecks, riverRunChecks } from '../checks/river-checks';
 import { durationText, sig } from '../format';
 import type { ResolvedRelease, Weights } from '../release-profile';
+import { evenRoundTimes } from '../results/isochrones';
 import { placeOn, riverPath } from '../river/path';
 import { reachStates } from '../river/reach-state';
 import type { RiverFacts } from '../river/river-solver';
@@ -78,6 +79,7 @@ function follow({ input, states }: RiverFacts, flowing: readonly FlowingReach[],
     stations,
     sections: sectionsOf(flow, sourceM, input.isPreview ? 120 : 320),
     snapshotTimesS: Array.from({ length: doc.frameCount }, (_, k) => (doc.horizonS * (k + 1)) / doc.frameCount).filter((tS) => tS > release.profile.startS),
+    keepTimesS: evenRoundTimes(doc.horizonS).filter((tS) => tS > release.profile.startS),
     loss: input.loss,
     showsLoss: doc.substance.applyLoss && input.loss.kind !== 'none',
     meter: input.meter,

@@ -81,18 +81,43 @@ function shownParcels(chain: Chain): number[] {
 
 /** Largest concentration met at fixed sections of the path, tube by tube, of the layer shown. */
 export class EnvelopeRecorder {
-  readonly values: Float64Array;
+  private readonly values: Float64Array;
   private readonly reader = new Reader();
+  /** What had been met by some times, ascending. */
+  private readonly kept: { timeS: number; values: Float32Array }[] = [];
 
+  /** @param keepTimesS  ascending: times whose state is kept, at the first step not before each */
   constructor(
     readonly stations: readonly { xM: number; reach: number }[],
     private readonly tubes: number,
     private readonly layer: number,
+    private readonly keepTimesS: readonly number[],
   ) {
     this.values = new Float64Array(stations.length * tubes);
   }
 
-  record(chains: readonly Chain[]): void {
+  /** Largest so far at a time; between kept times the logarithm is straight, as a front nears. All of it after the last. */
+  upTo(tS: number): Float64Array {
+    const next = this.kept.findIndex((item) => item.timeS >= tS);
+    if (next < 0) return this.values;
+    const [before, after] = [this.kept[next - 1], this.kept[next]!];
+    const share = before ? (tS - before.timeS) / (after.timeS - before.timeS) : 1;
+    return Float64Array.from(after.values, (value, i) => {
+      const early = before?.values[i] ?? 0;
+      return share === 1 || value === early ? value : early > 0 ? early ** (1 - share) * value ** share : 0;
+    });
+  }
+
+  record(chains: readonly Chain[], tS: number): void {
+    this.raise(chains);
+    if (this.kept.length < this.keepTimesS.length && tS >= this.keepTimesS[this.kept.length]! - 1e-6) {
+      this.kept.push({ timeS: tS, values: Float32Array.from(this.values) });
+      // A step longer than the gap between two wanted times serves both.
+      while (this.kept.length < this.keepTimesS.length && this.keepTimesS[this.kept.length]! <= tS) this.kept.push(this.kept[this.kept.length - 1]!);
+    }
+  }
+
+  private raise(chains: readonly Chain[]): void {
     for (const chain of chains) {
       if (chain.isEmpty) continue;
       const [top, end] = [chain.face[chain.from]!, chain.face[chain.to]!];

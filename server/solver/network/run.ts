@@ -34,6 +34,8 @@ export type RunPlan = {
   readonly stations: readonly Station[];
   readonly sections: readonly { xM: number; reach: number }[];
   readonly snapshotTimesS: readonly number[];
+  /** Times by which the largest values so far are kept. */
+  readonly keepTimesS: readonly number[];
   readonly loss: LossClock;
   /** Show the layer with losses. */
   readonly showsLoss: boolean;
@@ -130,7 +132,7 @@ export class NetworkSimulation {
     const chains = this.stretches.map((stretch) => stretch.chain);
     const timesS = Float64Array.from({ length: steps + 1 }, (_, n) => profile.startS + n * stepS);
     const stations = new StationRecorder(plan.stations, steps, this.layers);
-    const envelope = new EnvelopeRecorder(plan.sections, this.tubes.count, plan.showsLoss ? 1 : 0);
+    const envelope = new EnvelopeRecorder(plan.sections, this.tubes.count, plan.showsLoss ? 1 : 0, plan.keepTimesS);
     const books: BookRows = { inWater: this.rows(steps), left: this.rows(steps), lost: new Float64Array(steps + 1) };
     const snapshots: Snapshot[] = [];
     this.start(timesS[0]!);
@@ -138,7 +140,7 @@ export class NetworkSimulation {
       if (n > 0 && !this.isOver(timesS[n - 1]!)) this.step(timesS[n - 1]!, stepS, n);
       const tS = timesS[n]!;
       stations.record(chains, n);
-      envelope.record(chains);
+      envelope.record(chains, tS);
       this.keepBooks(books, n);
       for (const wanted of plan.snapshotTimesS) if (Math.round((wanted - timesS[0]!) / stepS) === n) snapshots.push(snapshotOf(chains.filter((chain) => !chain.isEmpty), plan.showsLoss ? 1 : 0, wanted, tS));
       this.mostParcels = Math.max(this.mostParcels, chains.reduce((sum, chain) => sum + chain.to - chain.from, 0));

@@ -16,6 +16,14 @@ export function isochroneTimes(fromS: number, toS: number): number[] {
   return out.slice(0, MOST_LINES);
 }
 
+const MOST_KEPT = 48;
+
+/** Round times over a whole estimate at which a solver that steps keeps its state, so that lines of first arrival fall on them. */
+export function evenRoundTimes(horizonS: number): number[] {
+  const stepS = STEPS_S.find((step) => horizonS / step <= MOST_KEPT) ?? STEPS_S[STEPS_S.length - 1]!;
+  return Array.from({ length: Math.floor(horizonS / stepS) }, (_, k) => (k + 1) * stepS);
+}
+
 /** The level whose first arrival is drawn: the lowest action value, or without one the lowest level. */
 export const reachedLevel = (levels: readonly Level[]): Level | null => levels.find((level) => level.isActionValue) ?? levels[0] ?? null;
 
