@@ -1,4 +1,7 @@
 import { describe, expect, it } from 'vitest';
+import { districtRegisters } from '../../server/db/seed/district';
+import { assembleWater } from '../../shared/assemble';
+import type { RiverWater } from '../../shared/schemas/estimate';
 import { answerIn, answerOf, expectPeak, expectTime, HOUR, libraryCase, resultOf, varied } from './library';
 
 describe('S01: ammonia from the V2 bridge into the Ollemar, usual flow', () => {
@@ -98,6 +101,14 @@ describe('S03: fire-water into the Evarrow, and what the dam does to it', () => 
     expect(raised.answers[0]!.arrivalS.likely!).toBeLessThan(left.answers[0]!.arrivalS.likely! - 3 * HOUR);
     // The dam at 12 m3/s from the start is the limit: never earlier than that.
     expect(raised.answers[0]!.arrivalS.likely!).toBeGreaterThan(throughout.answers[0]!.arrivalS.likely!);
+  });
+
+  it('is the same at the second intake with the estuary below it, whose section the sea holds up: a wave passes there at once', () => {
+    const doc = libraryCase('S03-R');
+    const whole = assembleWater(districtRegisters.waters.find(({ id }) => id === 'river-ollemar')!, { flowName: 'Q50' }) as RiverWater;
+    const answer = answerIn(varied(doc, { water: { ...whole, flow: (doc.water as RiverWater).flow } }), 'int-2');
+    // The longer way has a coarser step.
+    expect(Math.abs(answer.peak.likely! / answerOf('S03-R', 'int-2').peak.likely! - 1)).toBeLessThan(0.02);
   });
 
   it('raising the dam changes no amount: the dose at the second intake is the amount over the discharge', () => {

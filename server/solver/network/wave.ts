@@ -5,6 +5,8 @@ const CELL_M = 200;
 const MOST_CELLS = 60;
 const MOST_LEVELS = 900;
 const COURANT = 0.9;
+/** Faster than any long wave in a river, U + √(g H): such a reach holds no more water at a higher discharge. */
+const AT_ONCE_MPS = 30;
 
 /** Discharge against time, m3/s. */
 export type Hydrograph = (tS: number) => number;
@@ -41,9 +43,12 @@ export class ReachWave {
  * keep the water and flatten a steep front over a few cells as friction does.
  * Source: Lighthill & Whitham 1955, Proc. R. Soc. A 229: 281; Chow 1959, chapter 18.
  *
+ * Where the section hardly grows with the discharge, as in an estuary held up by the sea, a change passes at once.
+ *
  * @param inflow  discharge at the head; the reach starts even at its first value
  */
 export function reachWave(hydraulics: Hydraulics, lengthM: number, inflow: Hydrograph, fromS: number, toS: number): ReachWave {
+  if (hydraulics.largestCelerityMps > AT_ONCE_MPS) return passedAtOnce(lengthM, inflow, fromS, toS);
   const cells = Math.min(MOST_CELLS, Math.max(4, Math.ceil(lengthM / CELL_M)));
   const cellM = lengthM / cells;
   const stepS = Math.min((COURANT * cellM) / hydraulics.largestCelerityMps, (toS - fromS) / 50);
@@ -74,4 +79,10 @@ function meanOver(inflow: Hydrograph, fromS: number, stepS: number): number {
   let sum = 0;
   for (let i = 0; i < PARTS; i++) sum += inflow(fromS + (stepS * (i + 0.5)) / PARTS);
   return sum / PARTS;
+}
+
+function passedAtOnce(lengthM: number, inflow: Hydrograph, fromS: number, toS: number): ReachWave {
+  const levelS = (toS - fromS) / MOST_LEVELS;
+  const values = Float64Array.from({ length: 2 * (MOST_LEVELS + 2) }, (_, i) => inflow(fromS + Math.floor(i / 2) * levelS));
+  return new ReachWave(values, 2, fromS, levelS, lengthM);
 }
