@@ -27,9 +27,9 @@ export default defineConfig({
     projects: [
       {
         extends: true,
-        test: { name: 'node', environment: 'node', include: ['{server,shared,tiles,tests}/**/*.test.ts', 'src/**/*.test.ts'], testTimeout: 60_000, hookTimeout: 120_000 },
+        test: { name: 'node', environment: 'node', setupFiles: ['tests/helpers/fixed-seed.ts'], include: ['{server,shared,tiles,tests}/**/*.test.ts', 'src/**/*.test.ts'], testTimeout: 60_000, hookTimeout: 120_000 },
       },
-      { extends: true, test: { name: 'browser parts', environment: 'jsdom', include: ['src/**/*.test.tsx'], setupFiles: ['src/lib/test-setup.ts'] } },
+      { extends: true, test: { name: 'browser parts', environment: 'jsdom', include: ['src/**/*.test.tsx'], setupFiles: ['src/lib/test-setup.ts', 'tests/helpers/fixed-seed.ts'] } },
     ],
   },
 });

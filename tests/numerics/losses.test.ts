@@ -70,7 +70,11 @@ describe('volatilisation', () => {
 
   it('grows with the wind without a jump where the surface turns rough', () => {
     let [low, high] = [0, 15];
-    while (high - low > 1e-12) windFrictionMps((low + high) / 2) > 0.3 ? (high = (low + high) / 2) : (low = (low + high) / 2);
+    while (high - low > 1e-12) {
+      const middle = (low + high) / 2;
+      if (windFrictionMps(middle) > 0.3) high = middle;
+      else low = middle;
+    }
     // The two branches are 1.01866e-3 and 1.0230e-3 there: half a per cent.
     expectClose(windFilms(high, 1e-6, 8e-6).waterMps, windFilms(low, 1e-6, 8e-6).waterMps, 5e-3);
   });

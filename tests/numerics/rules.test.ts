@@ -79,7 +79,7 @@ const cases: Case[] = [
   [13, 'dead-zones', 'warn', river(5_000, { conditions: { deadZoneShare: 0.31 } }), river(5_000, { conditions: { deadZoneShare: 0.3 } })],
   [13, 'dead-zones', 'warn', river(5_000, { conditions: { isWeedyOrBraided: true } }), river(5_000, { conditions: { isWeedyOrBraided: false } })],
   [13, 'reservoir', 'warn', river(5_000, { conditions: { hasReservoir: true } }), river(5_000, { conditions: { hasReservoir: false } })],
-  [14, 'tidal-reach', 'warn', river(5_000, {}, { tidal: true }), river(5_000)],
+  [14, 'tidal-reach', 'stop', river(5_000, {}, { tidal: true }), river(5_000)],
   [14, 'tide-missing', 'warn', open({ waterKind: 'estuary' }), open({ waterKind: 'estuary', current: [{ kind: 'residual', speedMps: 0.2, towardDeg: 90 }, { kind: 'tide', majorMps: 0.3, floodTowardDeg: 90, periodS: 44_712, maxFloodS: 0 }] })],
   [15, 'ice', 'warn', river(5_000, { conditions: { ice: true } }), river(5_000, { conditions: { ice: false } })],
   [16, 'reactive', 'warn', river(5_000, substance({ behaviour: { isReactive: true, gas: 'hydrogen cyanide' } })), river(5_000, substance({ behaviour: { isReactive: false } }))],

@@ -137,11 +137,11 @@ const receptorRules: readonly Rule<ReceptorFacts>[] = [
   },
   {
     code: 'tidal-reach',
-    severity: 'warn',
+    severity: 'stop',
     title: 'In tidal water',
     test: ({ place }) =>
       place.segment.state.reach.tidal
-        ? { detail: `${place.segment.state.reach.name} is tidal; the estimate uses the river's seaward flow of ${sig(place.segment.state.speedMps, 3)} m/s only.`, remedy: 'Expect the water to come and go with the tide: estimate it as open water with a tidal current.' }
+        ? { detail: `${place.segment.state.reach.name} is tidal; the estimate uses the river's seaward flow of ${sig(place.segment.state.speedMps, 3)} m/s only.`, remedy: 'Give the reach its tidal current, so that the water comes and goes, or estimate the estuary as open water with its tide.' }
         : null,
   },
   {

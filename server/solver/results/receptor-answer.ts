@@ -126,9 +126,9 @@ function reasonOf({ input, value, stop, site, curves }: ActionInput, verdict: Ac
   const high = curves.high?.peak ?? likely;
   if (verdict === 'cannot be estimated') return `One release has no amount; the others alone stay below ${limit}`;
   if (verdict === 'not predicted to exceed')
-    return high > 0 ? `The ${what} with the ${curves.high ? 'high' : 'likely'} amount, ${concentrationText(high, measure)}, is ${sig(value.value / high, 2)} times below ${limit}` : `Nothing arrives within the estimate`;
+    return high > 0 ? `The ${what} with the ${curves.high ? 'high' : 'likely'} amount, ${concentrationText(high, measure)}, is about ${sig(value.value / high, 2)} times below ${limit}` : `Nothing arrives within the estimate`;
   return likely > value.value
-    ? `The likely ${what}, ${concentrationText(likely, measure)}, is ${sig(likely / value.value, 2)} times ${limit}`
+    ? `The likely ${what}, ${concentrationText(likely, measure)}, is about ${sig(likely / value.value, 2)} times ${limit}`
     : `Only the high amount exceeds ${limit}: ${concentrationText(high, measure)}; likely ${concentrationText(likely, measure)}`;
 }
 
