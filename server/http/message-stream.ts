@@ -1,4 +1,3 @@
-import { once } from 'node:events';
 import type { Response } from 'express';
 
 export const STREAM_TYPE = 'application/octet-stream';
@@ -12,13 +11,16 @@ export function goneSignal(res: Response): AbortSignal {
   return gone.signal;
 }
 
-/** Writes messages as they come and waits while the receiver is slow. */
+/** Writes messages as they come and waits while the receiver is slow. One listener serves all waits: compression passes listeners on but not their removal. */
 export async function sendMessages(res: Response, messages: AsyncIterable<Uint8Array>, signal: AbortSignal): Promise<void> {
+  let wake = (): void => undefined;
+  res.on('drain', () => wake());
+  signal.addEventListener('abort', () => wake(), { once: true });
   for await (const message of messages) {
     if (signal.aborted) break;
     const isTaken = res.write(message);
     flushNow(res);
-    if (!isTaken) await once(res, 'drain', { signal }).catch(() => undefined);
+    if (!isTaken && !signal.aborted) await new Promise<void>((resolve) => (wake = resolve));
   }
   res.end();
 }
